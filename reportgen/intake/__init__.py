@@ -1,0 +1,1 @@
+"""From a runs folder to builds: scan, sidecars, Touchstone files, findings."""

@@ -1,0 +1,537 @@
+"""The nouns: what a sidecar says, what a sweep holds, what a build measures.
+
+All are frozen. Those that hold arrays compare by identity and own read-only arrays.
+"""
+
+from __future__ import annotations
+
+from dataclasses import dataclass, field
+from datetime import date
+from enum import StrEnum
+from typing import Annotated, ClassVar, Literal
+
+import numpy as np
+from annotated_types import Ge, Gt, Le, Len, Lt
+from numpy.typing import NDArray
+
+RealArray = NDArray[np.float64]
+ComplexArray = NDArray[np.complex128]
+
+# --- what may stand in a sidecar: one line per kind of value ---------------------------------
+
+Text = Annotated[str, Len(0, 2000)]
+Name = Annotated[str, Len(1, 120)]
+FileName = Annotated[str, Len(1, 240)]
+Positive = Annotated[float, Gt(0), Lt(1e7)]
+NonNegative = Annotated[float, Ge(0), Lt(1e7)]
+Percent = Annotated[float, Ge(0), Le(100)]
+Decibel = Annotated[float, Ge(0), Le(200)]
+Count = Annotated[int, Ge(1), Lt(1000)]
+Turns = Annotated[float, Gt(0), Lt(1000)]
+
+
+class Sheet:
+    """Base of everything read from a sidecar: unknown keys and loose types are errors."""
+
+    __slots__ = ()
+    __pydantic_config__: ClassVar[dict[str, object]] = {
+        "extra": "forbid",
+        "strict": True,
+        "allow_inf_nan": False,
+    }
+
+
+# --- runs.toml: what is common to the bench --------------------------------------------------
+
+
+@dataclass(frozen=True, kw_only=True, slots=True)
+class OwnBand(Sheet):
+    """A band of any service, named by the workshop."""
+
+    name: Name
+    from_mhz: Positive
+    to_mhz: Positive
+
+
+@dataclass(frozen=True, kw_only=True, slots=True)
+class Limits(Sheet):
+    """Acceptance limits for one band or for all."""
+
+    swr: Annotated[float, Gt(1), Le(100)] | None = None
+    efficiency_percent: Percent | None = None
+
+
+@dataclass(frozen=True, kw_only=True, slots=True)
+class Calibration(Sheet):
+    """What one calibration of the analyzer leaves uncorrected."""
+
+    grade: Literal["handheld", "bench"] = "handheld"
+    performed_on: date | None = None
+    directivity_db: Decibel | None = None
+    source_match_db: Decibel | None = None
+    load_match_db: Decibel | None = None
+    tracking_db: Decibel | None = None
+    isolation_db: Decibel | None = None
+    noise_db: Decibel | None = None
+    drift_db: Decibel | None = None
+    connection_db: Decibel | None = None
+
+
+@dataclass(frozen=True, kw_only=True, slots=True)
+class Load(Sheet):
+    """A resistor used on the bench as the load of the high side, or in series with it."""
+
+    resistance_ohm: Positive
+    tolerance_percent: Percent = 1.0
+    stray_pf: Literal["fit"] | Annotated[float, Ge(-50), Le(1000)] = "fit"
+    body_pf: Annotated[float, Ge(0), Le(100)] = 0.1
+
+
+@dataclass(frozen=True, kw_only=True, slots=True)
+class BenchSheet(Sheet):
+    """`runs.toml`."""
+
+    schema: Literal[1] = 1
+    title: Name = "Bench results"
+    publisher: Text = ""
+    baseline: Name | None = None
+    region: Literal[1, 2, 3] = 1
+    bands: Annotated[tuple[Name, ...], Len(1, 100)] | None = None
+    power_w: Positive = 100.0
+    paper: Literal["A4", "Letter"] = "A4"
+    locale: Annotated[str, Len(2, 20)] = "en"
+    limits: dict[Name, Limits] = field(default_factory=dict)
+    own_band: Annotated[tuple[OwnBand, ...], Len(0, 100)] = ()
+    duty: dict[Name, Percent] = field(default_factory=dict)
+    calibrations: dict[Name, Calibration] = field(default_factory=dict)
+    loads: dict[Name, Load] = field(default_factory=dict)
+
+
+# --- build.toml: one build -------------------------------------------------------------------
+
+
+class Setup(StrEnum):
+    """How a unit was connected while a sweep was taken."""
+
+    BACK_TO_BACK = "back-to-back"
+    LOAD = "load"
+    OPEN = "open"
+    SHORT = "short"
+    SERIES_RESISTOR = "series-resistor"
+    DIRECT = "direct"
+    LOAD_CHECK = "load-check"
+    RESISTOR_CHECK = "resistor-check"
+    THRU_CHECK = "thru-check"
+    ANTENNA = "antenna"
+    SPOT = "spot"
+
+
+PORTS_OF_SETUP = {
+    Setup.BACK_TO_BACK: 2,
+    Setup.LOAD: 1,
+    Setup.OPEN: 1,
+    Setup.SHORT: 1,
+    Setup.SERIES_RESISTOR: 2,
+    Setup.DIRECT: 2,
+    Setup.LOAD_CHECK: 1,
+    Setup.RESISTOR_CHECK: 2,
+    Setup.THRU_CHECK: 2,
+    Setup.ANTENNA: 1,
+    Setup.SPOT: 0,
+}
+
+
+@dataclass(frozen=True, kw_only=True, slots=True)
+class Winding(Sheet):
+    """The turns of both sides."""
+
+    low_turns: Turns
+    high_turns: Turns
+    isolated: bool = False
+    wire_mm: Positive | None = None
+
+    @property
+    def turns_ratio(self) -> float:
+        """High-side turns over low-side turns [ratio]."""
+        return self.high_turns / self.low_turns
+
+
+@dataclass(frozen=True, kw_only=True, slots=True)
+class Core(Sheet):
+    """A ring core, or a stack of them."""
+
+    outer_mm: Positive
+    inner_mm: Positive
+    height_mm: Positive
+    stack: Count = 1
+    initial_permeability: Positive | None = None
+    material: Text = ""
+    temperature_limit_c: Annotated[float, Gt(0), Le(500)] | None = None
+    flux_limit_mt: Positive | None = None
+
+
+@dataclass(frozen=True, kw_only=True, slots=True)
+class Compensation(Sheet):
+    """The capacitor across one side of the transformer."""
+
+    capacitor_pf: NonNegative = 0.0
+    side: Literal["low", "high"] = "low"
+    tolerance_percent: Percent = 5.0
+    rated_v: Positive | None = None
+    loss_tangent: Annotated[float, Ge(0), Lt(1)] | None = None
+
+
+@dataclass(frozen=True, kw_only=True, slots=True)
+class Match(Sheet):
+    """The two resistances between which the transformer is to match."""
+
+    source_ohm: Positive = 50.0
+    load_ohm: Positive | None = None
+
+
+@dataclass(frozen=True, kw_only=True, slots=True)
+class Rating(Sheet):
+    """What the build is asked to stand."""
+
+    power_w: Positive | None = None
+    load_swr: Annotated[float, Ge(1), Le(100)] = 2.0
+    ambient_max_c: Annotated[float, Ge(-60), Le(150)] = 40.0
+    enclosure: Text = ""
+
+
+@dataclass(frozen=True, kw_only=True, slots=True)
+class SweepEntry(Sheet):
+    """One `[[sweep]]` of a build: a file and how it was taken."""
+
+    file: FileName
+    setup: Setup
+    unit: Name | None = None
+    units: Annotated[tuple[Name, ...], Len(2, 2)] | None = None
+    load: Name | None = None
+    calibration: Name | None = None
+    repeat: Count = 1
+    frequency_unit: Literal["Hz", "kHz", "MHz", "GHz"] | None = None
+    decimal: Literal[",", "."] | None = None
+    reverse_ports: bool = False
+
+    @property
+    def pair(self) -> tuple[str, str]:
+        """The two units of a back-to-back sweep, the one on port 1 first."""
+        return (self.units[0], self.units[1]) if self.units else ("A", "B")
+
+
+@dataclass(frozen=True, kw_only=True, slots=True)
+class ThermalEntry(Sheet):
+    """One `[[thermal]]` of a build: a temperature log under power."""
+
+    file: FileName
+    power_w: Positive
+    frequency_mhz: Positive
+    unit: Name = "A"
+
+
+@dataclass(frozen=True, kw_only=True, slots=True)
+class Part(Sheet):
+    """One line of the parts list."""
+
+    name: Name
+    quantity: Positive | None = None
+    note: Text = ""
+
+
+@dataclass(frozen=True, kw_only=True, slots=True)
+class BuildSheet(Sheet):
+    """`build.toml`."""
+
+    name: Name
+    winding: Winding
+    schema: Literal[1] = 1
+    summary: Text = ""
+    measured_on: date | None = None
+    notes: Text = ""
+    core: Core | None = None
+    compensation: Compensation = field(default_factory=Compensation)
+    match: Match = field(default_factory=Match)
+    rating: Rating = field(default_factory=Rating)
+    sweep: Annotated[tuple[SweepEntry, ...], Len(0, 200)] = ()
+    thermal: Annotated[tuple[ThermalEntry, ...], Len(0, 20)] = ()
+    part: Annotated[tuple[Part, ...], Len(0, 200)] = ()
+    record: dict[Name, Text | int | float] = field(default_factory=dict)
+    loads: dict[Name, Load] = field(default_factory=dict)
+
+    @property
+    def nominal_load_ohm(self) -> float:
+        """Resistance that the build is meant to match to its source [ohm]."""
+        if self.match.load_ohm is not None:
+            return self.match.load_ohm
+        return self.match.source_ohm * self.winding.turns_ratio**2
+
+
+# --- findings --------------------------------------------------------------------------------
+
+
+class Severity(StrEnum):
+    """How much a finding weighs: an error leaves something out, the others do not."""
+
+    ERROR = "error"
+    WARNING = "warning"
+    NOTE = "note"
+
+
+@dataclass(frozen=True, kw_only=True, slots=True)
+class Finding:
+    """Something wrong or worth knowing about an input, and what to do about it.
+
+    `file` is relative to the build's folder, or to the runs folder for what concerns all builds.
+    """
+
+    severity: Severity
+    code: str
+    message: str
+    remedy: str = ""
+    file: str | None = None
+    line: int | None = None
+    key: str | None = None
+
+
+# --- sweeps ----------------------------------------------------------------------------------
+
+
+@dataclass(frozen=True, kw_only=True, slots=True, eq=False)
+class Sweep:
+    """One Touchstone file as read: network data referred to 50 ohm.
+
+    `s` is (F, n, n) complex [ratio], frequency ascending and above 0. Where only the path from
+    port 1 was measured (`one_path`), the column of port 2 holds zeros that mean nothing.
+    """
+
+    file: str
+    sha256: str
+    frequency_hz: RealArray
+    s: ComplexArray
+    reference_ohm: tuple[float, ...]
+    one_path: bool = False
+
+    def __post_init__(self) -> None:
+        points = len(self.frequency_hz)
+        ports = self.s.shape[-1]
+        if self.s.shape != (points, ports, ports) or len(self.reference_ohm) != ports:
+            raise ValueError(f"sweep {self.file}: shapes disagree")
+        self.frequency_hz.setflags(write=False)
+        self.s.setflags(write=False)
+
+    @property
+    def ports(self) -> int:
+        """Number of ports, 1 or 2."""
+        return self.s.shape[-1]
+
+
+@dataclass(frozen=True, kw_only=True, slots=True, eq=False)
+class Measurement:
+    """A sweep together with the set-up it was taken in."""
+
+    entry: SweepEntry
+    sweep: Sweep
+    load: Load | None = None
+
+
+@dataclass(frozen=True, kw_only=True, slots=True)
+class InputFile:
+    """A file that was read for a build; `points` is None for what is not a sweep."""
+
+    file: str
+    sha256: str
+    points: int | None = None
+
+
+@dataclass(frozen=True, kw_only=True, slots=True, eq=False)
+class Build:
+    """One build as it comes from its folder, ready to be computed."""
+
+    key: str
+    folder: str
+    sheet: BuildSheet
+    measurements: tuple[Measurement, ...]
+    inputs: tuple[InputFile, ...] = ()
+    findings: tuple[Finding, ...] = ()
+
+
+@dataclass(frozen=True, kw_only=True, slots=True)
+class FailedBuild:
+    """A folder that cannot be published, and why."""
+
+    key: str
+    folder: str
+    findings: tuple[Finding, ...]
+
+
+# --- figures ---------------------------------------------------------------------------------
+
+
+class Method(StrEnum):
+    """How loss follows from the sweeps that are there."""
+
+    HALVING = "halving"
+    BISECTION = "bisection"
+    BISECTION_LOAD = "bisection+load"
+    THREE_PAIRS = "three-pairs"
+    THREE_PAIRS_LOAD = "three-pairs+load"
+    TERMINATIONS = "terminations"
+    SERIES_RESISTOR = "series-resistor"
+    DIRECT = "direct"
+    LOAD_ONLY = "load-only"
+
+
+class Verdict(StrEnum):
+    """How a build compares with the baseline in one band."""
+
+    BETTER = "better"
+    WORSE = "worse"
+    SAME = "same within uncertainty"
+    NOT_COMPARABLE = "not comparable"
+    NOT_MEASURED = "not measured"
+
+
+@dataclass(frozen=True, kw_only=True, slots=True)
+class Band:
+    """A named range of frequency, edges in hertz."""
+
+    name: str
+    from_hz: float
+    to_hz: float
+
+    @property
+    def centre_hz(self) -> float:
+        """Middle of the band [Hz]."""
+        return (self.from_hz + self.to_hz) / 2
+
+
+@dataclass(frozen=True, kw_only=True, slots=True, eq=False)
+class Curves:
+    """What one method gives over frequency; each (..., F), draws leading; None: not measured.
+
+    `efficiency_ratio` : power into the load over power entering the low side [ratio].
+    `reflection_ratio` : abs(gamma_in)^2 at the low side, re the source resistance [ratio].
+    `halved_pair_ratio` : root of the through power ratio of two units back to back [ratio].
+    `native` : (F,) bool, true where a point was swept and not interpolated to a band edge.
+    """
+
+    frequency_hz: RealArray
+    native: NDArray[np.bool_]
+    efficiency_ratio: RealArray | None = None
+    reflection_ratio: RealArray | None = None
+    halved_pair_ratio: RealArray | None = None
+
+
+@dataclass(frozen=True, kw_only=True, slots=True)
+class Figure:
+    """One quantity in one band. The interval belongs to the mean; None: not known."""
+
+    mean: float | None
+    worst: float | None
+    centre: float | None
+    worst_at_hz: float | None
+    low95: float | None = None
+    high95: float | None = None
+
+
+@dataclass(frozen=True, kw_only=True, slots=True)
+class MeasuredBand:
+    """A band that the sweep covers, wholly or in part; `reason` says which part."""
+
+    band: Band
+    covered_hz: tuple[float, float]
+    points: int
+    interpolated: bool
+    figures: dict[str, Figure]
+    reason: str | None = None
+
+    @property
+    def partial(self) -> bool:
+        """True when the sweep ends inside the band."""
+        return self.covered_hz != (self.band.from_hz, self.band.to_hz)
+
+
+@dataclass(frozen=True, kw_only=True, slots=True)
+class NotMeasured:
+    """A band without figures, and why."""
+
+    band: Band
+    reason: str
+
+
+BandResult = MeasuredBand | NotMeasured
+
+
+@dataclass(frozen=True, kw_only=True, slots=True, eq=False)
+class MethodResult:
+    """What one method says of one unit, or of the mean of a pair.
+
+    `unit` is None where the figures are a mean over `units`. `load_ohm` is the load the figures
+    hold for; `reason` says why loss is missing where it is.
+    """
+
+    method: Method
+    unit: str | None
+    units: tuple[str, ...]
+    load_ohm: float
+    curves: Curves
+    bands: tuple[BandResult, ...]
+    reason: str | None = None
+
+
+@dataclass(frozen=True, kw_only=True, slots=True)
+class Bandwidth:
+    """A contiguous range in which a criterion holds; true flags: it ends with the sweep."""
+
+    criterion: str
+    from_hz: float
+    to_hz: float
+    from_sweep_edge: bool
+    to_sweep_edge: bool
+
+
+@dataclass(frozen=True, kw_only=True, slots=True)
+class Fitted:
+    """A quantity that the data themselves named; value None: they could not."""
+
+    quantity: str
+    of: str
+    value: float | None
+    u95: float | None = None
+    reason: str | None = None
+
+
+@dataclass(frozen=True, kw_only=True, slots=True)
+class BandComparison:
+    """This build minus the baseline in one band; None: not comparable, `reason` says why."""
+
+    band: str
+    heat_loss_db: float | None
+    heat_w: float | None
+    heat_loss_u95_db: float | None = None
+    verdict: Verdict | None = None
+    reason: str | None = None
+
+
+@dataclass(frozen=True, kw_only=True, slots=True)
+class Comparison:
+    """This build against the baseline build."""
+
+    key: str
+    name: str
+    bands: tuple[BandComparison, ...]
+
+
+@dataclass(frozen=True, kw_only=True, slots=True, eq=False)
+class BuildResult:
+    """Everything computed of one build; `chosen` is the result, `methods` all that was computed."""
+
+    build: Build
+    power_w: float
+    chosen: MethodResult
+    units: tuple[MethodResult, ...]
+    methods: tuple[MethodResult, ...]
+    bandwidths: tuple[Bandwidth, ...]
+    fitted: tuple[Fitted, ...]
+    findings: tuple[Finding, ...]

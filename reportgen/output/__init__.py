@@ -1,0 +1,1 @@
+"""To the disk, complete or not at all."""

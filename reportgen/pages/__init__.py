@@ -1,0 +1,1 @@
+"""From figures to text and pictures; computes nothing but the place of ink."""
