@@ -1,10 +1,10 @@
 """Everything that can go wrong on purpose, as one tree.
 
-    ReportError
-    +-- UsageError        the call itself is wrong: exit status 2
-    +-- InputRejected     one input (a sweep, a sidecar) cannot be used; carries its findings
-    +-- NotMeasurable     the sweeps of a build do not allow a figure; carries the reason
-    +-- OutputError       the pages cannot be written
+ReportError
++-- UsageError        the call itself is wrong: exit status 2
++-- InputRejected     one input (a sweep, a sidecar) cannot be used; carries its findings
++-- NotMeasurable     the sweeps of a build do not allow a figure; carries the reason
++-- OutputError       the pages cannot be written
 """
 
 from __future__ import annotations

@@ -323,7 +323,7 @@ class Sweep:
     @property
     def ports(self) -> int:
         """Number of ports, 1 or 2."""
-        return self.s.shape[-1]
+        return int(self.s.shape[-1])
 
 
 @dataclass(frozen=True, kw_only=True, slots=True, eq=False)

@@ -23,9 +23,24 @@ _EVERYWHERE_KHZ = {
 }
 
 _BY_REGION_KHZ = {
-    1: {"160 m": (1810.0, 1850.0), "80 m": (3500.0, 3800.0), "40 m": (7000.0, 7200.0), "6 m": (50000.0, 52000.0)},
-    2: {"160 m": (1800.0, 2000.0), "80 m": (3500.0, 4000.0), "40 m": (7000.0, 7300.0), "6 m": (50000.0, 54000.0)},
-    3: {"160 m": (1800.0, 2000.0), "80 m": (3500.0, 3900.0), "40 m": (7000.0, 7200.0), "6 m": (50000.0, 54000.0)},
+    1: {
+        "160 m": (1810.0, 1850.0),
+        "80 m": (3500.0, 3800.0),
+        "40 m": (7000.0, 7200.0),
+        "6 m": (50000.0, 52000.0),
+    },
+    2: {
+        "160 m": (1800.0, 2000.0),
+        "80 m": (3500.0, 4000.0),
+        "40 m": (7000.0, 7300.0),
+        "6 m": (50000.0, 54000.0),
+    },
+    3: {
+        "160 m": (1800.0, 2000.0),
+        "80 m": (3500.0, 3900.0),
+        "40 m": (7000.0, 7200.0),
+        "6 m": (50000.0, 54000.0),
+    },
 }
 
 
@@ -42,11 +57,18 @@ def amateur_bands(region: int) -> tuple[Band, ...]:
     Region 1 gives 1810 to 1850 kHz on 160 m; footnote 5.96 lets countries go on to 2000 kHz.
     """
     edges_khz = _EVERYWHERE_KHZ | _BY_REGION_KHZ[region]
-    bands = [Band(name=name, from_hz=low * 1e3, to_hz=high * 1e3) for name, (low, high) in edges_khz.items()]
+    bands = [
+        Band(name=name, from_hz=low * 1e3, to_hz=high * 1e3)
+        for name, (low, high) in edges_khz.items()
+    ]
     return tuple(sorted(bands, key=lambda band: band.from_hz))
 
 
 def known_bands(region: int, own: tuple[OwnBand, ...] = ()) -> tuple[Band, ...]:
     """Amateur bands of the region and the workshop's own, by frequency."""
-    added = [Band(name=band.name, from_hz=band.from_mhz * 1e6, to_hz=band.to_mhz * 1e6) for band in own]
-    return tuple(sorted([*amateur_bands(region), *added], key=lambda band: (band.from_hz, band.to_hz)))
+    added = [
+        Band(name=band.name, from_hz=band.from_mhz * 1e6, to_hz=band.to_mhz * 1e6) for band in own
+    ]
+    return tuple(
+        sorted([*amateur_bands(region), *added], key=lambda band: (band.from_hz, band.to_hz))
+    )
