@@ -155,7 +155,7 @@ QUANTITIES = (
         unit="dB",
         decimals=2,
         better=Better.LOWER,
-        meaning="half of the through loss of two units back to back, as commonly published; not the loss of a unit",
+        meaning="half of the through loss of two units back to back: the figure in common use",
         ratio=_halved_pair,
         value=lambda ratio, _: decibel_loss(ratio),
     ),
