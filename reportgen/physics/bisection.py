@@ -1,0 +1,176 @@
+"""One unit from two of them back to back, high sides joined.
+
+A pair of equal units is mirror-symmetric about the join, so its open- and short-circuited half
+is known from the pair alone. One complex number stays free, since an ideal transformer at the
+join cancels; a lumped section or a load sweep closes it.
+
+References
+----------
+.. [1] A. C. Bartlett, Phil. Mag. ser. 7, vol. 4, pp. 902-907, 1927 (cited from memory).
+"""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+
+import numpy as np
+
+from reportgen.model import ComplexArray, RealArray
+from reportgen.physics.network import (
+    Chain,
+    Impedance,
+    Scattering,
+    ideal_transformer,
+    impedance_of_reflection,
+)
+
+FIT_FROM_HZ = 3e6
+"""Below this a stray of a few picofarads leaves no trace in the data [Hz]."""
+
+FIT_BOUND_PF = 25.0
+"""Largest stray that the fit believes, either way [pF]."""
+
+_ITERATIONS = 12
+
+
+@dataclass(frozen=True, slots=True, eq=False)
+class Halved:
+    """A symmetric pair M = [[p, q], [r, p]] and what its half shows; each (..., F) complex.
+
+    `z_open_ohm`, `z_short_ohm`: input impedance of one unit, its high side open or shorted [ohm].
+    """
+
+    p: ComplexArray
+    q: ComplexArray
+    r: ComplexArray
+    z_open_ohm: ComplexArray
+    z_short_ohm: ComplexArray
+
+
+def halve_pair(pair: Scattering) -> Halved:
+    """Open- and short-circuited half of a pair, by the bisection theorem [1]_.
+
+    Parameters
+    ----------
+    pair : Scattering
+        Both units; made symmetric first by averaging with its port-reversed self.
+
+    Notes
+    -----
+    gamma_open = S11 + S21, gamma_short = S11 - S21; with Zopen = (P + 1)/R and
+    Zshort = (P - 1)/R the pair's chain matrix follows.
+    """
+    s11 = (pair.s11 + pair.s22) / 2
+    s21 = (pair.s21 + pair.s12) / 2
+    z_open = impedance_of_reflection(s11 + s21)
+    z_short = impedance_of_reflection(s11 - s21)
+    r = 2 / (z_open - z_short)
+    p = r * z_open - 1
+    return Halved(p, (p * p - 1) / r, r, z_open, z_short)
+
+
+def unit_of_pair(halved: Halved, t: ComplexArray) -> Chain:
+    """Chain matrix of one unit whose open-circuit voltage ratio is `t` = A [ratio].
+
+    Notes
+    -----
+    B = Q/(2t), C = R t/(P + 1), D = (P + 1)/(2t): the factorings of M = N N_reversed.
+    """
+    return Chain(t, halved.q / (2 * t), halved.r * t / (halved.p + 1), (halved.p + 1) / (2 * t))
+
+
+def section_arms(halved: Halved, capacitor_s: ComplexArray) -> tuple[ComplexArray, ComplexArray]:
+    """Series [ohm] and shunt [siemens] arm of the lumped section, behind the capacitor.
+
+    Parameters
+    ----------
+    halved : Halved
+    capacitor_s : (..., F) complex array
+        Admittance of what lies across the low side [siemens].
+
+    Notes
+    -----
+    Series arm on the low side, shunt arm behind it. The other order misses by 0.2 to 0.5 dB.
+    """
+    z = 1 / (1 / halved.z_short_ohm - capacitor_s)
+    z_open = 1 / (1 / halved.z_open_ohm - capacitor_s)
+    return z, 1 / (z_open - z)
+
+
+def section_ratio(
+    halved: Halved, capacitor_s: ComplexArray, turns_ratio: float | RealArray
+) -> ComplexArray:
+    """Voltage ratio A of a unit with the high side open, by the lumped section [ratio]."""
+    z, y = section_arms(halved, capacitor_s)
+    return np.asarray((1 + z * y) / turns_ratio)
+
+
+def close_by_section(
+    halved: Halved, capacitor_s: ComplexArray, turns_ratio: float | RealArray
+) -> Chain:
+    """One unit from a pair alone, closed by the lumped section and the turns ratio."""
+    z, y = section_arms(halved, capacitor_s)
+    return unit_of_pair(halved, 1 + z * y) @ ideal_transformer(turns_ratio)
+
+
+def load_squared(halved: Halved, z_in_ohm: ComplexArray) -> ComplexArray:
+    """2 t^2 Z from the impedance seen with the load Z on one unit's high side [ohm]."""
+    above = halved.p + 1
+    return np.asarray((halved.q - z_in_ohm * above) / (z_in_ohm * halved.r / above - 1))
+
+
+def ratio_by_load(squared: ComplexArray, load_ohm: Impedance, near: ComplexArray) -> ComplexArray:
+    """Voltage ratio A from a load sweep, of the two roots the one on the side of `near`."""
+    t = np.sqrt(squared / (2 * load_ohm))
+    return np.asarray(np.where((t * np.conj(near)).real < 0, -t, t))
+
+
+def fit_stray_f(
+    squared: ComplexArray,
+    section: ComplexArray,
+    resistance_ohm: float,
+    frequency_hz: RealArray,
+) -> RealArray:
+    """Capacitance across the load that makes load sweep and lumped section agree [F].
+
+    Parameters
+    ----------
+    squared : (..., F) complex array
+        2 t^2 Z of the load sweep [ohm].
+    section : (..., F) complex array
+        t by the lumped section [ratio].
+    resistance_ohm : float
+        The load's resistance [ohm].
+    frequency_hz : (F,) array
+        [Hz].
+
+    Returns
+    -------
+    (...) array
+        Difference between the capacitance at the load and that present at the open, or half
+        that of the pair's join [F]; negative values are allowed.
+
+    Notes
+    -----
+    Complex least squares of ln(t(C)/t_section) above 3 MHz, its mean log-magnitude removed since
+    the turns ratio and the load's resistance are only nearly known. t(C) goes with
+    sqrt(1/R + jwC), so a few Gauss-Newton steps from C = 0 settle it.
+    """
+    used = frequency_hz >= FIT_FROM_HZ
+    omega = 2 * np.pi * frequency_hz[used]
+    conductance = 1 / resistance_ohm
+    root = np.sqrt(squared[..., used] * conductance / 2) / section[..., used]
+    root = np.where(root.real < 0, -root, root)
+    misfit_at_zero = np.log(root)
+    stray = np.zeros(misfit_at_zero.shape[:-1])
+    for _ in range(_ITERATIONS):
+        admittance = conductance + 1j * omega * stray[..., None]
+        misfit = _level_free(misfit_at_zero + 0.5 * np.log(admittance / conductance))
+        slope = _level_free(0.5j * omega / admittance)
+        step = np.sum((misfit * slope.conj()).real, axis=-1) / np.sum(np.abs(slope) ** 2, axis=-1)
+        stray = np.clip(stray - step, -FIT_BOUND_PF * 1e-12, FIT_BOUND_PF * 1e-12)
+    return np.asarray(stray)
+
+
+def _level_free(log_ratio: ComplexArray) -> ComplexArray:
+    return log_ratio - log_ratio.real.mean(axis=-1, keepdims=True)

@@ -1,0 +1,1 @@
+"""A workbench in numbers: units of known truth, an analyzer with known faults."""
