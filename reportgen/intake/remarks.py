@@ -1,0 +1,110 @@
+"""What a reader has to say about one sweep file, collected until the file is read or given up."""
+
+from __future__ import annotations
+
+import unicodedata
+from collections.abc import Sequence
+from typing import NoReturn
+
+from reportgen.errors import InputRejected
+from reportgen.model import Finding, Severity
+
+_QUOTE_LENGTH = 80
+_LISTED = 5
+_UNSEEN = {"Cc", "Cf", "Cs", "Co", "Cn", "Zl", "Zp"}
+
+
+class Remarks:
+    """Findings about one file in the order in which they were made.
+
+    Parameters
+    ----------
+    file : str
+        Name of the file as the findings give it.
+    """
+
+    def __init__(self, file: str) -> None:
+        self._file = file
+        self._found: list[Finding] = []
+
+    @property
+    def findings(self) -> tuple[Finding, ...]:
+        """All findings so far."""
+        return tuple(self._found)
+
+    @property
+    def rejected(self) -> bool:
+        """Whether one of them is an error."""
+        return any(finding.severity is Severity.ERROR for finding in self._found)
+
+    def note(self, code: str, message: str, remedy: str, line: int | None = None) -> None:
+        """Something worth knowing."""
+        self._add(Severity.NOTE, code, message, remedy, line)
+
+    def warn(self, code: str, message: str, remedy: str, line: int | None = None) -> None:
+        """Something that may make the figures wrong."""
+        self._add(Severity.WARNING, code, message, remedy, line)
+
+    def error(self, code: str, message: str, remedy: str, line: int | None = None) -> None:
+        """Something that keeps the file from being used; reading may go on to find more."""
+        self._add(Severity.ERROR, code, message, remedy, line)
+
+    def reject(self, code: str, message: str, remedy: str, line: int | None = None) -> NoReturn:
+        """Something after which nothing else in the file makes sense.
+
+        Raises
+        ------
+        InputRejected
+            Always.
+        """
+        self.error(code, message, remedy, line)
+        raise InputRejected(self.findings)
+
+    def stop_if_rejected(self) -> None:
+        """Give the file up when an error was found.
+
+        Raises
+        ------
+        InputRejected
+            With every finding so far.
+        """
+        if self.rejected:
+            raise InputRejected(self.findings)
+
+    def _add(
+        self, severity: Severity, code: str, message: str, remedy: str, line: int | None
+    ) -> None:
+        self._found.append(
+            Finding(
+                severity=severity,
+                code=code,
+                message=message,
+                remedy=remedy,
+                file=self._file,
+                line=line,
+            )
+        )
+
+
+def quoted(text: str) -> str:
+    r"""Foreign text as a message shows it: unseen characters as `\u202e`, cut at 80 characters."""
+    shown = "".join(_visible(character) for character in text[: _QUOTE_LENGTH + 1])
+    if len(shown) > _QUOTE_LENGTH:
+        shown = shown[: _QUOTE_LENGTH - 3] + "..."
+    return f'"{shown}"'
+
+
+def _visible(character: str) -> str:
+    if unicodedata.category(character) in _UNSEEN:
+        return character.encode("unicode_escape").decode("ascii")
+    return character
+
+
+def listed_lines(lines: Sequence[int]) -> str:
+    """Line numbers in words: `line 3`, `lines 3, 4 and 9`, `lines 3, 4, 5, 6, 7 and 12 more`."""
+    numbers = [str(int(line)) for line in lines[:_LISTED]]
+    if len(lines) > _LISTED:
+        numbers.append(f"{len(lines) - _LISTED} more")
+    if len(numbers) == 1:
+        return f"line {numbers[0]}"
+    return f"lines {', '.join(numbers[:-1])} and {numbers[-1]}"

@@ -1,0 +1,323 @@
+"""Numbers and foreign text as they stand on pages and in the terminal: the only place that rounds.
+
+Rounding is meaning. A figure never crosses a limit by being rounded, 0 and 100 % appear only
+when they are exactly that, and where an uncertainty is known the digits follow it.
+
+References
+----------
+.. [1] JCGM 100:2008, 7.2.6: u95 to two significant digits at most, the figure to the same place.
+.. [2] Unicode Standard Annex 44, general categories; DerivedCoreProperties.txt,
+       Default_Ignorable_Code_Point.
+"""
+
+from __future__ import annotations
+
+import math
+import re
+import unicodedata
+from collections.abc import Iterable, Sequence
+from decimal import ROUND_CEILING, ROUND_FLOOR, ROUND_HALF_EVEN, Context, Decimal
+from itertools import count
+
+from reportgen.physics.quantities import Quantity
+
+DASH = "–"
+MINUS = "−"
+INFINITE = "∞"
+NOT_MEASURED = "not measured"
+LONGEST_TEXT = 2000
+
+_EXACT = Context(prec=800)
+_FIGURE_SPACE = "\u2007"
+_POINT_SPACE = "\u00a0"
+_POINT_LANGUAGES = frozenset({"en", "he", "hi", "ja", "ko", "ms", "th", "zh"})  # common practice
+
+
+# --- numbers ---------------------------------------------------------------------------------
+
+
+def number(
+    value: float | None,
+    decimals: int,
+    *,
+    u95: float | None = None,
+    limits: Sequence[float] = (),
+    marks: Sequence[float] = (0.0,),
+    locale: str = "en",
+    signed: bool = False,
+) -> str:
+    """A number as text, rounded so that it says nothing the number does not.
+
+    Parameters
+    ----------
+    value : float or None
+        None and nan print as a dash, inf as the sign for it.
+    decimals : int
+        Places after the point where no uncertainty is known.
+    u95 : float, optional
+        Half-width of the 95 % interval: its two significant digits set the places [1]_.
+    limits : sequence of float
+        Values whose side the text must not change.
+    marks : sequence of float
+        Values that appear only when exact; what would round to one prints as `< 0.01`, `> 99.9`.
+    locale : str
+        Language tag; sets the decimal sign.
+    signed : bool
+        Prints a plus sign too: for differences.
+    """
+    if value is None or math.isnan(value):
+        return DASH
+    if math.isinf(value):
+        return INFINITE if value > 0 else MINUS + INFINITE
+    exact, fixed = _decimal(value), [_decimal(limit) for limit in limits]
+    kept = [_decimal(mark) for mark in marks]
+    if not _known(u95):
+        return _plain_number(exact, decimals, fixed, kept, locale, signed)
+    return _written(_on_its_side(exact, _places(u95), fixed + kept), locale, signed)
+
+
+def quantity_number(
+    quantity: Quantity,
+    value: float | None,
+    *,
+    u95: float | None = None,
+    limits: Sequence[float] = (),
+    locale: str = "en",
+    signed: bool = False,
+) -> str:
+    """A reported quantity as text without its unit; ratios as per cent where the table says so.
+
+    `u95` and `limits` are in the unit of `value`, before the per cent.
+    """
+    if not quantity.percent:
+        marks = [1.0] if quantity.key == "swr" and not signed else [0.0]
+        return number(
+            value,
+            quantity.decimals,
+            u95=u95,
+            limits=limits,
+            marks=marks,
+            locale=locale,
+            signed=signed,
+        )
+    return number(
+        percent_of(value),
+        quantity.decimals,
+        u95=percent_of(u95),
+        limits=[float(_decimal(limit).scaleb(2)) for limit in limits],
+        marks=[0.0, 100.0],
+        locale=locale,
+        signed=signed,
+    )
+
+
+def percent_of(ratio: float | None) -> float | None:
+    """A ratio in per cent, free of the dust that multiplying by 100 leaves."""
+    if ratio is None or not math.isfinite(ratio):
+        return ratio
+    return float(_decimal(ratio).scaleb(2, _EXACT))
+
+
+def with_unit(text: str, unit: str) -> str:
+    """A number and its unit, held together; a dash stays alone."""
+    return f"{text}\u00a0{unit}" if unit and text != DASH else text
+
+
+def plus_minus(
+    value: float | None, u95: float, decimals: int, *, percent: bool = False, locale: str = "en"
+) -> str:
+    """A figure with its 95 % half-width, both to the same place: `0.651 ± 0.045`."""
+    scale = percent_of if percent else lambda same: same
+    marks = [0.0, 100.0] if percent else [0.0]
+    figure = number(scale(value), decimals, u95=scale(u95), marks=marks, locale=locale)
+    width = number(scale(u95), decimals, u95=scale(u95), locale=locale)
+    return f"{figure} ± {width}"
+
+
+def interval(low: float, high: float, decimals: int, *, locale: str = "en") -> str:
+    """A 95 % interval, rounded outwards so that it never shrinks: `0.60 to 0.70`."""
+    places = _places((high - low) / 2) if _known((high - low) / 2) else decimals
+    return " to ".join(
+        _written(_decimal(end).quantize(_step(places), way, _EXACT), locale, False)
+        if math.isfinite(end)
+        else number(end, decimals)
+        for end, way in ((low, ROUND_FLOOR), (high, ROUND_CEILING))
+    )
+
+
+def _plain_number(
+    exact: Decimal,
+    decimals: int,
+    limits: list[Decimal],
+    marks: list[Decimal],
+    locale: str,
+    signed: bool,
+) -> str:
+    step = _step(decimals)
+    nearest = exact.quantize(step, ROUND_HALF_EVEN, _EXACT)
+    if nearest in marks and exact != nearest:
+        sign, edge = ("<", nearest + step) if exact > nearest else (">", nearest - step)
+        return f"{sign}\u00a0{_written(edge, locale, signed)}"
+    return _written(_on_its_side(exact, decimals, limits), locale, signed)
+
+
+def _on_its_side(exact: Decimal, places: int, limits: list[Decimal]) -> Decimal:
+    """The nearest decimal on the value's own side of every limit; more places where none is."""
+    for more in count(places):
+        for way in (ROUND_HALF_EVEN, ROUND_FLOOR, ROUND_CEILING):
+            rounded = exact.quantize(_step(more), way, _EXACT)
+            if all(_side(rounded, limit) == _side(exact, limit) for limit in limits):
+                return rounded
+    raise AssertionError("every float is a decimal of finite length")
+
+
+def _side(value: Decimal, limit: Decimal) -> int:
+    return (value > limit) - (value < limit)
+
+
+def _decimal(value: float) -> Decimal:
+    """The shortest decimal that reads back as this float: what a person typed."""
+    return Decimal(repr(float(value)))
+
+
+def _known(u95: float | None) -> bool:
+    return u95 is not None and math.isfinite(u95) and u95 > 0
+
+
+def _step(places: int) -> Decimal:
+    return Decimal(1).scaleb(-places)
+
+
+def _places(u95: float | None) -> int:
+    """Places after the point that show two significant digits."""
+    assert u95 is not None
+    two_digits = Context(prec=2, rounding=ROUND_HALF_EVEN).plus(_decimal(u95))
+    return 1 - two_digits.adjusted()
+
+
+def _written(value: Decimal, locale: str, signed: bool) -> str:
+    text = format(abs(value), "f").replace(".", decimal_sign(locale))
+    if value < 0:
+        return MINUS + text
+    return "+" + text if signed and value > 0 else text
+
+
+def decimal_sign(locale: str) -> str:
+    """The decimal sign of a language tag: a point in English, a comma in most of Europe."""
+    language = re.split("[-_]", locale.lower())[0]
+    return "." if language in _POINT_LANGUAGES else ","
+
+
+def aligned(texts: Sequence[str], locale: str = "en") -> tuple[str, ...]:
+    """Texts of one column, padded so that right-aligned tabular figures meet at the point."""
+    sign = decimal_sign(locale)
+    longest = max((_fraction_length(text, sign) for text in texts), default=0)
+    return tuple(
+        text + _padding(_fraction_length(text, sign), longest) if _ends_in_digit(text) else text
+        for text in texts
+    )
+
+
+def _ends_in_digit(text: str) -> bool:
+    return text[-1:].isdecimal()
+
+
+def _fraction_length(text: str, sign: str) -> int:
+    return len(text.rpartition(sign)[2]) if sign in text and _ends_in_digit(text) else 0
+
+
+def _padding(length: int, longest: int) -> str:
+    point = _POINT_SPACE if longest and not length else ""
+    return point + _FIGURE_SPACE * (longest - length)
+
+
+# --- frequencies -----------------------------------------------------------------------------
+
+
+def megahertz(hz: float, *, locale: str = "en", places: int = 4) -> str:
+    """A frequency in megahertz without its unit, as the trade writes it: 7.0, 14.35, 5.3515."""
+    return _megahertz(_decimal(hz).scaleb(-6), places, locale)
+
+
+def megahertz_range(from_hz: float, to_hz: float, *, locale: str = "en") -> str:
+    """Two edges in megahertz with equally many places: 10.10 to 10.15."""
+    edges = [
+        _decimal(hz).scaleb(-6).quantize(_step(4), ROUND_HALF_EVEN) for hz in (from_hz, to_hz)
+    ]
+    places = max(_places_needed(edge) for edge in edges)
+    return DASH.join(_written(edge.quantize(_step(places)), locale, False) for edge in edges)
+
+
+def bandwidth_range(from_hz: float, to_hz: float, *, locale: str = "en") -> str:
+    """The edges of a range that was found, rounded inwards: nothing shown lies outside it."""
+    low, high = (_decimal(hz).scaleb(-6) for hz in (from_hz, to_hz))
+    texts = [
+        _written(edge.quantize(_step(max(0, 2 - edge.adjusted())), way), locale, False)
+        for edge, way in ((low, ROUND_CEILING), (high, ROUND_FLOOR))
+    ]
+    return DASH.join(texts)
+
+
+def _megahertz(megahertz: Decimal, places: int, locale: str) -> str:
+    edge = megahertz.quantize(_step(places), ROUND_HALF_EVEN)
+    return _written(edge.quantize(_step(_places_needed(edge))), locale, False)
+
+
+def _places_needed(value: Decimal) -> int:
+    exponent = value.normalize().as_tuple().exponent
+    return max(1, -exponent if isinstance(exponent, int) else 1)
+
+
+# --- text that came with the data --------------------------------------------------------------
+
+_INVISIBLE_CATEGORIES = frozenset({"Cc", "Cf", "Cs", "Co", "Cn", "Zl", "Zp"})
+_INVISIBLE_RANGES = (
+    (0x034F, 0x034F),
+    (0x115F, 0x1160),
+    (0x17B4, 0x17B5),
+    (0x180B, 0x180F),
+    (0x2800, 0x2800),  # not ignorable by [2], and blank all the same
+    (0x3164, 0x3164),
+    (0xFE00, 0xFE0F),
+    (0xFFA0, 0xFFA0),
+    (0xE0000, 0xE0FFF),
+)
+_BLANKS = re.compile(r"[\t\r\n\f\v ]+")
+_LINE_END = re.compile(r"\r\n?|\n")
+_STACKED_MARKS = 3
+
+
+def clean_text(text: str, *, lines: bool = False) -> str:
+    """Foreign text made safe to look at: what cannot be seen is shown as `[U+202E]`.
+
+    Control, format, bidirectional, private and unassigned characters and blank look-alikes
+    become visible, runs of blanks one space, piles of combining marks are cut at three. `lines`
+    keeps line ends. What is longer than 2000 characters is cut, marked by an ellipsis.
+    """
+    if lines:
+        return "\n".join(clean_text(line) for line in _LINE_END.split(text[:LONGEST_TEXT]))
+    cut = text if len(text) <= LONGEST_TEXT else text[: LONGEST_TEXT - 1] + "…"
+    composed = unicodedata.normalize("NFC", _BLANKS.sub(" ", cut))
+    return "".join(_visible(_unpiled(composed))).strip()
+
+
+def _unpiled(text: str) -> Iterable[str]:
+    marks = 0
+    for character in text:
+        marks = marks + 1 if unicodedata.category(character) in ("Mn", "Me") else 0
+        if marks <= _STACKED_MARKS:
+            yield character
+
+
+def _visible(characters: Iterable[str]) -> Iterable[str]:
+    for character in characters:
+        if unicodedata.category(character) == "Zs":
+            yield " "
+        else:
+            yield f"[U+{ord(character):04X}]" if _invisible(character) else character
+
+
+def _invisible(character: str) -> bool:
+    if unicodedata.category(character) in _INVISIBLE_CATEGORIES:
+        return True
+    return any(low <= ord(character) <= high for low, high in _INVISIBLE_RANGES)

@@ -1,0 +1,141 @@
+"""What the sentences and key figures are about: the bands of a result, and their extremes."""
+
+from __future__ import annotations
+
+from collections.abc import Iterable, Sequence
+from dataclasses import dataclass
+from math import isfinite, nan
+
+import numpy as np
+
+from reportgen.model import (
+    Band,
+    BenchSheet,
+    BuildResult,
+    Curves,
+    Figure,
+    Limits,
+    MeasuredBand,
+    MethodResult,
+)
+from reportgen.physics.quantities import BY_KEY, QUANTITIES, Better
+
+
+@dataclass(frozen=True, kw_only=True, slots=True)
+class BandValue:
+    """A quantity's value in one band."""
+
+    band: Band
+    value: float
+    at_hz: float | None = None
+
+
+def measured_bands(method: MethodResult) -> tuple[MeasuredBand, ...]:
+    """The bands that have figures."""
+    return tuple(band for band in method.bands if isinstance(band, MeasuredBand))
+
+
+def figure_of(band: MeasuredBand, key: str) -> Figure | None:
+    """A quantity's figure in a band; None where it was not measured."""
+    figure = band.figures.get(key)
+    return figure if figure is not None and usable(figure.mean) else None
+
+
+def usable(value: float | None) -> bool:
+    """True for a number that can be printed and drawn."""
+    return value is not None and isfinite(value)
+
+
+def has_loss(method: MethodResult) -> bool:
+    """True when at least one band has an efficiency."""
+    return any(figure_of(band, "efficiency_ratio") for band in measured_bands(method))
+
+
+def means(method: MethodResult, key: str) -> tuple[BandValue, ...]:
+    """Means over each band, in the order of the bands."""
+    pairs = ((band, figure_of(band, key)) for band in measured_bands(method))
+    return tuple(
+        BandValue(band=band.band, value=figure.mean)
+        for band, figure in pairs
+        if figure is not None and figure.mean is not None
+    )
+
+
+def worsts(method: MethodResult, key: str) -> tuple[BandValue, ...]:
+    """Worst values within each band, in the order of the bands; infinite ones are kept."""
+    pairs = ((band, band.figures.get(key)) for band in measured_bands(method))
+    return tuple(
+        BandValue(band=band.band, value=figure.worst, at_hz=figure.worst_at_hz)
+        for band, figure in pairs
+        if figure is not None and figure.worst is not None and figure.worst == figure.worst
+    )
+
+
+def worst_of(values: Sequence[BandValue], key: str) -> BandValue | None:
+    """The worst of several bands, in the quantity's own sense."""
+    pick = min if BY_KEY[key].better is Better.HIGHER else max
+    return pick(values, key=lambda one: one.value) if values else None
+
+
+def best_of(values: Sequence[BandValue], key: str) -> BandValue | None:
+    """The best of several bands, in the quantity's own sense."""
+    pick = max if BY_KEY[key].better is Better.HIGHER else min
+    return pick(values, key=lambda one: one.value) if values else None
+
+
+def mean_over_bands(
+    method: MethodResult, key: str, power_w: float, names: Iterable[str] | None = None
+) -> float | None:
+    """The quantity that follows from the mean efficiency of the bands, each counted once.
+
+    Parameters
+    ----------
+    key : str
+        `efficiency_ratio` or what follows from it: `heat_loss_db`, `heat_w`.
+    names : iterable of str, optional
+        The bands that count; None where one of them is missing. Default: all measured ones.
+    """
+    found = {one.band.name: one.value for one in means(method, "efficiency_ratio")}
+    wanted = list(found) if names is None else list(names)
+    if not wanted or any(name not in found for name in wanted):
+        return None
+    ratio = np.array([float(np.mean([found[name] for name in wanted]))])
+    value = float(BY_KEY[key].value(ratio, power_w)[0])
+    return value if isfinite(value) else None
+
+
+def limits_by_quantity(bench: BenchSheet, band: str, power_w: float) -> dict[str, float]:
+    """What the workshop's limits of one band mean for every reported quantity."""
+    limits = _limits_of(bench, band)
+    efficiency = None if limits.efficiency_percent is None else limits.efficiency_percent / 100
+    reflection = None if limits.swr is None else ((limits.swr - 1) / (limits.swr + 1)) ** 2
+    curves = Curves(
+        frequency_hz=np.array([nan]),
+        native=np.array([False]),
+        efficiency_ratio=None if efficiency is None else np.array([efficiency]),
+        reflection_ratio=None if reflection is None else np.array([reflection]),
+    )
+    ratios = {quantity.key: quantity.ratio(curves) for quantity in QUANTITIES}
+    found = {
+        key: float(BY_KEY[key].value(ratio, power_w)[0])
+        for key, ratio in ratios.items()
+        if ratio is not None
+    }
+    if limits.swr is not None:
+        found["swr"] = limits.swr
+    return {key: value for key, value in found.items() if isfinite(value)}
+
+
+def _limits_of(bench: BenchSheet, band: str) -> Limits:
+    own, common = bench.limits.get(band, Limits()), bench.limits.get("all", Limits())
+    return Limits(
+        swr=common.swr if own.swr is None else own.swr,
+        efficiency_percent=(
+            common.efficiency_percent if own.efficiency_percent is None else own.efficiency_percent
+        ),
+    )
+
+
+def is_simulated(result: BuildResult) -> bool:
+    """True when the record says that the sweeps were simulated."""
+    return str(result.build.sheet.record.get("data", "")).strip().lower() == "simulated"
