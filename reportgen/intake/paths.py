@@ -18,8 +18,8 @@ from reportgen.model import Finding, Severity
 KEY_LENGTH = 60
 _HASH_LENGTH = 8
 _UNSEEN = {"Cc", "Cf", "Cs", "Co", "Cn"}
-_DEVICES = {"con", "prn", "aux", "nul"} | {f"{port}{n}" for port in ("com", "lpt") for n in "0123456789"}
-# `published/index` beside `published/index.html`: servers that drop the suffix cannot tell them apart.
+_DEVICES = {"con", "prn", "aux", "nul"} | {f"{p}{n}" for p in ("com", "lpt") for n in range(10)}
+# `index` beside `index.html`: servers that drop the suffix cannot tell them apart
 _BESIDE = {"index", "results", "manifest"}
 
 
@@ -80,10 +80,8 @@ def build_keys(folders: Iterable[str], *, root_name: str) -> dict[str, str]:
     plain = {folder: _slug(root_name if folder == "." else folder) for folder in folders}
     keys = dict(plain)
     while clashing := {key for key, count in Counter(keys.values()).items() if count > 1}:
-        hashed = {folder: _hashed(plain[folder], folder) for folder in keys if keys[folder] in clashing}
-        if hashed.items() <= keys.items():
-            raise ValueError("two folders with the same hash")
-        keys |= hashed
+        alike = [folder for folder in keys if keys[folder] in clashing]
+        keys |= {folder: _hashed(plain[folder], folder) for folder in alike}
     return keys
 
 
@@ -132,7 +130,7 @@ def read_bytes(root: Path, relative: str, *, file: str, at_most: int) -> bytes:
     except OSError as error:
         raise _rejected(file, *_reason(error)) from error
     if len(content) > at_most:
-        message = f"the file is larger than {at_most // 1_000_000} MB, the most that is read"
+        message = f"the file is larger than {at_most // 2**20} MB, the most that is read"
         raise _rejected(file, "too-large", message, "sweep fewer points or split the file")
     return content
 

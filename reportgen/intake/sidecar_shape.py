@@ -20,8 +20,9 @@ from annotated_types import Ge, Gt, Le, Len, Lt
 from pydantic import TypeAdapter, ValidationError
 
 from reportgen.intake.sidecar_text import Path, Problem, Tree, is_toml_integer, shown_value
+from reportgen.model import Sheet
 
-SheetT = TypeVar("SheetT")
+SheetT = TypeVar("SheetT", bound=Sheet)
 
 _UNITS = {
     "ohm": "ohms",
@@ -41,8 +42,9 @@ _SANITY_BOUND = 1e6  # a cap this high is only worth mentioning to who exceeds i
 
 def check_shape(kind: type[SheetT], tree: Tree) -> tuple[SheetT | None, list[Problem]]:
     """The sheet that a tree of TOML tables describes, or None and everything wrong with it."""
+    hint: Any = kind
     try:
-        return _adapter(kind).validate_json(_as_json(kind, tree)), []
+        return _adapter(hint).validate_json(_as_json(hint, tree)), []
     except ValidationError as error:
         found = [_problem(kind, tree, detail["loc"], detail["type"]) for detail in error.errors()]
     # a value that may be of several kinds is complained about once for each kind
@@ -101,9 +103,9 @@ def _kinds(hint: Any) -> list[Any]:
 
 def _inner(hint: Any, part: str | int) -> Any:
     """Hint of what stands under a key or at a position of a value; None where nothing may."""
-    hint = _bare(hint)
+    hint = bare = _bare(hint)
     if is_dataclass(hint) and isinstance(part, str):
-        return _hints(hint).get(part)
+        return _hints(bare).get(part)
     if get_origin(hint) is tuple and isinstance(part, int):
         return get_args(hint)[0]
     if get_origin(hint) is dict and isinstance(part, str):
@@ -185,7 +187,7 @@ def _remedy(key: str, value: Any, hint: Any) -> str:
     if get_origin(hint) is tuple:
         return _list_remedy(key, hint)
     if hint is str:
-        return "write a text of that length" if isinstance(value, str) else "put it in quotes"
+        return "write a text of that length" if isinstance(value, str) else "write it in quotes"
     if isinstance(value, str):
         return "write the bare number, without quotes and without a unit"
     return "correct the value"
@@ -267,7 +269,8 @@ def _range(limits: list[Any], value: object) -> str:
             words.append(f"up to {limit.le:g}")
         elif isinstance(limit, Lt) and _worth_saying(limit.lt, value):
             words.append(f"below {limit.lt:,.0f}".replace(",", " "))
-    return f" {' and '.join(words)}" if words else ""
+    joint = " " if words and words[0].startswith("from") else " and "
+    return f" {joint.join(words)}" if words else ""
 
 
 def _worth_saying(bound: Any, value: object) -> bool:

@@ -5,6 +5,7 @@ from __future__ import annotations
 import re
 import tomllib
 import unicodedata
+from collections import Counter
 from datetime import date, time
 from typing import Any, NamedTuple
 
@@ -38,6 +39,10 @@ _COMPLAINTS = {
     "Invalid value": "the value is missing or none that TOML knows",
 }
 
+# the beginning of a line that opens a table, or gives a key its value
+_HEADING = re.compile(r"\s*(\[\[?)([^\[\]#]+)\]")
+_KEY = re.compile(r"""\s*([\w.-]+|"[^"]+")\s*=""")
+
 Path = tuple[str | int, ...]
 Tree = dict[str, Any]
 
@@ -50,7 +55,7 @@ class Problem(NamedTuple):
     message: str
     remedy: str
 
-    def finding(self, file: str) -> Finding:
+    def finding(self, file: str, line: int | None = None) -> Finding:
         """The problem as an error of the file."""
         return Finding(
             severity=Severity.ERROR,
@@ -58,6 +63,7 @@ class Problem(NamedTuple):
             message=self.message,
             remedy=self.remedy,
             file=file,
+            line=line,
             key=key_path(self.path),
         )
 
@@ -106,7 +112,7 @@ def _cut(text: str) -> str:
 
 def is_toml_integer(value: int) -> bool:
     """Whether the integer fits into the 64 bits that TOML promises."""
-    return -(2 ** (_INTEGER_BITS - 1)) <= value < 2 ** (_INTEGER_BITS - 1)
+    return (value if value >= 0 else ~value).bit_length() < _INTEGER_BITS
 
 
 # --- reading ---------------------------------------------------------------------------------
@@ -168,6 +174,36 @@ def _syntax_error(error: Exception, text: str, file: str) -> InputRejected:
     return _rejected(file, "toml-syntax", f"not valid TOML ({place}): {complaint}", remedy, line)
 
 
+def line_of(path: Path, text: str) -> int | None:
+    """Line of the key at a path, or of the last heading on the way to it; None when unsure.
+
+    Only headings and keys that begin a line are looked at; with a text of several lines in the
+    file there could be lines that only look like them.
+    """
+    if '"""' in text or "'''" in text:
+        return None
+    places: dict[str, int] = {}
+    heading = ""
+    seen: Counter[str] = Counter()
+    for number, line in enumerate(text.split("\n"), start=1):
+        if match := _HEADING.match(line):
+            heading = _spelled(match[2])
+            if match[1] == "[[":
+                seen[heading] += 1
+                heading += f"[{seen[heading]}]"
+            places.setdefault(heading, number)
+        elif match := _KEY.match(line):
+            name = _spelled(match[1])
+            places.setdefault(f"{heading}.{name}" if heading else name, number)
+    ends = (key_path(path[:end]) for end in range(len(path), 0, -1))
+    return next((places[end] for end in ends if end in places), None)
+
+
+def _spelled(name: str) -> str:
+    """A dotted name as `key_path` spells it, when it is written without needless quotes."""
+    return re.sub(r"\s*\.\s*", ".", name.strip())
+
+
 def _line(text: str, position: int) -> int:
     return text.count("\n", 0, position) + 1
 
@@ -178,8 +214,8 @@ def _depth(tree: Tree) -> int:
     level: list[Any] = [tree]
     while level:
         depth += 1
-        inner = [item for node in level for item in (node.values() if isinstance(node, dict) else node)]
-        level = [item for item in inner if isinstance(item, dict | list)]
+        nodes = [list(node.values()) if isinstance(node, dict) else node for node in level]
+        level = [item for node in nodes for item in node if isinstance(item, dict | list)]
     return depth
 
 
