@@ -10,7 +10,7 @@ from numpy.typing import NDArray
 
 from reportgen.intake.number_lines import NumberLine, read_number_lines
 from reportgen.intake.remarks import Remarks, listed_lines
-from reportgen.intake.sweep_lines import Line, SweepLines
+from reportgen.intake.sweep_text import Line, SweepLines
 from reportgen.model import RealArray
 
 PORTS_OF_COLUMNS = {3: 1, 9: 2}
@@ -38,6 +38,11 @@ class Rows:
         """Number of ports, 1 or 2; 0 without rows."""
         return PORTS_OF_COLUMNS.get(self.values.shape[1], 0)
 
+    @property
+    def frequency(self) -> RealArray:
+        """As it stands in the file [unit of the option line]."""
+        return self.values[:, :1].ravel()
+
 
 NO_ROWS = Rows(np.empty((0, 0)), np.empty(0, dtype=np.int64))
 
@@ -48,13 +53,15 @@ def read_rows(
     """The table of numbers; empty when an error was remarked."""
     if not lines.data:
         remarks.error(
-            "no-data", "no data rows: nothing but comments or an option line", "sweep again"
+            "no-data",
+            "no data rows, nothing but comments or an option line; expected numbers",
+            "sweep again",
         )
         return NO_ROWS
     rows = _read_table(lines.data) if decimal == "." else None
     if rows is None:
         rows = _read_line_by_line(lines, remarks, decimal)
-    elif lines.ends_open:
+    if lines.ends_open and len(rows) and rows.lines[-1] == lines.data[-1].number:
         _remark_short_end(lines.data, remarks)
     if len(rows) > max_points:
         remarks.error(
@@ -137,7 +144,8 @@ def _remark_column_count(first: NumberLine, remarks: Remarks) -> None:
     else:
         remarks.error(
             "column-count",
-            f"the first data line has {first.count} numbers; expected 3 (one port) or 9 (two ports)",
+            f"the first data line has {first.count} numbers; "
+            "expected 3 (one port) or 9 (two ports)",
             "export one or two ports as a Touchstone version 1 file",
             first.line.number,
         )
@@ -152,7 +160,7 @@ def _without_noise(
         begin -= 1
     if sum(pattern) == NOISE_COLUMNS or begin in (0, len(read)) or begin % len(pattern):
         return read
-    highest = max((row.values[0] for row in read[: begin : len(pattern)] if row.values))
+    highest = max(row.values[0] for row in read[: begin : len(pattern)] if row.values)
     if sum(pattern) != max(PORTS_OF_COLUMNS) or read[begin].values[0] > highest:
         return read
     remarks.note(

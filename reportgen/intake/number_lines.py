@@ -1,21 +1,65 @@
-"""Data lines read one by one: the numbers on each, and a remark for what is none.
+"""What counts as a number, and data lines read one by one with a remark for what is none.
 
 This is the slow way, taken when a file is not a plain table of numbers.
 """
 
 from __future__ import annotations
 
+import math
 import re
 from collections.abc import Iterable
 from dataclasses import dataclass, replace
 
 from reportgen.intake.remarks import Remarks, listed_lines, quoted
-from reportgen.intake.strict_numbers import has_d_exponent, is_decimal_comma, read_number
-from reportgen.intake.sweep_lines import Line, SweepLines
+from reportgen.intake.sweep_text import Line, SweepLines
 
 _BLANKS = re.compile(r"[ \t]+")
 _BLANKS_OR_SEMICOLON = re.compile(r"[ \t]*;[ \t]*|[ \t]+")
 _BEYOND_PLAIN = re.compile(r"[^0-9+\-.eE \t]")
+_NUMBER = re.compile(r"[+-]?(?:\d+(?:\.\d*)?|\.\d+)(?:[eEdD][+-]?\d+)?", re.ASCII)
+_COMMA_NUMBER = re.compile(r"[+-]?(?:\d+(?:,\d*)?|,\d+)(?:[eEdD][+-]?\d+)?", re.ASCII)
+_NO_VALUE = re.compile(
+    r"(?P<sign>[+-]?)(?:(?P<infinite>inf|infinity|1\.?#inf0*)"
+    r"|nan(?:\([a-z0-9]*\))?|1\.?#(?:ind|qnan|snan)0*)",
+    re.ASCII | re.IGNORECASE,
+)
+
+
+def read_number(token: str, decimal: str = ".") -> float | None:
+    """Value of a token, nan or infinite where it is written so; None when it is no number.
+
+    Takes ASCII digits, one decimal sign, and an exponent after E or D. What other readers let
+    pass (`1_000`, digits of other scripts, a Unicode minus) is no number.
+
+    Parameters
+    ----------
+    token : str
+        Text without blanks.
+    decimal : "." or ","
+        The decimal sign.
+    """
+    if (_NUMBER if decimal == "." else _COMMA_NUMBER).fullmatch(token):
+        plain = token.replace(",", ".").replace("d", "e").replace("D", "e")
+        return float(plain)
+    return _unusual_number(token)
+
+
+def _unusual_number(token: str) -> float | None:
+    match = _NO_VALUE.fullmatch(token)
+    if match is None:
+        return None
+    value = math.inf if match["infinite"] else math.nan
+    return -value if match["sign"] == "-" else value
+
+
+def has_d_exponent(token: str) -> bool:
+    """Whether a number is written as FORTRAN does, `1D6`."""
+    return ("d" in token or "D" in token) and _NUMBER.fullmatch(token.replace(",", ".")) is not None
+
+
+def is_decimal_comma(token: str) -> bool:
+    """Whether a token is a number with a comma where a point belongs."""
+    return "," in token and _COMMA_NUMBER.fullmatch(token) is not None
 
 
 @dataclass(frozen=True, slots=True)

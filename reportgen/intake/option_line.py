@@ -1,4 +1,4 @@
-"""The option line of a Touchstone 1.x file: `# MHz S RI R 50`.
+"""The option line of a Touchstone 1.x file, `# MHz S RI R 50`, and comments that contradict it.
 
 References
 ----------
@@ -12,9 +12,9 @@ import re
 from collections import deque
 from dataclasses import dataclass, field
 
+from reportgen.intake.number_lines import read_number
 from reportgen.intake.remarks import Remarks, quoted
-from reportgen.intake.strict_numbers import read_number
-from reportgen.intake.sweep_lines import Line, SweepLines
+from reportgen.intake.sweep_text import Line, SweepLines
 
 EXAMPLE = "# MHz S MA R 50"
 HERTZ_PER_UNIT = {"Hz": 1.0, "kHz": 1e3, "MHz": 1e6, "GHz": 1e9}
@@ -27,6 +27,12 @@ _WORDS = {
     **{name.lower(): ("format", name) for name in ("MA", "DB", "RI")},
 }
 _BLANKS = re.compile(r"[ \t]+")
+_IMPEDANCE = re.compile(
+    r"(?:port|reference|ref\.?|system|characteristic)[ _]*impedances?|\bz_?(?:0|o|ref)\b",
+    re.IGNORECASE,
+)
+_INDEX = re.compile(r"\[\d+\]|\(\d+\)")
+_COMMENT_NUMBER = re.compile(r"(?<![\w.])\d+(?:\.\d*)?(?:[eE][+-]?\d+)?", re.ASCII)
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
@@ -207,3 +213,29 @@ def _compare_with_first(first: Option, line: Line, remarks: Remarks, decimal: st
 def ohms(values: tuple[float, ...]) -> str:
     """References in words: `50`, or `50/200` where the ports differ."""
     return "/".join(f"{value:g}" for value in values)
+
+
+# --- comments ----------------------------------------------------------------------------------
+
+
+def remark_impedance_comments(comments: list[Line], option: Option, remarks: Remarks) -> None:
+    """One remark for all comments that state a reference: none of them is believed."""
+    stated: dict[float, int] = {}
+    for comment in comments:
+        if match := _IMPEDANCE.search(comment.text):
+            rest = _INDEX.sub(" ", comment.text[match.end() :])
+            for number in _COMMENT_NUMBER.findall(rest)[:8]:
+                stated.setdefault(float(number), comment.number)
+    stated.pop(0.0, None)  # the imaginary part of a pair
+    if not stated:
+        return
+    others = {ohm: line for ohm, line in stated.items() if ohm not in option.reference_ohm}
+    report = remarks.warn if others else remarks.note
+    ohm, line = next(iter((others or stated).items()))
+    report(
+        "impedance-in-comment",
+        f"a comment mentions a port impedance of {ohm:g} ohm, ignored; "
+        f"the reference is taken to be {ohms(option.reference_ohm)} ohm",
+        "if the comment is right, put the number behind R on the option line",
+        line,
+    )

@@ -6,6 +6,9 @@ import unicodedata
 from collections.abc import Sequence
 from typing import NoReturn
 
+import numpy as np
+from numpy.typing import NDArray
+
 from reportgen.errors import InputRejected
 from reportgen.model import Finding, Severity
 
@@ -24,7 +27,7 @@ class Remarks:
     """
 
     def __init__(self, file: str) -> None:
-        self._file = file
+        self.file = file
         self._found: list[Finding] = []
 
     @property
@@ -80,7 +83,7 @@ class Remarks:
                 code=code,
                 message=message,
                 remedy=remedy,
-                file=self._file,
+                file=self.file,
                 line=line,
             )
         )
@@ -100,7 +103,7 @@ def _visible(character: str) -> str:
     return character
 
 
-def listed_lines(lines: Sequence[int]) -> str:
+def listed_lines(lines: Sequence[int] | NDArray[np.int64]) -> str:
     """Line numbers in words: `line 3`, `lines 3, 4 and 9`, `lines 3, 4, 5, 6, 7 and 12 more`."""
     numbers = [str(int(line)) for line in lines[:_LISTED]]
     if len(lines) > _LISTED:
