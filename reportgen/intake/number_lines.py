@@ -16,6 +16,7 @@ from reportgen.intake.sweep_text import Line, SweepLines
 _BLANKS = re.compile(r"[ \t]+")
 _BLANKS_OR_SEMICOLON = re.compile(r"[ \t]*;[ \t]*|[ \t]+")
 _BEYOND_PLAIN = re.compile(r"[^0-9+\-.eE \t]")
+_BEGINS_LIKE_NUMBER = re.compile(r"[+\-\u2212.,]*\d|[+-]?(?:nan|inf)\b", re.IGNORECASE)
 _NUMBER = re.compile(r"[+-]?(?:\d+(?:\.\d*)?|\.\d+)(?:[eEdD][+-]?\d+)?", re.ASCII)
 _COMMA_NUMBER = re.compile(r"[+-]?(?:\d+(?:,\d*)?|,\d+)(?:[eEdD][+-]?\d+)?", re.ASCII)
 _NO_VALUE = re.compile(
@@ -73,8 +74,8 @@ class NumberLine:
 
     @property
     def is_text(self) -> bool:
-        """Whether the line does not even begin with a number."""
-        return self.stray is not None and not self.values
+        """Whether the line does not even begin like a number."""
+        return self.stray is not None and not _BEGINS_LIKE_NUMBER.match(self.line.text)
 
 
 def read_number_lines(lines: SweepLines, remarks: Remarks, decimal: str) -> list[NumberLine]:
