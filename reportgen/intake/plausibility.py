@@ -58,7 +58,7 @@ def check_sweep(measurement: Measurement, bands: Iterable[Band]) -> tuple[Findin
     sweep = measurement.sweep
     found = [*_reflection(sweep), *_coarse(sweep, bands)]
     if sweep.ports == 2:
-        found += [*_through(sweep), *_both_paths(sweep)]
+        found += [*_through(sweep), *_not_reciprocal(sweep)]
         if measurement.entry.setup is Setup.BACK_TO_BACK:
             found += _asymmetric(sweep)
     return (*found, *_spikes(sweep))
@@ -79,7 +79,7 @@ def check_dates(sheet: BuildSheet, bench: BenchSheet) -> tuple[Finding, ...]:
     dated = [("measured_on", sheet.measured_on)] if sheet.measured_on else []
     dated += [(f"calibrations.{name}.performed_on", day) for name, day in performed]
     found = [_reset_clock(key, day) for key, day in dated if day.year < _FIRST_YEAR]
-    for name, day in performed:
+    for name, day in performed if not found else []:
         if sheet.measured_on is not None and sheet.measured_on < day:
             message = f"measured on {sheet.measured_on}, before the calibration {name} of {day}"
             found.append(_date_warning(message, "measured_on"))
@@ -151,16 +151,14 @@ def _share(which: NDArray[np.bool_]) -> str:
 # --- the two paths and the two ports -------------------------------------------------------------
 
 
-def _both_paths(sweep: Sweep) -> Iterator[Finding]:
-    """S21 zero while S12 is not, or the two different though nothing in a build is one-way."""
-    if sweep.one_path:
-        return
+def _not_reciprocal(sweep: Sweep) -> Iterator[Finding]:
+    """S21 and S12 different, though nothing in a build is one-way.
+
+    Not asked where one of them is zero throughout: that path was not measured, or the ports are
+    reversed, which the reader of the file has said.
+    """
     forward, backward = sweep.s[:, 1, 0], sweep.s[:, 0, 1]
-    if np.all(np.abs(forward) < _ZERO):
-        if np.any(np.abs(backward) >= _ZERO):
-            message = "S21 is zero throughout, S12 is not: are the ports reversed?"
-            remedy = "set reverse_ports = true at its [[sweep]] if they are"
-            yield _warning(sweep, "ports-reversed", message, remedy)
+    if sweep.one_path or np.all(np.abs(forward) < _ZERO) or np.all(np.abs(backward) < _ZERO):
         return
     difference = np.abs(forward - backward)
     if np.any(difference > _RECIPROCITY_LIMIT):
