@@ -21,7 +21,7 @@ from matplotlib.lines import Line2D
 from matplotlib.ticker import NullLocator
 
 from reportgen.model import Band, RealArray
-from reportgen.pages.look import LIGHT, font_path
+from reportgen.pages.look import FAMILY, LIGHT, font_path
 
 _TICKS_MHZ = (0.1, 0.2, 0.5, 1, 2, 3, 5, 7, 10, 14, 20, 30, 50, 100, 200, 500)
 _METRES = re.compile(r"(\d+) m")
@@ -181,7 +181,7 @@ def text_width(text: str, size: Size) -> float:
 def svg_text(figure: Figure) -> str:
     """The figure as SVG: the same text each time, no date, no names of programs."""
     buffer = io.StringIO()
-    settings = {"svg.hashsalt": "reportgen", "svg.fonttype": "path", "path.simplify": False}
+    settings = {"svg.hashsalt": "reportgen", "svg.fonttype": "none", "path.simplify": False}
     nothing = {"Date": None, "Creator": None, "Format": None, "Type": None}
     with matplotlib.rc_context(settings):
         figure.savefig(buffer, format="svg", metadata=nothing)
@@ -190,6 +190,8 @@ def svg_text(figure: Figure) -> str:
 
 _PROLOGUE = re.compile(r"\A.*?(?=<svg)", re.DOTALL)
 _ASIDES = re.compile(r"\s*<metadata>.*?</metadata>|\s*<style.*?</style>|\s*<!--.*?-->", re.DOTALL)
+_FAMILIES = re.compile("font-family: [^;]*")
+_TURNED_BY_NOTHING = re.compile(r' transform="rotate\(-?0 [^"]*"')
 _LINE_ENDS = re.compile(r"\n\s*")
 
 
@@ -197,6 +199,7 @@ def _plain_svg(text: str) -> str:
     """Without prologue, metadata, comments and the style sheet that would reach the whole page."""
     body = _ASIDES.sub("", _PROLOGUE.sub("", text))
     body = re.sub(r"<defs>\s*</defs>", "", body)
+    body = _FAMILIES.sub(f"font-family: '{FAMILY}'", _TURNED_BY_NOTHING.sub("", body))
     body = re.sub(r"<svg ", '<svg stroke-linejoin="round" stroke-linecap="butt" ', body, count=1)
     return _LINE_ENDS.sub("\n", body).strip()
 

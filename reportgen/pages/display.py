@@ -1,4 +1,4 @@
-"""Numbers and foreign text as they stand on pages and in the terminal: the only place that rounds.
+"""Numbers as they stand on pages and in the terminal: the only place that rounds.
 
 Rounding is meaning. A figure never crosses a limit by being rounded, 0 and 100 % appear only
 when they are exactly that, and where an uncertainty is known the digits follow it.
@@ -6,26 +6,22 @@ when they are exactly that, and where an uncertainty is known the digits follow 
 References
 ----------
 .. [1] JCGM 100:2008, 7.2.6: u95 to two significant digits at most, the figure to the same place.
-.. [2] Unicode Standard Annex 44, general categories; DerivedCoreProperties.txt,
-       Default_Ignorable_Code_Point.
 """
 
 from __future__ import annotations
 
 import math
 import re
-import unicodedata
-from collections.abc import Iterable, Sequence
+from collections.abc import Sequence
 from decimal import ROUND_CEILING, ROUND_FLOOR, ROUND_HALF_EVEN, Context, Decimal
 from itertools import count
 
 from reportgen.physics.quantities import Quantity
 
-DASH = "–"
-MINUS = "−"
+DASH = "\u2013"
+MINUS = "\u2212"
 INFINITE = "∞"
 NOT_MEASURED = "not measured"
-LONGEST_TEXT = 2000
 
 _EXACT = Context(prec=800)
 _FIGURE_SPACE = "\u2007"
@@ -124,20 +120,25 @@ def with_unit(text: str, unit: str) -> str:
 
 
 def plus_minus(
-    value: float | None, u95: float, decimals: int, *, percent: bool = False, locale: str = "en"
+    value: float, u95: float, decimals: int, *, locale: str = "en", signed: bool = True
 ) -> str:
-    """A figure with its 95 % half-width, both to the same place: `0.651 ± 0.045`."""
-    scale = percent_of if percent else lambda same: same
-    marks = [0.0, 100.0] if percent else [0.0]
-    figure = number(scale(value), decimals, u95=scale(u95), marks=marks, locale=locale)
-    width = number(scale(u95), decimals, u95=scale(u95), locale=locale)
-    return f"{figure} ± {width}"
+    """A difference with its 95 % half-width, both to the same place: `+0.651 \u00b1 0.045`."""
+    figure = number(value, decimals, u95=u95, locale=locale, signed=signed)
+    width = number(u95, decimals, u95=u95, locale=locale)
+    return f"{figure}\u00a0\u00b1\u00a0{width}"
+
+
+def entered(value: float, *, locale: str = "en") -> str:
+    """A number that a person typed, to three places at most, without zeros that say nothing."""
+    typed = _decimal(value).quantize(_step(3), ROUND_HALF_EVEN, _EXACT)
+    return number(value, max(0, _fraction_places(typed)), locale=locale)
 
 
 def interval(low: float, high: float, decimals: int, *, locale: str = "en") -> str:
     """A 95 % interval, rounded outwards so that it never shrinks: `0.60 to 0.70`."""
     places = _places((high - low) / 2) if _known((high - low) / 2) else decimals
-    return " to ".join(
+    joint = DASH if low >= 0 else " to "
+    return joint.join(
         _written(_decimal(end).quantize(_step(places), way, _EXACT), locale, False)
         if math.isfinite(end)
         else number(end, decimals)
@@ -264,60 +265,9 @@ def _megahertz(megahertz: Decimal, places: int, locale: str) -> str:
 
 
 def _places_needed(value: Decimal) -> int:
+    return max(1, _fraction_places(value))
+
+
+def _fraction_places(value: Decimal) -> int:
     exponent = value.normalize().as_tuple().exponent
-    return max(1, -exponent if isinstance(exponent, int) else 1)
-
-
-# --- text that came with the data --------------------------------------------------------------
-
-_INVISIBLE_CATEGORIES = frozenset({"Cc", "Cf", "Cs", "Co", "Cn", "Zl", "Zp"})
-_INVISIBLE_RANGES = (
-    (0x034F, 0x034F),
-    (0x115F, 0x1160),
-    (0x17B4, 0x17B5),
-    (0x180B, 0x180F),
-    (0x2800, 0x2800),  # not ignorable by [2], and blank all the same
-    (0x3164, 0x3164),
-    (0xFE00, 0xFE0F),
-    (0xFFA0, 0xFFA0),
-    (0xE0000, 0xE0FFF),
-)
-_BLANKS = re.compile(r"[\t\r\n\f\v ]+")
-_LINE_END = re.compile(r"\r\n?|\n")
-_STACKED_MARKS = 3
-
-
-def clean_text(text: str, *, lines: bool = False) -> str:
-    """Foreign text made safe to look at: what cannot be seen is shown as `[U+202E]`.
-
-    Control, format, bidirectional, private and unassigned characters and blank look-alikes
-    become visible, runs of blanks one space, piles of combining marks are cut at three. `lines`
-    keeps line ends. What is longer than 2000 characters is cut, marked by an ellipsis.
-    """
-    if lines:
-        return "\n".join(clean_text(line) for line in _LINE_END.split(text[:LONGEST_TEXT]))
-    cut = text if len(text) <= LONGEST_TEXT else text[: LONGEST_TEXT - 1] + "…"
-    composed = unicodedata.normalize("NFC", _BLANKS.sub(" ", cut))
-    return "".join(_visible(_unpiled(composed))).strip()
-
-
-def _unpiled(text: str) -> Iterable[str]:
-    marks = 0
-    for character in text:
-        marks = marks + 1 if unicodedata.category(character) in ("Mn", "Me") else 0
-        if marks <= _STACKED_MARKS:
-            yield character
-
-
-def _visible(characters: Iterable[str]) -> Iterable[str]:
-    for character in characters:
-        if unicodedata.category(character) == "Zs":
-            yield " "
-        else:
-            yield f"[U+{ord(character):04X}]" if _invisible(character) else character
-
-
-def _invisible(character: str) -> bool:
-    if unicodedata.category(character) in _INVISIBLE_CATEGORIES:
-        return True
-    return any(low <= ord(character) <= high for low, high in _INVISIBLE_RANGES)
+    return -exponent if isinstance(exponent, int) else 0

@@ -3,13 +3,22 @@
 from __future__ import annotations
 
 from collections.abc import Mapping, Sequence
+from dataclasses import dataclass
 
 from reportgen.model import Band, BuildResult, Comparison, Verdict
-from reportgen.pages.display import megahertz, number, quantity_number, with_unit
+from reportgen.pages.display import (
+    NOT_MEASURED,
+    entered,
+    megahertz,
+    number,
+    percent_of,
+    quantity_number,
+    with_unit,
+)
 from reportgen.pages.summary import (
     BandValue,
     best_of,
-    has_loss,
+    mean_over_bands,
     means,
     measured_bands,
     worst_of,
@@ -40,7 +49,7 @@ def counted(count: int, noun: str) -> str:
 
 
 def _whole_percent(ratio: float, locale: str) -> str:
-    return number(100 * ratio, 0, marks=[0.0, 100.0], locale=locale)
+    return number(percent_of(ratio), 0, marks=[0.0, 100.0], locale=locale)
 
 
 # --- the verdict -------------------------------------------------------------------------------
@@ -82,13 +91,47 @@ def _band_span(values: Sequence[BandValue]) -> str:
     return f"{len(values)} bands from {values[0].band.name} to {values[-1].band.name}"
 
 
-def match_sentence(result: BuildResult, locale: str) -> str:
-    """How good the match is, where the verdict has not said it already."""
+@dataclass(frozen=True, kw_only=True, slots=True)
+class KeyFigure:
+    """One of the three figures at the top of a report; `accent` is a colour of the look."""
+
+    label: str
+    figure: str
+    where: str
+    accent: str
+
+
+def key_figures(result: BuildResult, locale: str) -> tuple[KeyFigure, ...]:
+    """Mean efficiency, worst match and most heat."""
+    return (_efficiency_key(result, locale), _match_key(result, locale), _heat_key(result, locale))
+
+
+def _efficiency_key(result: BuildResult, locale: str) -> KeyFigure:
+    mean = mean_over_bands(result.chosen, "efficiency_ratio", result.power_w)
+    bands = counted(len(means(result.chosen, "efficiency_ratio")), "band")
+    if mean is None:
+        return KeyFigure(label="Efficiency", figure=NOT_MEASURED, where="", accent="ink")
+    figure = spoken("efficiency_ratio", mean, locale)
+    return KeyFigure(label="Mean efficiency", figure=figure, where=f"over {bands}", accent="ink")
+
+
+def _match_key(result: BuildResult, locale: str) -> KeyFigure:
     worst = worst_of(worsts(result.chosen, "swr"), "swr")
-    if worst is None or not has_loss(result.chosen):
-        return ""
-    where = "" if worst.at_hz is None else f" at {megahertz(worst.at_hz, locale=locale, places=3)}\u00a0MHz"
-    return f"The worst SWR in any band is {spoken('swr', worst.value, locale)}, on {worst.band.name}{where}."
+    if worst is None:
+        return KeyFigure(label="Match", figure=NOT_MEASURED, where="", accent="match")
+    places = "" if worst.at_hz is None else megahertz(worst.at_hz, locale=locale, places=3)
+    where = f"on {worst.band.name}" + (f", at {places}\u00a0MHz" if places else "")
+    figure = spoken("swr", worst.value, locale)
+    return KeyFigure(label="Worst SWR in a band", figure=figure, where=where, accent="match")
+
+
+def _heat_key(result: BuildResult, locale: str) -> KeyFigure:
+    most = worst_of(means(result.chosen, "heat_w"), "heat_w")
+    label = f"Most heat at {rated_power(result, locale)}"
+    if most is None:
+        return KeyFigure(label=label, figure=NOT_MEASURED, where="", accent="heat")
+    figure = spoken("heat_w", most.value, locale)
+    return KeyFigure(label=label, figure=figure, where=f"on {most.band.name}", accent="heat")
 
 
 def coverage_sentence(result: BuildResult) -> str:
@@ -104,7 +147,7 @@ def coverage_sentence(result: BuildResult) -> str:
     return f"The sweeps cover {' and '.join(parts)}." if parts else ""
 
 
-def comparison_sentence(comparison: Comparison | None, baseline: BuildResult | None) -> str:
+def comparison_sentence(comparison: Comparison | None) -> str:
     """How the build compares with the baseline over all bands."""
     if comparison is None:
         return ""
@@ -117,8 +160,8 @@ def comparison_sentence(comparison: Comparison | None, baseline: BuildResult | N
         return f"It cannot be compared with {name}; the table says why."
     fewer = sum(difference < 0 for difference in differences)
     return (
-        f"Its heat loss is below that of {name}, on {fewer} of {counted(len(differences), 'band')}; "
-        "the uncertainty of the difference is not known, so this is no verdict."
+        f"Its heat loss is below that of {name}, on {fewer} of {counted(len(differences), 'band')}. "
+        "The uncertainty of the difference is not known yet, so no band is judged."
     )
 
 
@@ -141,7 +184,8 @@ def efficiency_chart(
     key = "efficiency_ratio"
     values = means(result.chosen, key)
     title = _extremes(values, key, "Efficiency is {best} on {where}", locale)
-    alt = f"Line chart of efficiency over frequency. Mean in each band: {_each(values, key, locale)}."
+    alt = "Line chart of efficiency over frequency. "
+    alt += f"Mean in each band: {_each(values, key, locale)}."
     return title, alt + _baseline_alt(baseline, key, locale)
 
 
@@ -186,7 +230,8 @@ def heat_chart(
     most = worst_of(values, "heat_w")
     assert most is not None
     power = rated_power(result, locale)
-    title = f"At {power} the build turns {spoken('heat_w', most.value, locale)} into heat on {most.band.name}"
+    heat = spoken("heat_w", most.value, locale)
+    title = f"At {power} the build turns {heat} into heat on {most.band.name}"
     title += ", its warmest band" if len(values) > 1 else ""
     alt = f"Dot chart of heat by band at {power}: {_each(values, 'heat_w', locale)}."
     rivals = [
@@ -198,10 +243,4 @@ def heat_chart(
 
 def rated_power(result: BuildResult, locale: str) -> str:
     """The power that the figures of heat are for."""
-    return f"{power_text(result.power_w, locale)}\u00a0W"
-
-
-def power_text(power_w: float, locale: str) -> str:
-    """A power as it was entered: no places that say nothing."""
-    places = 0 if power_w == int(power_w) else 2
-    return number(power_w, places, locale=locale)
+    return f"{entered(result.power_w, locale=locale)}\u00a0W"

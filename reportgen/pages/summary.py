@@ -46,11 +46,6 @@ def usable(value: float | None) -> bool:
     return value is not None and isfinite(value)
 
 
-def has_loss(method: MethodResult) -> bool:
-    """True when at least one band has an efficiency."""
-    return any(figure_of(band, "efficiency_ratio") for band in measured_bands(method))
-
-
 def means(method: MethodResult, key: str) -> tuple[BandValue, ...]:
     """Means over each band, in the order of the bands."""
     pairs = ((band, figure_of(band, key)) for band in measured_bands(method))

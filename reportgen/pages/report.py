@@ -1,0 +1,221 @@
+"""The report of one build, for a screen and for paper: the same page, set twice."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+from functools import lru_cache
+
+from markupsafe import Markup
+
+from reportgen.model import BenchSheet, BuildResult, Comparison
+from reportgen.pages import sentences
+from reportgen.pages.band_tables import band_table, comparison_table, missing_quantities
+from reportgen.pages.charts import Chart, draw_charts
+from reportgen.pages.html import inline_svg, page_style
+from reportgen.pages.method_tables import methods_table, units_table
+from reportgen.pages.particulars import (
+    FindingText,
+    bandwidth_table,
+    build_facts,
+    chosen_units_words,
+    finding_texts,
+    inputs_table,
+    parts_table,
+    setups_table,
+)
+from reportgen.pages.pdf import write_pdf
+from reportgen.pages.plain_text import text_lines
+from reportgen.pages.summary import is_simulated, limits_by_quantity
+from reportgen.pages.tables import Table
+from reportgen.pages.templates import render
+from reportgen.pages.wording import METHOD_NAMES, METHOD_WORDS, fitted_sentence, ohms
+
+
+@dataclass(frozen=True, kw_only=True, slots=True)
+class Picture:
+    """A chart as the template places it; on paper it is fetched by its name."""
+
+    name: str
+    title: str
+    alt: str
+    wide: Markup
+    narrow: Markup
+
+
+@dataclass(frozen=True, kw_only=True, slots=True)
+class ReportPage:
+    """Everything the template of a report prints, as text."""
+
+    name: str
+    publisher: str
+    bench_title: str
+    summary: str
+    simulated: bool
+    verdict: str
+    coverage: str
+    key_figures: tuple[sentences.KeyFigure, ...]
+    bands: Table | None
+    missing: str
+    pictures: dict[str, Picture]
+    comparison: Table | None
+    comparison_words: str
+    is_baseline: bool
+    method_name: str
+    method_words: str
+    setups: Table | None
+    fitted: tuple[str, ...]
+    methods: Table | None
+    reasons: tuple[str, ...]
+    bandwidths: Table | None
+    units: Table | None
+    findings: tuple[FindingText, ...]
+    facts: tuple[tuple[str, str], ...]
+    notes: tuple[str, ...]
+    parts: Table | None
+    inputs: Table | None
+    program_version: str
+
+
+def render_report_html(
+    result: BuildResult,
+    *,
+    comparison: Comparison | None,
+    baseline: BuildResult | None,
+    bench: BenchSheet,
+    program_version: str,
+) -> str:
+    """The report as one page that needs neither a network nor a script."""
+    charts = _charts(result, baseline, bench)
+    pictures = {
+        name: Picture(
+            name=name,
+            title=chart.title,
+            alt=chart.alt,
+            wide=inline_svg(chart.svg, f"{name}-wide"),
+            narrow=inline_svg(chart.narrow_svg, f"{name}-narrow"),
+        )
+        for name, chart in charts.items()
+    }
+    page = _page(result, comparison, baseline, bench, pictures, program_version)
+    return render("report.html", page=page, paper=False, style=page_style())
+
+
+def render_report_pdf(
+    result: BuildResult,
+    *,
+    comparison: Comparison | None,
+    baseline: BuildResult | None,
+    bench: BenchSheet,
+    program_version: str,
+) -> bytes:
+    """The report as a tagged PDF on the bench's paper.
+
+    Raises
+    ------
+    OutputError
+        The page could not be set without a complaint.
+    """
+    charts = _charts(result, baseline, bench)
+    nothing = Markup()
+    pictures = {
+        name: Picture(name=name, title=chart.title, alt=chart.alt, wide=nothing, narrow=nothing)
+        for name, chart in charts.items()
+    }
+    page = _page(result, comparison, baseline, bench, pictures, program_version)
+    text = render("report.html", page=page, paper=True, style=nothing)
+    return write_pdf(text, {name: chart.svg for name, chart in charts.items()}, bench.paper)
+
+
+def _page(
+    result: BuildResult,
+    comparison: Comparison | None,
+    baseline: BuildResult | None,
+    bench: BenchSheet,
+    pictures: dict[str, Picture],
+    program_version: str,
+) -> ReportPage:
+    sheet, locale = result.build.sheet, bench.locale
+    compared = comparison is not None
+    return ReportPage(
+        name=sheet.name,
+        publisher=bench.publisher,
+        bench_title=bench.title,
+        summary=sheet.summary,
+        simulated=is_simulated(result),
+        verdict=sentences.verdict(result, locale),
+        coverage=sentences.coverage_sentence(result),
+        key_figures=sentences.key_figures(result, locale),
+        bands=band_table(result, bench),
+        missing=missing_quantities(result),
+        pictures=pictures,
+        comparison=comparison_table(result, comparison, baseline, locale) if compared else None,
+        comparison_words=sentences.comparison_sentence(comparison),
+        is_baseline=bench.baseline == result.build.key,
+        method_name=METHOD_NAMES[result.chosen.method],
+        method_words=_method_words(result, locale),
+        setups=setups_table(result.build, bench),
+        fitted=tuple(fitted_sentence(one, locale) for one in result.fitted),
+        methods=methods_table(result, locale),
+        reasons=_reasons(result),
+        bandwidths=bandwidth_table(result.bandwidths, locale),
+        units=units_table(result, locale),
+        findings=finding_texts(result.findings),
+        facts=build_facts(result, locale),
+        notes=text_lines(sheet.notes),
+        parts=parts_table(sheet, locale),
+        inputs=inputs_table(result.build),
+        program_version=program_version,
+    )
+
+
+def _method_words(result: BuildResult, locale: str) -> str:
+    words = METHOD_WORDS[result.chosen.method]
+    load = ohms(result.chosen.load_ohm, locale)
+    return f"{words} {chosen_units_words(result)}, for a load of {load}."
+
+
+def _reasons(result: BuildResult) -> tuple[str, ...]:
+    """Why a method that was tried gives no loss."""
+    return tuple(
+        f"{METHOD_NAMES[method.method]}: {method.reason}"
+        for method in result.methods
+        if method.reason is not None
+    )
+
+
+# --- charts, drawn once for both pages -----------------------------------------------------------
+
+_Limits = tuple[tuple[str, float], ...]
+
+
+def _charts(
+    result: BuildResult, baseline: BuildResult | None, bench: BenchSheet
+) -> dict[str, Chart]:
+    swr, efficiency = (_limits(result, bench, key) for key in ("swr", "efficiency_ratio"))
+    return _drawn(result, baseline, swr, efficiency, bench.locale)
+
+
+def _limits(result: BuildResult, bench: BenchSheet, key: str) -> _Limits:
+    found = {
+        band.band.name: limits_by_quantity(bench, band.band.name, result.power_w)
+        for band in result.chosen.bands
+    }
+    return tuple((name, limits[key]) for name, limits in found.items() if key in limits)
+
+
+@lru_cache(maxsize=1)
+def _drawn(
+    result: BuildResult,
+    baseline: BuildResult | None,
+    swr_limits: _Limits,
+    efficiency_limits: _Limits,
+    locale: str,
+) -> dict[str, Chart]:
+    return draw_charts(
+        result,
+        baseline,
+        [band.band for band in result.chosen.bands],
+        swr_limits=dict(swr_limits),
+        efficiency_limits=dict(efficiency_limits),
+        locale=locale,
+    )
