@@ -79,6 +79,8 @@ def _plain(value: Any, hint: Any) -> Any:
         return [_plain(item, _inner(hint, 0)) for item in value]
     if hint is date and (not isinstance(value, date) or isinstance(value, datetime)):
         return True
+    if get_origin(hint) is Literal and type(value) not in map(type, get_args(hint)):
+        return []  # true would pass for 1
     if isinstance(value, date | time):
         return value.isoformat()
     if isinstance(value, int) and not is_toml_integer(value):
