@@ -7,7 +7,7 @@ from pathlib import Path
 
 import numpy as np
 import pytest
-from hypothesis import given
+from hypothesis import given, settings
 from hypothesis import strategies as st
 from sweep_files import verdict
 
@@ -44,6 +44,7 @@ def test_pickle_is_refused_and_never_run(tmp_path, protocol):
     assert canary.exists()  # the bait was a real one
 
 
+@settings(deadline=None)
 @given(st.binary(max_size=300))
 def test_arbitrary_bytes_are_read_or_rejected(data):
     verdict(data, file="a.s2p")
@@ -56,6 +57,7 @@ _SNIPPETS = st.sampled_from(
 )  # fmt: skip
 
 
+@settings(deadline=None)  # the first file with another reference imports scikit-rf
 @given(
     st.lists(_SNIPPETS, max_size=30),
     st.sampled_from(["\n", " ", ""]),
