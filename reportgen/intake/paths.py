@@ -86,12 +86,12 @@ def build_keys(folders: Iterable[str], *, root_name: str) -> dict[str, str]:
 
 
 def _slug(path: str) -> str:
-    plain = unicodedata.normalize("NFKD", path).encode("ascii", "ignore").decode("ascii")
-    slug = re.sub(r"[^a-z0-9]+", "-", plain.lower()).strip("-")
+    plain = unicodedata.normalize("NFKD", path).casefold().encode("ascii", "ignore").decode()
+    slug = re.sub(r"[^a-z0-9]+", "-", plain).strip("-")
     if not slug:
         return "build"
     if slug in _DEVICES | _BESIDE:
-        slug = f"build-{slug}"
+        slug = f"{slug}-build"
     return slug[:KEY_LENGTH].rstrip("-")
 
 
