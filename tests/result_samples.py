@@ -43,7 +43,9 @@ from reportgen.physics.allocations import amateur_bands
 from reportgen.physics.quantities import QUANTITIES, Better
 
 BANDS = tuple(band for band in amateur_bands(2) if band.name != "6 m")
-HOSTILE = '<script>alert(1)</script>\u202e"\'{{7*7}} $x$ \x07 =cmd() & </style> https://example.org/'
+HOSTILE = (
+    "<script>alert(1)</script>\u202e\"'{{7*7}} $x$ \x07 =cmd() & </style> https://example.org/"
+)
 
 
 def curves(level: float = 1.0, *, top_hz: float = 31e6, loss: bool = True) -> Curves:
@@ -155,13 +157,20 @@ def build(name: str, key: str, **sheet) -> Build:
         "measured_on": date(2026, 10, 4),
         "notes": "Wound with the high side spread over two thirds of the ring.",
         "core": Core(
-            outer_mm=36, inner_mm=23, height_mm=15, initial_permeability=620,
+            outer_mm=36,
+            inner_mm=23,
+            height_mm=15,
+            initial_permeability=620,
             material="nickel-zinc ferrite",
         ),
         "compensation": Compensation(capacitor_pf=82),
         "rating": Rating(power_w=60, enclosure="sealed box"),
         "part": (
-            Part(name="ring core, 36 mm", quantity=1, note="any nickel-zinc grade of this permeability"),
+            Part(
+                name="ring core, 36 mm",
+                quantity=1,
+                note="any nickel-zinc grade of this permeability",
+            ),
             Part(name="capacitor, 82 pF, 500 V, C0G", quantity=1),
             Part(name="enamelled wire, 0.8 mm, 1.9 m"),
         ),
@@ -170,7 +179,9 @@ def build(name: str, key: str, **sheet) -> Build:
     return Build(
         key=key,
         folder=key,
-        sheet=BuildSheet(name=name, winding=Winding(low_turns=3, high_turns=24, wire_mm=0.8), **given),
+        sheet=BuildSheet(
+            name=name, winding=Winding(low_turns=3, high_turns=24, wire_mm=0.8), **given
+        ),
         measurements=(
             sweep("pair-ab.s2p", Setup.BACK_TO_BACK, 2, units=("A", "B"), calibration="evening"),
             sweep("a-load.s1p", Setup.LOAD, 1, unit="A", load="main", calibration="evening"),
@@ -190,7 +201,7 @@ FINDINGS = (
         code="one-path",
         file="pair-ab.s2p",
         message="S12 and S22 are zero throughout: the analyzer measured one path",
-        remedy="sweep the pair once more the other way round and name it with units = [\"B\", \"A\"]",
+        remedy='sweep the pair once more the other way round and name it with units = ["B", "A"]',
     ),
     Finding(
         severity=Severity.NOTE,
@@ -201,7 +212,9 @@ FINDINGS = (
 )
 
 
-def full(level: float = 1.0, name: str = "Alder", key: str = "alder", u95: float | None = None, **sheet):
+def full(
+    level: float = 1.0, name: str = "Alder", key: str = "alder", u95: float | None = None, **sheet
+):
     found = curves(level)
     chosen = method_result(Method.BISECTION_LOAD, found, u95=u95)
     units = tuple(
@@ -215,12 +228,29 @@ def full(level: float = 1.0, name: str = "Alder", key: str = "alder", u95: float
         units=units,
         methods=(chosen, method_result(Method.BISECTION, curves(level * 1.01)), halving(found)),
         bandwidths=(
-            Bandwidth(criterion="swr <= 2", from_hz=1.5e6, to_hz=29_812_345.0, from_sweep_edge=True, to_sweep_edge=False),
-            Bandwidth(criterion="efficiency_ratio >= 0.85", from_hz=2_104_000.0, to_hz=23.4e6, from_sweep_edge=False, to_sweep_edge=False),
+            Bandwidth(
+                criterion="swr <= 2",
+                from_hz=1.5e6,
+                to_hz=29_812_345.0,
+                from_sweep_edge=True,
+                to_sweep_edge=False,
+            ),
+            Bandwidth(
+                criterion="efficiency_ratio >= 0.85",
+                from_hz=2_104_000.0,
+                to_hz=23.4e6,
+                from_sweep_edge=False,
+                to_sweep_edge=False,
+            ),
         ),
         fitted=(
             Fitted(quantity="stray_pf", of="loads.main", value=3.127),
-            Fitted(quantity="stray_pf", of="loads.spare", value=None, reason="its reactance is too small to be seen"),
+            Fitted(
+                quantity="stray_pf",
+                of="loads.spare",
+                value=None,
+                reason="its reactance is too small to be seen",
+            ),
         ),
         findings=FINDINGS,
     )
@@ -229,23 +259,36 @@ def full(level: float = 1.0, name: str = "Alder", key: str = "alder", u95: float
 def load_only() -> BuildResult:
     chosen = method_result(Method.LOAD_ONLY, curves(1.3, loss=False), "A")
     return BuildResult(
-        build=build("Hazel", "hazel", record={}), power_w=60.0, chosen=chosen, units=(), methods=(chosen,),
-        bandwidths=(), fitted=(), findings=(),
+        build=build("Hazel", "hazel", record={}),
+        power_w=60.0,
+        chosen=chosen,
+        units=(),
+        methods=(chosen,),
+        bandwidths=(),
+        fitted=(),
+        findings=(),
     )
 
 
 def partial() -> BuildResult:
     chosen = method_result(Method.BISECTION, curves(1.1, top_hz=21.2e6))
     return BuildResult(
-        build=build("Rowan", "rowan"), power_w=60.0, chosen=chosen, units=(), methods=(chosen,),
-        bandwidths=(), fitted=(), findings=(),
+        build=build("Rowan", "rowan"),
+        power_w=60.0,
+        chosen=chosen,
+        units=(),
+        methods=(chosen,),
+        bandwidths=(),
+        fitted=(),
+        findings=(),
     )
 
 
 def hostile() -> BuildResult:
     wide = "W" * 300
     sheet = {
-        "summary": HOSTILE, "notes": HOSTILE + "\n" + wide,
+        "summary": HOSTILE,
+        "notes": HOSTILE + "\n" + wide,
         "part": (Part(name=HOSTILE, note=wide),),
         "record": {HOSTILE[:100]: HOSTILE, "url": "javascript:alert(1)"},
     }
@@ -264,14 +307,18 @@ def comparison(own: BuildResult, other: BuildResult, *, judged: bool = False) ->
 def _compared(one, two, judged: bool) -> BandComparison:
     if not all(isinstance(x, MeasuredBand) and "heat_w" in x.figures for x in (one, two)):
         return BandComparison(
-            band=one.band.name, heat_loss_db=None, heat_w=None,
-            verdict=Verdict.NOT_MEASURED, reason="this build's loss was not measured",
+            band=one.band.name,
+            heat_loss_db=None,
+            heat_w=None,
+            verdict=Verdict.NOT_MEASURED,
+            reason="this build's loss was not measured",
         )
     difference = {
         key: one.figures[key].mean - two.figures[key].mean for key in ("heat_loss_db", "heat_w")
     }
     return BandComparison(
-        band=one.band.name, **difference,
+        band=one.band.name,
+        **difference,
         heat_loss_u95_db=0.021 if judged else None,
         verdict=Verdict.BETTER if judged else None,
     )
@@ -292,8 +339,13 @@ FAILED = (
         folder="elder",
         findings=(
             Finding(
-                severity=Severity.ERROR, code="sidecar", file="build.toml", line=7, key="winding.low_turns",
-                message='found "3 turns", expected a number above 0', remedy="write 3",
+                severity=Severity.ERROR,
+                code="sidecar",
+                file="build.toml",
+                line=7,
+                key="winding.low_turns",
+                message='found "3 turns", expected a number above 0',
+                remedy="write 3",
             ),
         ),
     ),

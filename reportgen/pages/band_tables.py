@@ -56,13 +56,13 @@ def band_table(result: BuildResult, bench: BenchSheet) -> Table | None:
     if not shown:
         return None
     table = Table(
-        caption="Figures by band",
+        caption="Mean and worst over each band. Efficiency is power into the load over power "
+        "entering the low side; heat loss is the same in decibels.",
         corner="Band",
         sub="Value",
         columns=tuple(Column(label=one.label, unit=one.unit) for one in shown),
         groups=tuple(
-            _band_rows(band, shown, limits_by_quantity(bench, band.band.name, result.power_w), bench)
-            for band in result.chosen.bands
+            _band_rows(band, shown, result.power_w, bench) for band in result.chosen.bands
         ),
     )
     return with_points_aligned(table, bench.locale)
@@ -83,11 +83,12 @@ def _present(figure: Figure | None) -> bool:
 
 
 def _band_rows(
-    band: BandResult, shown: Sequence[Quantity], limits: Mapping[str, float], bench: BenchSheet
+    band: BandResult, shown: Sequence[Quantity], power_w: float, bench: BenchSheet
 ) -> tuple[Row, ...]:
     if isinstance(band, NotMeasured):
         words = f"{NOT_MEASURED}: {band.reason}"
         return (Row(head=band.band.name, words=words, words_columns=len(shown) + 1),)
+    limits = limits_by_quantity(bench, band.band.name, power_w)
     lines = _lines(band, shown, limits, bench.locale)
     note = band_note(band, bench.locale)
     rows = len(lines) + bool(note)
@@ -135,14 +136,12 @@ def _worst_text(
     return quantity_number(quantity, figure.worst, u95=u95, limits=limits, locale=locale)
 
 
-def _interval_text(
-    quantity: Quantity, figure: Figure | None, *, limits: Sequence[float], locale: str
-) -> str:
+def _interval_text(quantity: Quantity, figure: Figure | None, *, locale: str, **_: object) -> str:
     if figure is None or figure.low95 is None or figure.high95 is None:
         return "not known"
     low, high = figure.low95, figure.high95
     if quantity.percent:
-        low, high = percent_of(low) or 0.0, percent_of(high) or 0.0
+        low, high = percent_of(low), percent_of(high)
     return interval(low, high, quantity.decimals, locale=locale)
 
 
@@ -151,7 +150,8 @@ def band_note(band: MeasuredBand, locale: str) -> str:
     notes = []
     if band.partial:
         covered = megahertz_range(*band.covered_hz, locale=locale)
-        notes.append(f"only {covered}\u00a0MHz of the band: {band.reason or 'the sweeps end there'}")
+        reason = band.reason or "the sweeps end there"
+        notes.append(f"only {covered}\u00a0MHz of the band: {reason}")
     elif band.reason:
         notes.append(band.reason)
     if band.interpolated:
@@ -185,7 +185,7 @@ def comparison_table(
     columns += [Column(label="Difference", unit="dB"), Column(label="Difference", unit="W")]
     columns += [Column(label="Verdict", words=True)] if judged else []
     table = Table(
-        caption=f"Heat loss against {comparison.name}",
+        caption="Mean heat loss in each band; a negative difference means less loss, less heat.",
         corner="Band",
         columns=tuple(columns),
         groups=tuple(

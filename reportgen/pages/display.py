@@ -97,9 +97,9 @@ def quantity_number(
             signed=signed,
         )
     return number(
-        percent_of(value),
+        None if value is None else percent_of(value),
         quantity.decimals,
-        u95=percent_of(u95),
+        u95=None if u95 is None else percent_of(u95),
         limits=[float(_decimal(limit).scaleb(2)) for limit in limits],
         marks=[0.0, 100.0],
         locale=locale,
@@ -107,9 +107,9 @@ def quantity_number(
     )
 
 
-def percent_of(ratio: float | None) -> float | None:
+def percent_of(ratio: float) -> float:
     """A ratio in per cent, free of the dust that multiplying by 100 leaves."""
-    if ratio is None or not math.isfinite(ratio):
+    if not math.isfinite(ratio):
         return ratio
     return float(_decimal(ratio).scaleb(2, _EXACT))
 
@@ -242,9 +242,7 @@ def megahertz(hz: float, *, locale: str = "en", places: int = 4) -> str:
 
 def megahertz_range(from_hz: float, to_hz: float, *, locale: str = "en") -> str:
     """Two edges in megahertz with equally many places: 10.10 to 10.15."""
-    edges = [
-        _decimal(hz).scaleb(-6).quantize(_step(4), ROUND_HALF_EVEN) for hz in (from_hz, to_hz)
-    ]
+    edges = [_decimal(hz).scaleb(-6).quantize(_step(4), ROUND_HALF_EVEN) for hz in (from_hz, to_hz)]
     places = max(_places_needed(edge) for edge in edges)
     return DASH.join(_written(edge.quantize(_step(places)), locale, False) for edge in edges)
 

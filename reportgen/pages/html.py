@@ -11,8 +11,16 @@ from fontTools import subset
 from fontTools.ttLib import TTFont
 from markupsafe import Markup
 
-from reportgen.pages.look import DARK, FACES, FAMILY, LIGHT, font_path, scheme_names
-from reportgen.pages.look import style_variables, tint_rules
+from reportgen.pages.look import (
+    DARK,
+    FACES,
+    FAMILY,
+    LIGHT,
+    font_path,
+    scheme_names,
+    style_variables,
+    tint_rules,
+)
 from reportgen.pages.templates import read_style
 
 # Western and central European letters, figures, and the signs that pages use.

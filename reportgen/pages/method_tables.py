@@ -23,7 +23,8 @@ def methods_table(result: BuildResult, locale: str) -> Table | None:
     if not shown:
         return None
     table = Table(
-        caption="Heat loss by method, mean in each band",
+        caption="Mean heat loss in each band. Half the through loss of a pair is the figure "
+        "commonly published; the mismatch between the two units is in it.",
         corner="Band",
         columns=tuple(_method_column(method, result, locale) for method in shown),
         groups=tuple(
@@ -66,7 +67,7 @@ def units_table(result: BuildResult, locale: str) -> Table | None:
         for key in _UNIT_QUANTITIES
     ]
     table = Table(
-        caption="Units: mean heat loss and worst SWR in each band",
+        caption="Mean heat loss and worst SWR in each band.",
         corner="Band",
         columns=tuple(columns),
         groups=tuple((_units_row(band, result, locale),) for band in result.chosen.bands),

@@ -47,7 +47,8 @@ def _words_table(
 def setups_table(build: Build, bench: BenchSheet) -> Table | None:
     """Every sweep, how it was taken and under which calibration."""
     rows = [_setup_row(measurement, bench) for measurement in build.measurements]
-    return _words_table("Sweeps", "File", ("Set-up", "Unit", "Load", "Calibration"), rows)
+    labels = ("Set-up", "Unit", "Load", "Calibration")
+    return _words_table("Sweeps, and how they were taken.", "File", labels, rows)
 
 
 def _setup_row(measurement: Measurement, bench: BenchSheet) -> tuple[str, ...]:
@@ -99,7 +100,8 @@ def bandwidth_table(bandwidths: Sequence[Bandwidth], locale: str) -> Table | Non
         )
         for one in bandwidths
     ]
-    return _words_table("Bandwidths", "Criterion", ("Range", "Ends"), rows)
+    caption = "Contiguous ranges in which a criterion holds."
+    return _words_table(caption, "Criterion", ("Range", "Ends"), rows)
 
 
 def _edge_words(bandwidth: Bandwidth) -> str:
@@ -120,6 +122,7 @@ class FindingText:
     """A finding in words; `where` is its file, line and key, or empty."""
 
     severity: str
+    label: str
     where: str
     message: str
     remedy: str
@@ -137,6 +140,7 @@ def _finding_text(finding: Finding) -> FindingText:
     where = ", ".join(part for part in (finding.file, line, finding.key) if part)
     return FindingText(
         severity=finding.severity.value,
+        label=finding.severity.value.capitalize(),
         where=where,
         message=finding.message,
         remedy=finding.remedy,
@@ -226,7 +230,7 @@ def parts_table(sheet: BuildSheet, locale: str) -> Table | None:
         )
         for part in sheet.part
     ]
-    return _words_table("Parts", "Part", ("Quantity", "Note"), rows)
+    return _words_table("Parts list.", "Part", ("Quantity", "Note"), rows)
 
 
 def inputs_table(build: Build) -> Table | None:
@@ -239,7 +243,7 @@ def inputs_table(build: Build) -> Table | None:
         )
         for one in build.inputs
     ]
-    return _words_table("Files read", "File", ("Points", "SHA-256 begins"), rows)
+    return _words_table("Files read.", "File", ("Points", "SHA-256 begins"), rows)
 
 
 def chosen_units_words(result: BuildResult) -> str:

@@ -30,7 +30,8 @@ def write_pdf(page: str, pictures: Mapping[str, str], paper: str) -> bytes:
         The page; its pictures are named `asset:NAME`.
     pictures : mapping of str to str
         SVG by name.
-    paper : `A4` or `Letter`
+    paper : str
+        `A4` or `Letter`.
 
     Raises
     ------
@@ -87,7 +88,7 @@ def _paper_style() -> CSS:
         )
     if complaints:
         raise OutputError(f"the style sheet of paper is faulty: {complaints[0]}")
-    return style  # type: ignore[no-any-return]
+    return style
 
 
 @cache
@@ -105,7 +106,7 @@ def _fetcher_class() -> Any:
             self.assets = assets
             self.refused: list[str] = []
 
-        def fetch(self, url: str, headers: Mapping[str, str] | None = None) -> Any:
+        def fetch(self, url: str, headers: object = None) -> Any:  # noqa: ARG002  (its base has it)
             name = url.removeprefix(ASSET)
             if not url.startswith(ASSET) or name not in self.assets:
                 self.refused.append(url)

@@ -27,9 +27,7 @@ from reportgen.pages.summary import (
 from reportgen.physics.quantities import BY_KEY
 
 
-def spoken(
-    key: str, value: float | None, locale: str, limits: Sequence[float] = ()
-) -> str:
+def spoken(key: str, value: float | None, locale: str, limits: Sequence[float] = ()) -> str:
     """A quantity with its unit, as it stands in a sentence."""
     quantity = BY_KEY[key]
     text = quantity_number(quantity, value, locale=locale, limits=limits)
@@ -138,9 +136,7 @@ def coverage_sentence(result: BuildResult) -> str:
     """Which bands were not, or not wholly, measured."""
     partial = [band.band.name for band in measured_bands(result.chosen) if band.partial]
     missing = [
-        band.band.name
-        for band in result.chosen.bands
-        if band not in measured_bands(result.chosen)
+        band.band.name for band in result.chosen.bands if band not in measured_bands(result.chosen)
     ]
     parts = [f"{listed(partial)} only in part"] if partial else []
     parts += [f"{listed(missing)} not at all"] if missing else []
@@ -159,8 +155,9 @@ def comparison_sentence(comparison: Comparison | None) -> str:
     if not differences:
         return f"It cannot be compared with {name}; the table says why."
     fewer = sum(difference < 0 for difference in differences)
+    bands = counted(len(differences), "band")
     return (
-        f"Its heat loss is below that of {name}, on {fewer} of {counted(len(differences), 'band')}. "
+        f"On {fewer} of {bands} its mean heat loss is below that of {name}. "
         "The uncertainty of the difference is not known yet, so no band is judged."
     )
 
@@ -204,9 +201,7 @@ def _baseline_alt(baseline: BuildResult | None, key: str, locale: str) -> str:
     return f" Baseline, dashed: {_each(values, key, locale)}." if values else ""
 
 
-def match_chart(
-    result: BuildResult, baseline: BuildResult | None, locale: str
-) -> tuple[str, str]:
+def match_chart(result: BuildResult, baseline: BuildResult | None, locale: str) -> tuple[str, str]:
     """Title and alternative text of the match chart."""
     values = worsts(result.chosen, "swr")
     worst = worst_of(values, "swr")
@@ -214,7 +209,7 @@ def match_chart(
     losses = worsts(result.chosen, "return_loss_db")
     title = f"SWR is {spoken('swr', worst.value, locale)} at worst, on {worst.band.name}"
     alt = (
-        "Line chart of return loss over frequency, with the SWR that corresponds as second scale. "
+        "Line chart of return loss over frequency, with the SWR that corresponds on the right. "
         f"Least return loss in each band: {_each(losses, 'return_loss_db', locale)}."
     )
     rivals = () if baseline is None else worsts(baseline.chosen, "return_loss_db")
@@ -222,9 +217,7 @@ def match_chart(
     return title, alt + (f" Baseline, dashed: {dashed}." if rivals else "")
 
 
-def heat_chart(
-    result: BuildResult, other: Mapping[str, float], locale: str
-) -> tuple[str, str]:
+def heat_chart(result: BuildResult, other: Mapping[str, float], locale: str) -> tuple[str, str]:
     """Title and alternative text of the heat chart; `other` is the baseline's heat [W]."""
     values = means(result.chosen, "heat_w")
     most = worst_of(values, "heat_w")

@@ -85,8 +85,12 @@ def mean_over_bands(
 
     Parameters
     ----------
+    method : MethodResult
+        Whose bands count.
     key : str
         `efficiency_ratio` or what follows from it: `heat_loss_db`, `heat_w`.
+    power_w : float
+        The rated power [W].
     names : iterable of str, optional
         The bands that count; None where one of them is missing. Default: all measured ones.
     """

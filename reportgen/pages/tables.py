@@ -7,6 +7,8 @@ from dataclasses import dataclass, replace
 
 from reportgen.pages.display import aligned
 
+_FEW_COLUMNS = 6
+
 
 @dataclass(frozen=True, kw_only=True, slots=True)
 class Cell:
@@ -50,8 +52,10 @@ class Table:
 
     @property
     def kind(self) -> str:
-        """Whether most columns hold figures, of equal width, or words."""
-        return "words" if all(column.words for column in self.columns) else "figures"
+        """How it is set: words, a full width of figures, or a few columns of them."""
+        if all(column.words for column in self.columns):
+            return "words"
+        return "figures" if len(self.columns) > _FEW_COLUMNS else "few"
 
 
 def figures(texts: Sequence[str], look: str = "") -> tuple[Cell, ...]:
@@ -78,7 +82,5 @@ def with_points_aligned(table: Table, locale: str) -> Table:
 
 
 def _with_texts(row: Row, texts: tuple[str, ...]) -> Row:
-    cells = tuple(
-        replace(cell, text=text) for cell, text in zip(row.cells, texts, strict=True)
-    )
+    cells = tuple(replace(cell, text=text) for cell, text in zip(row.cells, texts, strict=True))
     return replace(row, cells=cells)

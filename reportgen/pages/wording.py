@@ -5,7 +5,7 @@ from __future__ import annotations
 import re
 
 from reportgen.model import Fitted, Method, Setup
-from reportgen.pages.display import entered, number, plus_minus, quantity_number, with_unit
+from reportgen.pages.display import entered, number, percent_of, plus_minus, with_unit
 from reportgen.physics.quantities import BY_KEY
 
 METHOD_NAMES = {
@@ -42,20 +42,20 @@ METHOD_WORDS = {
         "the turns ratio and an equivalent circuit of two elements."
     ),
     Method.THREE_PAIRS_LOAD: (
-        "Three units were swept back to back, two at a time, and with a known resistor on the high "
-        "side. The pairs separate the units, which need not be equal; the sweeps with the resistor "
-        "give the one number that pairs cannot."
+        "Three units were swept back to back, two at a time, and with a known resistor on the "
+        "high side. The pairs separate the units, which need not be equal; the sweeps with the "
+        "resistor give the one number that pairs cannot."
     ),
     Method.TERMINATIONS: (
         "The low side of a unit was swept with the high side open, shorted and closed by a known "
-        "resistor. Three terminations fix the unit as a network, and its loss into the load follows."
+        "resistor. The three fix the unit as a network, and its loss into any load follows."
     ),
     Method.SERIES_RESISTOR: (
         "The high side was joined to the second port of the analyzer through a known resistor; "
         "loss follows from what arrives there and what the low side reflects."
     ),
     Method.DIRECT: (
-        "Both sides were connected to the analyzer as they are. At so high an impedance ratio small "
+        "Both sides were connected to the analyzer as they are. At a high impedance ratio small "
         "errors of the analyzer weigh heavily."
     ),
     Method.LOAD_ONLY: (
@@ -90,14 +90,16 @@ def criterion_words(criterion: str, locale: str) -> str:
     quantity = BY_KEY.get(found[1]) if found else None
     if found is None or quantity is None:
         return criterion
-    text = quantity_number(quantity, float(found[3]), locale=locale)
+    value = percent_of(float(found[3])) if quantity.percent else float(found[3])
+    text = entered(value, locale=locale)
     return f"{quantity.label} {_RELATIONS[found[2]]} {with_unit(text, quantity.unit)}"
 
 
 def fitted_sentence(fitted: Fitted, locale: str) -> str:
     """What the data named, or why they could not."""
     name, unit = _FITTED.get(fitted.quantity, (fitted.quantity, ""))
-    subject = f"{name} of {fitted.of.removeprefix('loads.')}"
+    place = fitted.of.replace("loads.", "load ", 1)
+    subject = f"{name} at {place}"
     if fitted.value is None:
         reason = f": {fitted.reason}" if fitted.reason else ""
         return f"{subject}: not determined{reason}."

@@ -1,0 +1,90 @@
+"""Axes with one row for each band, and watts across."""
+
+from __future__ import annotations
+
+from collections.abc import Sequence
+
+from matplotlib.axes import Axes
+from matplotlib.figure import Figure
+
+from reportgen.pages.canvas import (
+    Size,
+    label_style,
+    name_in_chart,
+    new_figure,
+    size_of,
+    text_style,
+    text_width,
+)
+from reportgen.pages.look import LIGHT
+
+_LABEL_GAP = 7.0
+_RING = 6.0
+
+
+def band_figure(size: Size, names: Sequence[str]) -> tuple[Figure, Axes]:
+    """Axes with one row for each band, the first at the top."""
+    top, bottom = size.line + 4, 2.0 * size.letters
+    figure, axes = new_figure(size, size.row * len(names) + top + bottom, top, bottom)
+    axes.set_ylim(len(names) - 0.5, -0.5)
+    labels = [name_in_chart(name) for name in names]
+    axes.set_yticks(range(len(names)), labels, minor=False, **text_style(size))
+    return figure, axes
+
+
+def set_watt_axis(axes: Axes, low: float, high: float) -> None:
+    """The scale of watts, from zero."""
+    size = size_of(axes)
+    gap = _round_gap((high - low) / 5)
+    ticks = [gap * index for index in range(int(low // gap), int(high // gap) + 2)]
+    axes.set_xlim(ticks[0], ticks[-1])
+    labels = [f"{tick:g}" for tick in ticks[:-1]] + [f"{ticks[-1]:g} W"]
+    axes.set_xticks(ticks, labels, minor=False, **label_style(size))
+    axes.vlines(ticks, *axes.get_ylim(), color=LIGHT.hairline, linewidth=0.5, zorder=0.5)
+    axes.spines["bottom"].set_visible(False)
+
+
+def _round_gap(about: float) -> float:
+    power = 10.0 ** int(f"{max(about, 1e-9):e}".partition("e")[2])
+    return float(f"{next(step for step in (1, 2, 5, 10) if step * power >= about) * power:g}")
+
+
+def add_stems(
+    axes: Axes, values: Sequence[float], rivals: Sequence[float | None], colour: str
+) -> None:
+    """A line from zero to a dot for each value; a ring for what it is compared with."""
+    rows = range(len(values))
+    axes.hlines(rows, 0, values, color=colour, linewidth=1.7, zorder=2)
+    axes.plot(values, rows, "o", color=colour, markersize=5.5, zorder=4, clip_on=False)
+    known = [(rival, row) for row, rival in enumerate(rivals) if rival is not None]
+    if known:
+        axes.plot(
+            *zip(*known, strict=True),
+            "o",
+            color=LIGHT.baseline,
+            markerfacecolor="none",
+            markeredgewidth=1.1,
+            markersize=6.5,
+            zorder=3,
+            clip_on=False,
+        )
+
+
+def add_figures(
+    axes: Axes, values: Sequence[float], rivals: Sequence[float | None], labels: Sequence[str]
+) -> None:
+    """The figure of each row, right of its dot, or of the ring where that is in the way."""
+    size = size_of(axes)
+    low, high = axes.get_xlim()
+    for row, (value, rival, label) in enumerate(zip(values, rivals, labels, strict=True)):
+        gap = (_LABEL_GAP + text_width(label, size) + _RING) * (high - low) / size.plot_width
+        at = rival if rival is not None and value - gap / 4 < rival < value + gap else value
+        axes.annotate(
+            label,
+            (max(value, at), row),
+            xytext=(_LABEL_GAP, 0),
+            textcoords="offset points",
+            va="center_baseline",
+            annotation_clip=False,
+            **text_style(size),
+        )
