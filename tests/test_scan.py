@@ -9,7 +9,7 @@ from pathlib import Path
 import pytest
 
 from reportgen.errors import InputRejected
-from reportgen.intake.paths import build_keys, read_bytes, shown
+from reportgen.intake.paths import build_keys, file_name_problem, read_bytes, shown
 from reportgen.intake.scan import MARKER, Scan, ScanLimits, scan_runs
 
 
@@ -164,7 +164,38 @@ def test_missing_and_large_files_are_refused(tmp_path: Path) -> None:
     assert rejection(tmp_path, "a.s1p") == "too-large"
 
 
-# --- names and keys ------------------------------------------------------------------------------
+# --- names of files ------------------------------------------------------------------------------
+
+
+@pytest.mark.parametrize("name", ["a.s1p", "raw/a-load.s1p", "Größe 1.s2p", "a..b.s1p", "a~1.s1p"])
+def test_names_inside_the_folder_are_safe(name: str) -> None:
+    assert file_name_problem(name) is None
+
+
+@pytest.mark.parametrize(
+    "name",
+    [
+        "/etc/passwd",
+        "../a.s1p",
+        "raw/../../a.s1p",
+        "C:a.s1p",
+        "raw\\a.s1p",
+        "\\\\host\\share",
+        "~/a.s1p",
+        "file:///a.s1p",
+        "https://example.org/a.s1p",
+        "a\0.s1p",
+        "a\u202e.s1p",
+        "./a.s1p",
+        "",
+        ".hidden/a.s1p",
+    ],
+)
+def test_names_that_lead_elsewhere_are_not(name: str) -> None:
+    assert file_name_problem(name) is not None
+
+
+# --- keys, and names as shown ----------------------------------------------------------------------
 
 
 @pytest.mark.parametrize(

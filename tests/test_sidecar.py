@@ -6,11 +6,10 @@ from datetime import date
 from pathlib import Path
 
 import pytest
-from hypothesis import example, given
+from hypothesis import example, given, settings
 from hypothesis import strategies as st
 
 from reportgen.errors import InputRejected
-from reportgen.intake.paths import file_name_problem
 from reportgen.intake.sidecar import completed_entry, parse_bench, parse_build
 from reportgen.intake.sidecar_text import MAX_BYTES
 from reportgen.model import BenchSheet, BuildSheet, Finding, Setup, SweepEntry
@@ -230,40 +229,9 @@ def test_hostile_files_are_rejected_with_a_reason(data: bytes, code: str) -> Non
     assert [finding.code for finding in caught.value.findings] == [code]
 
 
-# --- names of files ------------------------------------------------------------------------------
-
-
-@pytest.mark.parametrize("name", ["a.s1p", "raw/a-load.s1p", "Größe 1.s2p", "a..b.s1p", "a~1.s1p"])
-def test_names_inside_the_folder_are_safe(name: str) -> None:
-    assert file_name_problem(name) is None
-
-
-@pytest.mark.parametrize(
-    "name",
-    [
-        "/etc/passwd",
-        "../a.s1p",
-        "raw/../../a.s1p",
-        "C:a.s1p",
-        "raw\\a.s1p",
-        "\\\\host\\share",
-        "~/a.s1p",
-        "file:///a.s1p",
-        "https://example.org/a.s1p",
-        "a\0.s1p",
-        "a\u202e.s1p",
-        "./a.s1p",
-        "raw//a.s1p",
-        "",
-        ".hidden/a.s1p",
-    ],
-)
-def test_names_that_lead_elsewhere_are_not(name: str) -> None:
-    assert file_name_problem(name) is not None
-
-
 # --- whatever the bytes --------------------------------------------------------------------------
 
+unhurried = settings(deadline=None)  # the first parse of a process prepares the validation
 _LINES = st.sampled_from([*BUILD_TOML.splitlines(), *RUNS_TOML.splitlines()])
 
 
@@ -281,6 +249,7 @@ def only_a_rejection(data: bytes) -> None:
         assert findings != ()
 
 
+@unhurried
 @given(st.binary(max_size=400))
 @example(b"[[sweep]]\n[[sweep]]\nfile=1\n")
 @example(b"sweep=[1,[2],{file='a'}]\nloads=3\ncore=[]\nbands=1\nlimits=[]\nregion='x'")
@@ -289,6 +258,7 @@ def test_arbitrary_bytes_raise_only_a_rejection(data: bytes) -> None:
     only_a_rejection(data)
 
 
+@unhurried
 @given(st.lists(_LINES, max_size=25))
 def test_shuffled_lines_of_the_examples_raise_only_a_rejection(lines: list[str]) -> None:
     only_a_rejection("\n".join(lines).encode())
@@ -298,6 +268,7 @@ _KEYS = ["name", "winding", "sweep", "core", "loads", "bands", "own_band", "matc
 _VALUES = ["1", "1.5", "'x'", "[]", "[1]", "{}", "[{}]", "true", "1979-05-27", "{a={}}"]
 
 
+@unhurried
 @given(st.dictionaries(st.sampled_from(_KEYS), st.sampled_from(_VALUES)))
 def test_known_keys_with_values_of_any_kind_raise_only_a_rejection(tree: dict[str, str]) -> None:
     only_a_rejection("\n".join(f"{key} = {value}" for key, value in tree.items()).encode())

@@ -35,6 +35,7 @@ from reportgen.model import (
     Setup,
     Severity,
     SweepEntry,
+    ThermalEntry,
 )
 from reportgen.physics.allocations import known_bands
 
@@ -125,63 +126,50 @@ def read_build(runs: Runs, folder: BuildFolder) -> Build:
     InputRejected
         `build.toml` cannot be used, or no sweep of a unit is left.
     """
-    data = _content(runs, folder, BUILD_FILE, at_most=MAX_BYTES)
-    sheet = parse_build(data, file=BUILD_FILE, bench=runs.bench)
-    inputs = [_input(BUILD_FILE, data)]
-    findings = list(check_dates(sheet, runs.bench))
-    measurements = []
-    for place, entry in enumerate(sheet.sweep, start=1):
-        taken = _SweepOfBuild(runs=runs, folder=folder, sheet=sheet, entry=entry, place=place)
-        measurement = taken.read(inputs, findings)
-        if measurement is not None:
-            measurements.append(measurement)
-    findings += [*_thermal_logs(runs, folder, sheet), *_unnamed_sweeps(folder, sheet)]
-    if all(measurement.entry.setup in _NOT_OF_A_UNIT for measurement in measurements):
-        raise InputRejected((*findings, _nothing_left(sheet)))
-    return Build(
-        key=folder.key,
-        folder=folder.folder,
-        sheet=sheet,
-        measurements=tuple(measurements),
-        inputs=tuple(inputs),
-        findings=tuple(findings),
-    )
+    reading = _Reading(runs, folder)
+    for place, entry in enumerate(reading.sheet.sweep, start=1):
+        reading.take_sweep(entry, f"sweep[{place}]")
+    for place, log in enumerate(reading.sheet.thermal, start=1):
+        reading.take_log(log, f"thermal[{place}]")
+    reading.findings += _unnamed_sweeps(folder, reading.sheet)
+    return reading.build()
 
 
-@dataclass(frozen=True, kw_only=True, slots=True)
-class _SweepOfBuild:
-    """One `[[sweep]]` of a build that is being read; `place` counts from 1."""
+class _Reading:
+    """What has been read of a build so far, and what was found wrong."""
 
-    runs: Runs
-    folder: BuildFolder
-    sheet: BuildSheet
-    entry: SweepEntry
-    place: int
+    def __init__(self, runs: Runs, folder: BuildFolder) -> None:
+        self.runs, self.folder = runs, folder
+        data = _content(runs, folder, BUILD_FILE, at_most=MAX_BYTES)
+        self.sheet = parse_build(data, file=BUILD_FILE, bench=runs.bench)
+        self.inputs = [_input(BUILD_FILE, data)]
+        self.findings = list(check_dates(self.sheet, runs.bench))
+        self.measurements: list[Measurement] = []
 
-    def read(self, inputs: list[InputFile], findings: list[Finding]) -> Measurement | None:
-        """The measurement, None when there is none; what was read and what is wrong is added."""
-        file = self.entry.file
+    def take_sweep(self, entry: SweepEntry, key: str) -> None:
+        """Read one sweep; what keeps it from use becomes a finding."""
         try:
-            data = _named_file(self.runs, self.folder, file, f"sweep[{self.place}].file")
+            data = _named_file(self.runs, self.folder, entry.file, f"{key}.file")
         except InputRejected as rejected:
-            findings += rejected.findings
-            return None
-        if self.entry.setup is Setup.SPOT:
-            findings.append(_not_used("spot-not-read", "spot readings are", file))
-            return None
+            self.findings += rejected.findings
+            return
+        if entry.setup is Setup.SPOT:
+            self.findings.append(_not_used("spot-not-read", "spot readings are", entry.file))
+            return
         try:
-            measurement, found = self.parse(data)
+            measurement = self.measurement(data, entry, key)
         except InputRejected as rejected:
-            inputs.append(_input(file, data))
-            findings += rejected.findings
-            return None
-        inputs.append(_input(file, data, points=len(measurement.sweep.frequency_hz)))
-        findings += [*found, *check_sweep(measurement, self.runs.bands)]
-        return measurement
+            self.findings += rejected.findings
+            self.inputs.append(_input(entry.file, data))
+            return
+        self.measurements.append(measurement)
+        points = len(measurement.sweep.frequency_hz)
+        self.inputs.append(_input(entry.file, data, points=points))
+        self.findings += check_sweep(measurement, self.runs.bands)
 
-    def parse(self, data: bytes) -> tuple[Measurement, tuple[Finding, ...]]:
+    def measurement(self, data: bytes, entry: SweepEntry, key: str) -> Measurement:
         """The sweep in its set-up; rejected when its ports contradict the set-up."""
-        entry = completed_entry(self.entry, self.sheet, self.runs.bench)
+        entry = completed_entry(entry, self.sheet, self.runs.bench)
         sweep, findings = parse_touchstone(
             data,
             file=entry.file,
@@ -190,12 +178,35 @@ class _SweepOfBuild:
             reverse_ports=entry.reverse_ports,
             bands=self.runs.bands,
         )
+        self.findings += findings
         if sweep.ports != PORTS_OF_SETUP[entry.setup]:
-            contradiction = _contradiction(entry, sweep.ports, f"sweep[{self.place}].setup")
-            raise InputRejected((*findings, contradiction))
+            raise InputRejected((_contradiction(entry, sweep.ports, f"{key}.setup"),))
         loads = self.runs.bench.loads | self.sheet.loads
-        load = loads[entry.load] if entry.load else None
-        return Measurement(entry=entry, sweep=sweep, load=load), findings
+        return Measurement(
+            entry=entry, sweep=sweep, load=loads[entry.load] if entry.load else None
+        )
+
+    def take_log(self, entry: ThermalEntry, key: str) -> None:
+        """See that a temperature log is there."""
+        try:
+            _named_file(self.runs, self.folder, entry.file, f"{key}.file")
+        except InputRejected as rejected:
+            self.findings += rejected.findings
+        else:
+            self.findings.append(_not_used("thermal-not-read", "temperature logs are", entry.file))
+
+    def build(self) -> Build:
+        """The build, when at least one sweep of a unit is left."""
+        if all(each.entry.setup in _NOT_OF_A_UNIT for each in self.measurements):
+            raise InputRejected((*self.findings, _nothing_left(self.sheet)))
+        return Build(
+            key=self.folder.key,
+            folder=self.folder.folder,
+            sheet=self.sheet,
+            measurements=tuple(self.measurements),
+            inputs=tuple(self.inputs),
+            findings=tuple(self.findings),
+        )
 
 
 def _contradiction(entry: SweepEntry, ports: int, key: str) -> Finding:
@@ -207,16 +218,6 @@ def _contradiction(entry: SweepEntry, ports: int, key: str) -> Finding:
 
 def _ports(count: int) -> str:
     return "1 port" if count == 1 else f"{count} ports"
-
-
-def _thermal_logs(runs: Runs, folder: BuildFolder, sheet: BuildSheet) -> Iterator[Finding]:
-    for place, entry in enumerate(sheet.thermal, start=1):
-        try:
-            _named_file(runs, folder, entry.file, f"thermal[{place}].file")
-        except InputRejected as rejected:
-            yield from rejected.findings
-        else:
-            yield _not_used("thermal-not-read", "temperature logs are", entry.file)
 
 
 def _not_used(code: str, what: str, file: str) -> Finding:
