@@ -167,7 +167,7 @@ def test_missing_and_large_files_are_refused(tmp_path: Path) -> None:
 # --- names of files ------------------------------------------------------------------------------
 
 
-@pytest.mark.parametrize("name", ["a.s1p", "raw/a-load.s1p", "Größe 1.s2p", "a..b.s1p", "a~1.s1p"])
+@pytest.mark.parametrize("name", ["a.s1p", "raw/a-load.s1p", "Größe 1.s2p", "a..b.s1p"])
 def test_names_inside_the_folder_are_safe(name: str) -> None:
     assert file_name_problem(name) is None
 
@@ -195,7 +195,7 @@ def test_names_that_lead_elsewhere_are_not(name: str) -> None:
     assert file_name_problem(name) is not None
 
 
-# --- keys, and names as shown ----------------------------------------------------------------------
+# --- keys, and names as shown --------------------------------------------------------------------
 
 
 @pytest.mark.parametrize(

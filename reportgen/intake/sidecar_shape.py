@@ -122,14 +122,15 @@ def _problem(kind: Any, tree: Tree, location: tuple[str | int, ...], code: str) 
     """What is wrong at the place that a validation error names."""
     path: Path = ()
     hint: Any = kind
-    for part in location:
+    wrong_name = location[-1] == "[key]" and code.startswith("string_")
+    for part in location[:-1] if wrong_name else location:
         inner = _inner(hint, part)
         if inner is None and not is_dataclass(_bare(hint)):
             break  # the rest names one of several kinds, not a place
         path, hint, outer = (*path, part), inner, _bare(hint)
     if code == "unexpected_keyword_argument":
         return _unknown_key(path, _hints(outer), kind)
-    if location[-1] == "[key]" and code.startswith("string_"):
+    if wrong_name:
         message = f"found the name {shown_value(path[-1])}, expected 1 to 120 characters"
         return Problem(path, "wrong-name", message, "give it a name of that length")
     if code == "missing":
@@ -165,6 +166,7 @@ def _wrong_value(path: Path, value: Any, hint: Any) -> Problem:
     expected = _expected(hint, key, value)
     if isinstance(path[-1], int) and is_dataclass(_bare(hint)):
         expected = f"a table [[{key}]]"
+        hint = tuple[hint, ...]
     message = f"found {shown_value(value)}, expected {expected}"
     return Problem(path, "wrong-value", message, _remedy(key, value, _bare(hint)))
 
@@ -234,7 +236,8 @@ def _expected(hint: Any, key: str, value: object = None) -> str:
     if get_origin(bare) is tuple:
         inner = _inner(bare, 0)
         what = f"tables [[{key}]]" if is_dataclass(inner) else "a list of texts"
-        return what + (_length(limits, "entries") if isinstance(value, list) else "")
+        size = _length(limits, "entries") if isinstance(value, list) else ""
+        return what + size.replace(" of", " with", 1)
     return f"a table [{key}]"
 
 
@@ -266,13 +269,12 @@ def _range(limits: list[Any], value: object) -> str:
         if isinstance(limit, Gt):
             words.append(f"above {limit.gt:g}")
         elif isinstance(limit, Ge):
-            words.append(f"from {limit.ge:g}")
+            words.append(f"at least {limit.ge:g}")
         elif isinstance(limit, Le):
-            words.append(f"up to {limit.le:g}")
+            words.append(f"at most {limit.le:g}")
         elif isinstance(limit, Lt) and _worth_saying(limit.lt, value):
             words.append(f"below {limit.lt:,.0f}".replace(",", " "))
-    joint = " " if words and words[0].startswith("from") else " and "
-    return f" {joint.join(words)}" if words else ""
+    return f" {' and '.join(words)}" if words else ""
 
 
 def _worth_saying(bound: Any, value: object) -> bool:
