@@ -85,6 +85,7 @@ def section_arms(halved: Halved, capacitor_s: ComplexArray) -> tuple[ComplexArra
     Parameters
     ----------
     halved : Halved
+        The pair.
     capacitor_s : (..., F) complex array
         Admittance of what lies across the low side [siemens].
 
@@ -120,57 +121,75 @@ def load_squared(halved: Halved, z_in_ohm: ComplexArray) -> ComplexArray:
 
 
 def ratio_by_load(squared: ComplexArray, load_ohm: Impedance, near: ComplexArray) -> ComplexArray:
-    """Voltage ratio A from a load sweep, of the two roots the one on the side of `near`."""
+    """Voltage ratio A from 2 t^2 Z; of the two roots the one on the side of `near`."""
     t = np.sqrt(squared / (2 * load_ohm))
     return np.asarray(np.where((t * np.conj(near)).real < 0, -t, t))
 
 
-def fit_stray_f(
+@dataclass(frozen=True, slots=True, eq=False)
+class StrayFit:
+    """A stray capacitance as the data name it, each (...).
+
+    `stray_f` [F]; `spread_f`: by how much the capacitance would have to be off to cause the misfit
+    that is left [F]; `resistance_ratio`: the load's resistance that the sweeps imply over the one
+    that was entered, the turns ratio being right [ratio].
+    """
+
+    stray_f: RealArray
+    spread_f: RealArray
+    resistance_ratio: RealArray
+
+
+def fit_stray(
     squared: ComplexArray,
-    section: ComplexArray,
-    resistance_ohm: float,
+    expected: ComplexArray,
+    resistance_ohm: float | RealArray,
     frequency_hz: RealArray,
-) -> RealArray:
-    """Capacitance across the load that makes load sweep and lumped section agree [F].
+) -> StrayFit:
+    """Capacitance across the load that makes the load sweep and the closed pair agree.
 
     Parameters
     ----------
     squared : (..., F) complex array
         2 t^2 Z of the load sweep [ohm].
-    section : (..., F) complex array
-        t by the lumped section [ratio].
-    resistance_ohm : float
+    expected : (..., F) complex array
+        t as the pair alone was closed [ratio].
+    resistance_ohm : float or (..., 1) array
         The load's resistance [ohm].
     frequency_hz : (F,) array
         [Hz].
 
     Returns
     -------
-    (...) array
+    StrayFit
         Difference between the capacitance at the load and that present at the open, or half
-        that of the pair's join [F]; negative values are allowed.
+        that of the pair's join; negative values are allowed.
 
     Notes
     -----
-    Complex least squares of ln(t(C)/t_section) above 3 MHz, its mean log-magnitude removed since
-    the turns ratio and the load's resistance are only nearly known. t(C) goes with
+    Complex least squares of ln(t(C)/t) above 3 MHz, its mean log-magnitude removed since the
+    turns ratio and the load's resistance are only nearly known. t(C) goes with
     sqrt(1/R + jwC), so a few Gauss-Newton steps from C = 0 settle it.
     """
     used = frequency_hz >= FIT_FROM_HZ
     omega = 2 * np.pi * frequency_hz[used]
     conductance = 1 / resistance_ohm
-    root = np.sqrt(squared[..., used] * conductance / 2) / section[..., used]
-    root = np.where(root.real < 0, -root, root)
-    misfit_at_zero = np.log(root)
+    root = np.sqrt(squared[..., used] * conductance / 2) / expected[..., used]
+    misfit_at_zero: ComplexArray = np.log(np.where(root.real < 0, -root, root))
     stray = np.zeros(misfit_at_zero.shape[:-1])
+    if not used.any():
+        return StrayFit(stray, stray + np.inf, stray + 1)
     for _ in range(_ITERATIONS):
         admittance = conductance + 1j * omega * stray[..., None]
-        misfit = _level_free(misfit_at_zero + 0.5 * np.log(admittance / conductance))
-        slope = _level_free(0.5j * omega / admittance)
-        step = np.sum((misfit * slope.conj()).real, axis=-1) / np.sum(np.abs(slope) ** 2, axis=-1)
+        whole: ComplexArray = misfit_at_zero + 0.5 * np.log(admittance / conductance)
+        misfit = _level_free(whole)
+        slope = _level_free(np.asarray(0.5j * omega / admittance))
+        weight = np.sum(np.abs(slope) ** 2, axis=-1)
+        step = np.sum((misfit * slope.conj()).real, axis=-1) / weight
         stray = np.clip(stray - step, -FIT_BOUND_PF * 1e-12, FIT_BOUND_PF * 1e-12)
-    return np.asarray(stray)
+    spread = np.sqrt(np.sum(np.abs(misfit) ** 2, axis=-1) / weight)
+    return StrayFit(stray, spread, np.exp(2 * whole.real.mean(axis=-1)))
 
 
 def _level_free(log_ratio: ComplexArray) -> ComplexArray:
-    return log_ratio - log_ratio.real.mean(axis=-1, keepdims=True)
+    return np.asarray(log_ratio - log_ratio.real.mean(axis=-1, keepdims=True))

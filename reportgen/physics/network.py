@@ -78,7 +78,7 @@ def shunt_arm(admittance_s: Impedance) -> Chain:
 
 def ideal_transformer(turns_ratio: float | RealArray) -> Chain:
     """Lossless, with `turns_ratio` times as many turns on the high side [ratio]."""
-    n = np.asarray(turns_ratio, dtype=complex)
+    n: ComplexArray = np.asarray(turns_ratio, dtype=np.complex128)
     return Chain(1 / n, np.zeros_like(n), np.zeros_like(n), n)
 
 
@@ -161,7 +161,7 @@ def efficiency_ratio(chain: Chain, load_ohm: Impedance) -> RealArray:
     It equals the operating power gain of section 12.1 of [1]_. 1 for a lossless two-port.
     """
     entering = (chain.a * load_ohm + chain.b) * np.conj(chain.c * load_ohm + chain.d)
-    return np.asarray(np.real(load_ohm) / np.real(entering))
+    return np.asarray(np.asarray(load_ohm).real / entering.real)
 
 
 def reflection_ratio(chain: Chain, load_ohm: Impedance, source_ohm: float) -> RealArray:

@@ -66,7 +66,12 @@ class Analyzer:
     """One calibrated analyzer; every method takes one sweep."""
 
     def __init__(
-        self, grade: Grade, frequency_hz: np.ndarray, rng: np.random.Generator, *, one_path: bool = False
+        self,
+        grade: Grade,
+        frequency_hz: np.ndarray,
+        rng: np.random.Generator,
+        *,
+        one_path: bool = False,
     ) -> None:
         self.grade, self.frequency_hz, self.rng, self.one_path = grade, frequency_hz, rng, one_path
         match_db = ONE_PATH_LOAD_MATCH_DB if one_path else grade.load_match_db

@@ -33,7 +33,8 @@ class Unit:
     high_turns: float
     core_factor_per_m: float  # C1 of the (stacked) ring
     initial_permeability: float
-    dispersion_hz: float  # where the lossy part peaks
+    dispersion_hz: float  # where the lossy part peaks, more or less
+    material: str  # which law of dispersion
     leakage_low_h: float
     leakage_ladder_h: float
     leakage_high_h: float  # still referred to the low side
@@ -55,15 +56,40 @@ def core_factor_per_m(outer_mm: float, inner_mm: float, height_mm: float, stack:
 
 
 def permeability(unit: Unit, frequency_hz: np.ndarray) -> np.ndarray:
-    """Complex relative permeability: a broadened relaxation (Cole-Davidson shape)."""
-    return 1 + (unit.initial_permeability - 1) / (1 + 1j * frequency_hz / unit.dispersion_hz) ** 0.9
+    """Complex relative permeability by the material's law."""
+    law = MATERIALS[unit.material]
+    return 1 + (unit.initial_permeability - 1) * law(frequency_hz / unit.dispersion_hz)
+
+
+def _one_broad_relaxation(f: np.ndarray) -> np.ndarray:
+    """Cole-Davidson."""
+    return 1 / (1 + 1j * f) ** 0.9
+
+
+def _two_relaxations(f: np.ndarray) -> np.ndarray:
+    """A Cole-Cole and a Havriliak-Negami term."""
+    return 0.55 / (1 + (1j * f / 1.8) ** 0.85) + 0.45 / (1 + (2j * f) ** 0.95) ** 1.2
+
+
+def _wall_and_spin(f: np.ndarray) -> np.ndarray:
+    """A damped domain-wall resonance below the spins' relaxation."""
+    return 0.45 / (1 - (f / 0.65) ** 2 + 2.2j * f / 0.65) + 0.55 / (1 + 1j * f)
+
+
+MATERIALS = {
+    "broad": _one_broad_relaxation,
+    "double": _two_relaxations,
+    "wall": _wall_and_spin,
+}
 
 
 def chain_of_unit(unit: Unit, frequency_hz: np.ndarray) -> Chain:
     """The unit from its low to its high side, fixture included."""
     omega = 2 * np.pi * frequency_hz
     skin_ohm = unit.wire_ohm * np.sqrt(frequency_hz / 1e6)
-    magnetising_h = MU_0 * unit.low_turns**2 / unit.core_factor_per_m * permeability(unit, frequency_hz)
+    magnetising_h = (
+        MU_0 * unit.low_turns**2 / unit.core_factor_per_m * permeability(unit, frequency_hz)
+    )
     rung = shunt_arm(1 / (1j * omega * magnetising_h) / SECTIONS)
     rail = series_arm((1j * omega * unit.leakage_ladder_h + 0.6 * skin_ohm) / SECTIONS)
     n = unit.turns_ratio
@@ -74,9 +100,7 @@ def chain_of_unit(unit: Unit, frequency_hz: np.ndarray) -> Chain:
         chain = chain @ rail @ rung
     chain = chain @ ideal_transformer(n)
     chain = chain @ series_arm((1j * omega * unit.leakage_high_h + 0.2 * skin_ohm) * n * n)
-    return chain @ shunt_arm(
-        1j * omega * (unit.self_capacitance_f + unit.fixture_capacitance_f)
-    )
+    return chain @ shunt_arm(1j * omega * (unit.self_capacitance_f + unit.fixture_capacitance_f))
 
 
 def true_efficiency_ratio(unit: Unit, frequency_hz: np.ndarray, load_ohm: float) -> np.ndarray:
@@ -86,6 +110,7 @@ def true_efficiency_ratio(unit: Unit, frequency_hz: np.ndarray, load_ohm: float)
 
 def twin_of(unit: Unit, rng: np.random.Generator, spread: float = 0.02) -> Unit:
     """Another unit of the same build, wound by the same hands: everything a little different."""
+
     def near(value: float, times: float = 1.0) -> float:
         return value * (1 + times * spread * rng.uniform(-1, 1))
 
@@ -123,6 +148,7 @@ def random_unit(rng: np.random.Generator) -> Unit:
     leakage_h = rng.uniform(0.06, 0.20) * 1e-6
     low, ladder = rng.uniform(0.2, 0.5), rng.uniform(0.2, 0.4)
     return Unit(
+        material=list(MATERIALS)[rng.integers(len(MATERIALS))],
         low_turns=low_turns,
         high_turns=high_turns,
         core_factor_per_m=core_factor,
@@ -132,7 +158,7 @@ def random_unit(rng: np.random.Generator) -> Unit:
         leakage_ladder_h=leakage_h * ladder,
         leakage_high_h=leakage_h * (1 - low - ladder),
         wire_ohm=rng.uniform(0.02, 0.06),
-        self_capacitance_f=rng.uniform(0.3, 1.2) * 1e-12,
+        self_capacitance_f=rng.uniform(0.3, 1.6) * 1e-12,
         fixture_capacitance_f=rng.uniform(0.1, 0.5) * 1e-12,
         lead_m=rng.uniform(0.005, 0.03),
         capacitor_f=float(np.round(leakage_h / 50**2 * rng.uniform(0.7, 1.3) * 1e12)) * 1e-12,

@@ -1,0 +1,238 @@
+"""The winding's equivalent circuit, fitted over a whole sweep to what the half of a pair shows.
+
+From the low side: lead, capacitor, series arm (leakage and wire), shunt arm (core), series arm,
+capacitance across the high side, ideal transformer. Read point by point, a pair cannot tell how
+the series arm divides about the core, nor the core from the high side's capacitance; read over
+frequency with a core that disperses as ferrites do, it can.
+
+References
+----------
+.. [1] T. Tsutaoka, J. Appl. Phys. 93, 2789 (2003): permeability of ferrites as the sum of a
+   domain-wall resonance and a spin relaxation (cited from memory).
+"""
+
+from __future__ import annotations
+
+from dataclasses import dataclass, replace
+
+import numpy as np
+from numpy.typing import NDArray
+
+from reportgen.model import ComplexArray, RealArray
+from reportgen.physics.bisection import Halved
+from reportgen.physics.network import reflection_of_impedance
+
+MISFIT_LIMIT = 0.02
+"""Largest root mean square of the reflections' misfit with which the circuit is believed."""
+
+_FIT_POINTS = 100
+_FIT_TO_HZ = 60e6
+_SIGMA = 2e-3  # what a reflection may be off, all of its points together [ratio]
+_EFFECTIVE_POINTS = 30  # residuals turn slowly with frequency: that many say something new
+_SPLIT_ROUNDS = 6
+
+
+@dataclass(frozen=True, slots=True)
+class Parameter:
+    """One unknown of the circuit: where the fit starts, and what is expected of it beforehand.
+
+    `spread` is a standard deviation. Windings and materials as in common practice; the spreads
+    are wide and the sweep overrules them where it can.
+    """
+
+    start: float
+    spread: float
+
+
+LEAKAGE, WIRE, SHARE, HIGH_PF, MAGNETISING, CAPACITOR, LEAD_NH = range(7)
+RELAXATION, EXPONENT, DOMAIN, RESONANCE, DAMPING = range(7, 12)
+
+_PARAMETERS = {
+    LEAKAGE: Parameter(0.0, 1.5),  # ln of leakage over its first guess
+    WIRE: Parameter(np.log(0.05), 1.0),  # ln of the winding's resistance at 1 MHz over 1 ohm
+    SHARE: Parameter(0.25, 0.15),  # of the series arm behind the core
+    HIGH_PF: Parameter(1.0, 0.5),  # across the high side, beyond a capacitor there
+    MAGNETISING: Parameter(0.2, 1.5),  # ln of magnetising inductance over its first guess
+    RELAXATION: Parameter(np.log(10.0), 1.0),  # ln of the spins' relaxation over 1 MHz
+    EXPONENT: Parameter(0.9, 0.15),  # of the relaxation
+    DOMAIN: Parameter(-0.5, 1.0),  # ln of odds: the domain walls' share of the permeability
+    RESONANCE: Parameter(-0.4, 0.4),  # ln of domain-wall resonance over the relaxation
+    DAMPING: Parameter(0.7, 0.4),  # ln of the domain walls' damping
+    CAPACITOR: Parameter(0.0, 1.0),  # deviation over the capacitor's standard deviation
+    LEAD_NH: Parameter(5.0, 3.0),  # in front of the capacitor
+}
+START = np.array([_PARAMETERS[index].start for index in range(len(_PARAMETERS))])
+SPREAD = np.array([_PARAMETERS[index].spread for index in range(len(_PARAMETERS))])
+_BOUND_SPREADS = 5.0
+
+
+@dataclass(frozen=True, kw_only=True, slots=True, eq=False)
+class Frame:
+    """What the circuit is fitted within: sidecar values, and first guesses of the inductances.
+
+    Capacitors across either side as entered [F], the low one's relative standard deviation, their
+    loss tangent [ratio], inductances [H].
+    """
+
+    turns_ratio: float
+    low_capacitor_f: float = 0.0
+    low_capacitor_spread: float = 0.03
+    high_capacitor_f: float = 0.0
+    loss_tangent: float = 0.0
+    leakage_h: float = 1e-7
+    magnetising_h: float = 1e-6
+
+
+@dataclass(frozen=True, slots=True, eq=False)
+class Arms:
+    """The circuit's parts at each frequency, referred to the low side; (..., F) complex.
+
+    `lead_ohm`, `capacitor_s`, `series_ohm` (whole), `shunt_s` (core), `high_s`, and `share`, the
+    part of the series arm that lies behind the core, (..., 1) [ratio].
+    """
+
+    lead_ohm: ComplexArray
+    capacitor_s: ComplexArray
+    series_ohm: ComplexArray
+    shunt_s: ComplexArray
+    high_s: ComplexArray
+    share: RealArray
+
+
+def arms_of(parameters: RealArray, frame: Frame, frequency_hz: RealArray) -> Arms:
+    """The circuit's parts at (F,) frequencies for (..., 12) parameters."""
+    p = [parameters[..., index, None] for index in range(len(START))]
+    f = frequency_hz
+    jw = 2j * np.pi * f
+    spin_hz = 1e6 * np.exp(p[RELAXATION])
+    wall_hz = spin_hz * np.exp(p[RESONANCE])
+    wall = 1 / (1 + np.exp(-p[DOMAIN]))
+    jf = 1j * f
+    dispersion = wall / (1 - (f / wall_hz) ** 2 + jf / wall_hz * np.exp(p[DAMPING]))
+    dispersion = dispersion + (1 - wall) / (1 + jf / spin_hz) ** p[EXPONENT]
+    high_f = 1e-12 * p[HIGH_PF] + frame.high_capacitor_f
+    return Arms(
+        np.asarray(jw * 1e-9 * p[LEAD_NH]),
+        low_capacitor_s(frame, f) * (1 + frame.low_capacitor_spread * p[CAPACITOR]),
+        jw * frame.leakage_h * np.exp(p[LEAKAGE]) + np.exp(p[WIRE]) * np.sqrt(f / 1e6),
+        np.asarray(1 / (jw * frame.magnetising_h * np.exp(p[MAGNETISING]) * dispersion)),
+        np.asarray(jw * high_f * frame.turns_ratio**2),
+        p[SHARE],
+    )
+
+
+def open_and_short_ohm(arms: Arms) -> tuple[ComplexArray, ComplexArray]:
+    """Impedance at the low side with the high side open, and shorted [ohm]."""
+    behind = arms.share * arms.series_ohm
+    front = arms.series_ohm - behind
+    y_open = arms.shunt_s + arms.high_s / (1 + behind * arms.high_s)
+    z_open = front + 1 / y_open
+    z_short = front + behind / (1 + behind * arms.shunt_s)
+    return (
+        arms.lead_ohm + z_open / (1 + z_open * arms.capacitor_s),
+        arms.lead_ohm + z_short / (1 + z_short * arms.capacitor_s),
+    )
+
+
+def low_capacitor_s(frame: Frame, frequency_hz: RealArray) -> ComplexArray:
+    """Admittance of the capacitor across the low side, as entered [siemens]."""
+    omega = 2 * np.pi * frequency_hz
+    return np.asarray(omega * frame.low_capacitor_f * (1j + frame.loss_tangent))
+
+
+def with_guesses(frame: Frame, halved: Halved, frequency_hz: RealArray) -> Frame:
+    """The frame with first guesses of the inductances, from one (F,) pair."""
+    omega = 2 * np.pi * frequency_hz
+    series = 1 / (1 / halved.z_short_ohm - low_capacitor_s(frame, frequency_hz))
+    leakage_h = float(np.median(series.imag / omega))
+    magnetising_h = float(np.abs(halved.z_open_ohm[0]) / omega[0])
+    return replace(
+        frame,
+        leakage_h=float(np.clip(leakage_h, 1e-9, 1e-5)),
+        magnetising_h=float(np.clip(magnetising_h, 1e-8, 1e-2)),
+    )
+
+
+@dataclass(frozen=True, slots=True, eq=False)
+class Circuit:
+    """A circuit as fitted: its frame, (..., 12) parameters, and the misfit left [ratio].
+
+    The misfit is the root mean square over the open and the short reflection.
+    """
+
+    frame: Frame
+    parameters: RealArray
+    misfit_ratio: float
+
+    @property
+    def believed(self) -> bool:
+        """False when the pair behaves otherwise than any such circuit."""
+        return self.misfit_ratio <= MISFIT_LIMIT
+
+
+def fit_circuit(halved: Halved, frame: Frame, frequency_hz: RealArray) -> Circuit:
+    """The circuit whose open and short reflections come nearest to those of a pair's half.
+
+    Parameters
+    ----------
+    halved : Halved
+        One pair, (F,) without draws.
+    frame : Frame
+        What the sidecar says; its guesses are made anew.
+    frequency_hz : (F,) array
+        [Hz].
+
+    Notes
+    -----
+    Least squares of both reflections re 50 ohm over at most 100 points, together with what is
+    expected of each parameter beforehand.
+    """
+    from scipy.optimize import least_squares  # slow to import, and only here
+
+    frame = with_guesses(frame, halved, frequency_hz)
+    points = fit_points(frequency_hz)
+    few_hz = frequency_hz[points]
+    seen_ohm = np.stack([halved.z_open_ohm[points], halved.z_short_ohm[points]])
+    seen = reflection_of_impedance(seen_ohm)
+    weight = np.sqrt(_EFFECTIVE_POINTS / points.size) / _SIGMA
+
+    def misfit(parameters: RealArray) -> RealArray:
+        both_ohm = np.stack(open_and_short_ohm(arms_of(parameters, frame, few_hz)))
+        off = weight * (reflection_of_impedance(both_ohm) - seen).ravel()
+        return np.concatenate([off.real, off.imag, (parameters - START) / SPREAD])
+
+    bounds = (START - _BOUND_SPREADS * SPREAD, START + _BOUND_SPREADS * SPREAD)
+    found = least_squares(misfit, START, bounds=bounds, x_scale=SPREAD, max_nfev=200)
+    left = found.fun[: -START.size] / weight
+    return Circuit(frame, found.x, float(np.sqrt(2 * np.mean(left**2))))
+
+
+def fit_points(frequency_hz: RealArray) -> NDArray[np.intp]:
+    """Indices of the points that the fit uses."""
+    within = np.flatnonzero(frequency_hz <= max(_FIT_TO_HZ, frequency_hz[0]))
+    chosen = np.linspace(0, within.size - 1, min(within.size, _FIT_POINTS))
+    return np.asarray(within[np.round(chosen).astype(int)])
+
+
+def circuit_ratio(halved: Halved, arms: Arms) -> ComplexArray:
+    """Voltage ratio A of a unit before its ideal transformer, high side open [ratio].
+
+    Notes
+    -----
+    Lead, capacitor, high-side capacitance and the share of the series arm behind the core are the
+    circuit's; series arm and core follow at each frequency from the pair itself: with z the whole
+    series arm and y the core, Zshort = z1 + z2/(1 + y z2) and Zopen = z1 + 1/(y + yh/(1 + z2 yh)).
+    A lead in front multiplies A by Zopen/(Zopen - lead); a capacitor there leaves it alone.
+    """
+    z_open, z_short = halved.z_open_ohm - arms.lead_ohm, halved.z_short_ohm - arms.lead_ohm
+    seen_open = 1 / (1 / z_open - arms.capacitor_s)
+    seen_short = 1 / (1 / z_short - arms.capacitor_s)
+    z = seen_short
+    for _ in range(_SPLIT_ROUNDS):
+        behind = arms.share * z
+        y = 1 / (seen_open - z + behind) - arms.high_s / (1 + behind * arms.high_s)
+        z = seen_short + y * behind**2 / (1 + y * behind)
+    behind = arms.share * z
+    front = z - behind
+    ratio = (1 + front * y) * (1 + behind * arms.high_s) + front * arms.high_s
+    return np.asarray(ratio * halved.z_open_ohm / z_open)
