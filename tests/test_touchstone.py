@@ -4,16 +4,7 @@ import codecs
 import gzip
 
 import pytest
-from sweep_files import (
-    NOTE,
-    ONE_PATH_ROW,
-    OPTION,
-    REJECT,
-    WARN,
-    one_port,
-    two_port,
-    verdict,
-)
+from sweep_files import NOTE, ONE_PATH_ROW, OPTION, REJECT, WARN, one_port, two_port, verdict
 
 from reportgen.model import Band
 
@@ -77,6 +68,9 @@ ODD = {
     "unit too small by 1000": (
         "# kHz S MA R 50\n" + one_port(3, 30), {"bands": [BAND]}, "unit-implausible", WARN, 1,
         ["is the unit MHz instead of kHz?"]),
+    "unit too large by a million": (
+        OPTION + one_port(3_000_000, 30_000_000), {"bands": [BAND]}, "unit-implausible", WARN, 1,
+        ["is the unit Hz instead of MHz?"]),
     "unknown token": (
         "# THz S MA R 50\n" + one_port(1), {}, "option-unknown", REJECT, 1,
         ['unknown token "THz"', "Hz, kHz, MHz, GHz"]),
@@ -208,6 +202,9 @@ ODD = {
     "five columns at the end above the sweep": (
         OPTION + two_port(1, 2) + "3 .7 .64 69 .38\n4 2.7 .46 -33 .4\n", {"file": "a.s2p"},
         "row-broken", REJECT, 4, ["5 of 9 numbers"]),
+    "no number but in five columns": (
+        OPTION + "1_0 2 3 4 5 6 7 8 9\n1 2 3 4 5\n", {"file": "a.s2p"}, "not-a-number", REJECT, 2,
+        ['"1_0"']),
     ".s2p with one port": (
         OPTION + one_port(1), {"file": "a.s2p"}, "name-and-columns", REJECT, 2,
         [".s2p has 3 columns (one port)", "rename it to .s1p"]),

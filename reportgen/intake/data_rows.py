@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import math
 import re
 from dataclasses import dataclass
 
@@ -160,7 +161,8 @@ def _without_noise(
         begin -= 1
     if sum(pattern) == NOISE_COLUMNS or begin in (0, len(read)) or begin % len(pattern):
         return read
-    highest = max(row.values[0] for row in read[: begin : len(pattern)] if row.values)
+    firsts = (row.values[0] for row in read[: begin : len(pattern)] if row.values)
+    highest = max(firsts, default=-math.inf)
     if sum(pattern) != max(PORTS_OF_COLUMNS) or read[begin].values[0] > highest:
         return read
     remarks.note(

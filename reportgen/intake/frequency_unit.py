@@ -115,8 +115,7 @@ def _remark_implausible_unit(
     if not len(frequency) or not bands or _touched(frequency, unit, bands):
         return
     at = _UNITS.index(unit)
-    neighbours = [*_UNITS[max(at - 1, 0) : at], *_UNITS[at + 1 : at + 2]]
-    for other in neighbours:
+    for other in sorted(_UNITS, key=lambda other: abs(_UNITS.index(other) - at)):
         if _touched(frequency, other, bands):
             remarks.warn(
                 "unit-implausible",

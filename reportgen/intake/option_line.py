@@ -66,8 +66,7 @@ def read_option_line(lines: SweepLines, remarks: Remarks, *, decimal: str = ".")
             "move it to the top of the file",
             first.number,
         )
-    for other in others:
-        _compare_with_first(option, other, remarks, decimal)
+    _compare_with_first(option, others, remarks, decimal)
     return option
 
 
@@ -197,17 +196,24 @@ def _check_parameter(option: Option, remarks: Remarks) -> None:
         )
 
 
-def _compare_with_first(first: Option, line: Line, remarks: Remarks, decimal: str) -> None:
-    unheard = Remarks("")
-    if _parse(line, unheard, decimal) == first and not unheard.rejected:
-        return
-    remarks.error(
-        "second-option-line",
-        f"a second option line {quoted(line.text)} differs from the first (line {first.line}); "
-        "only one is expected",
-        "remove the wrong one; if two sweeps are in the file, split it",
-        line.number,
-    )
+def _compare_with_first(
+    first: Option, others: list[Line], remarks: Remarks, decimal: str
+) -> None:
+    alike: set[str] = set()
+    for line in others:
+        if line.text in alike:
+            continue
+        unheard = Remarks("")
+        if _parse(line, unheard, decimal) != first or unheard.rejected:
+            remarks.error(
+                "second-option-line",
+                f"a second option line {quoted(line.text)} differs from the first "
+                f"(line {first.line}); only one is expected",
+                "remove the wrong one; if two sweeps are in the file, split it",
+                line.number,
+            )
+            return
+        alike.add(line.text)
 
 
 def ohms(values: tuple[float, ...]) -> str:

@@ -177,7 +177,7 @@ def split_lines(text: str, remarks: Remarks, *, max_lines: int) -> SweepLines:
     for number, raw in enumerate(text.split("\n"), start=1):
         content, mark, comment = raw.partition("!")
         if mark and comment:
-            lines.comments.append(Line(number, comment))
+            lines.comments.append(Line(number, comment[:LONGEST_LINE]))
         if content := content.strip(BLANKS):
             _sort_in(Line(number, content), lines)
     _refuse_long_lines(lines, remarks)

@@ -41,7 +41,7 @@ NOT_MEASURED_BELOW = 1e-9
 LARGEST_MAGNITUDE = 1e3
 """Magnitude of S above which a file holds something else than S [ratio]."""
 
-_LINES_PER_POINT = 10
+_LINES_PER_POINT = 4
 _FURTHER_LINES = 1000
 _HERTZ_DECIMALS = 3
 
