@@ -14,12 +14,8 @@ from reportgen.pages.canvas import (
     new_figure,
     size_of,
     text_style,
-    text_width,
 )
 from reportgen.pages.look import LIGHT
-
-_LABEL_GAP = 7.0
-_RING = 6.0
 
 
 def band_figure(size: Size, names: Sequence[str]) -> tuple[Figure, Axes]:
@@ -70,20 +66,17 @@ def add_stems(
         )
 
 
-def add_figures(
-    axes: Axes, values: Sequence[float], rivals: Sequence[float | None], labels: Sequence[str]
-) -> None:
-    """The figure of each row, right of its dot, or of the ring where that is in the way."""
+def add_figures(axes: Axes, labels: Sequence[str]) -> None:
+    """The figure of each row, in a column at the right edge."""
     size = size_of(axes)
-    low, high = axes.get_xlim()
-    for row, (value, rival, label) in enumerate(zip(values, rivals, labels, strict=True)):
-        gap = (_LABEL_GAP + text_width(label, size) + _RING) * (high - low) / size.plot_width
-        at = rival if rival is not None and value - gap / 4 < rival < value + gap else value
+    for row, label in enumerate(labels):
         axes.annotate(
             label,
-            (max(value, at), row),
-            xytext=(_LABEL_GAP, 0),
+            (1, row),
+            xycoords=("axes fraction", "data"),
+            xytext=(size.right, 0),
             textcoords="offset points",
+            ha="right",
             va="center_baseline",
             annotation_clip=False,
             **text_style(size),

@@ -29,6 +29,13 @@ from reportgen.pages.summary import figure_of, limits_by_quantity, measured_band
 from reportgen.pages.tables import Cell, Column, Row, Table, figures, with_points_aligned
 from reportgen.physics.quantities import BY_KEY, QUANTITIES, Quantity
 
+_CAPTION = (
+    "Mean and worst over each band. Efficiency is power into the load over power entering the low "
+    "side; heat loss is the same in decibels."
+)
+_LOOKS = {"mean": "", "worst": "soft", "95 %": "soft range"}
+_INTERVALS = " 95 % is the interval that holds the mean with that confidence."
+
 
 def figure_text(
     quantity: Quantity, figure: Figure | None, *, limits: Sequence[float] = (), locale: str = "en"
@@ -56,8 +63,7 @@ def band_table(result: BuildResult, bench: BenchSheet) -> Table | None:
     if not shown:
         return None
     table = Table(
-        caption="Mean and worst over each band. Efficiency is power into the load over power "
-        "entering the low side; heat loss is the same in decibels.",
+        caption=_CAPTION + (_INTERVALS if _has_intervals(result.chosen) else ""),
         corner="Band",
         sub="Value",
         columns=tuple(Column(label=one.label, unit=one.unit) for one in shown),
@@ -66,6 +72,11 @@ def band_table(result: BuildResult, bench: BenchSheet) -> Table | None:
         ),
     )
     return with_points_aligned(table, bench.locale)
+
+
+def _has_intervals(method: MethodResult) -> bool:
+    figures = (figure for band in measured_bands(method) for figure in band.figures.values())
+    return any(half_width(figure) is not None for figure in figures)
 
 
 def measured_quantities(method: MethodResult) -> tuple[Quantity, ...]:
@@ -120,7 +131,7 @@ def _lines(
                     )
                     for quantity in shown
                 ],
-                "" if sub == "mean" else "soft",
+                _LOOKS[sub],
             ),
         )
         for sub, write in writers.items()
@@ -185,7 +196,7 @@ def comparison_table(
     columns += [Column(label="Difference", unit="dB"), Column(label="Difference", unit="W")]
     columns += [Column(label="Verdict", words=True)] if judged else []
     table = Table(
-        caption="Mean heat loss in each band; a negative difference means less loss, less heat.",
+        caption="Mean heat loss in each band; a negative difference is less.",
         corner="Band",
         columns=tuple(columns),
         groups=tuple(

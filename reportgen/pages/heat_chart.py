@@ -48,7 +48,7 @@ def _draw_heat(
     set_watt_axis(axes, min(0.0, *present), max(present))
     add_stems(axes, values, rivals, LIGHT.heat)
     labels = [number(value, BY_KEY["heat_w"].decimals, locale=locale) for value in values]
-    add_figures(axes, values, rivals, labels)
+    add_figures(axes, labels)
     samples = [Sample(text="this build", colour=LIGHT.heat, marker="o", fill=LIGHT.heat)]
     samples += [Sample(text="baseline", colour=LIGHT.baseline, marker="o")] if other else []
     add_key(figure, size, samples, from_left=size.left - 6)

@@ -1,0 +1,288 @@
+"""The index of all builds: ranked, against the baseline, and what is missing and why."""
+
+from __future__ import annotations
+
+from collections.abc import Sequence
+from dataclasses import dataclass
+
+from reportgen.model import BenchSheet, BuildResult, Comparison, FailedBuild, Finding, Verdict
+from reportgen.pages import sentences
+from reportgen.pages.band_tables import heat_loss_text
+from reportgen.pages.display import DASH, NOT_MEASURED, quantity_number
+from reportgen.pages.html import page_style
+from reportgen.pages.look import TINTS
+from reportgen.pages.particulars import FindingText, finding_texts
+from reportgen.pages.summary import is_simulated, mean_over_bands, means, worst_of, worsts
+from reportgen.pages.tables import Cell, Column, Row, Table, with_points_aligned
+from reportgen.pages.templates import render
+from reportgen.physics.quantities import BY_KEY
+
+Ranked = tuple[BuildResult, Comparison | None]
+
+
+@dataclass(frozen=True, kw_only=True, slots=True)
+class Line:
+    """One published build in the ranking."""
+
+    rank: str
+    name: str
+    report: str
+    pdf: str
+    summary: str
+    efficiency: str
+    heat_loss: str
+    difference: str
+    swr: str
+    simulated: bool
+    baseline: bool
+
+
+@dataclass(frozen=True, kw_only=True, slots=True)
+class Missing:
+    """A build that could not be published; `report` leads to an earlier page that still stands."""
+
+    key: str
+    folder: str
+    findings: tuple[FindingText, ...]
+    report: str | None
+
+
+@dataclass(frozen=True, kw_only=True, slots=True)
+class IndexPage:
+    """Everything the template of the index prints, as text."""
+
+    title: str
+    publisher: str
+    lead: str
+    ranking: str
+    simulated: bool
+    lines: tuple[Line, ...]
+    heat: Table | None
+    missing: tuple[Missing, ...]
+    findings: tuple[FindingText, ...]
+    program_version: str
+
+
+def render_index_html(
+    rows: Sequence[Ranked],
+    *,
+    bench: BenchSheet,
+    failed: Sequence[FailedBuild] = (),
+    standing: Sequence[str] = (),
+    findings: Sequence[Finding] = (),
+    baseline_key: str | None = None,
+    program_version: str,
+) -> str:
+    """All builds of a runs folder on one page.
+
+    Parameters
+    ----------
+    rows : sequence of (BuildResult, Comparison or None)
+        What was published, in any order.
+    bench : BenchSheet
+        Title, publisher and locale.
+    failed : sequence of FailedBuild
+        What could not be published.
+    standing : sequence of str
+        Keys of failed builds whose pages of an earlier run are still there.
+    findings : sequence of Finding
+        What concerns the whole runs folder.
+    baseline_key : str, optional
+        The build that the others are compared with.
+    program_version : str
+        For the foot of the page.
+    """
+    shared = shared_bands([result for result, _ in rows])
+    ranked = sorted(rows, key=lambda row: _rank_key(row[0], shared))
+    page = IndexPage(
+        title=bench.title,
+        publisher=bench.publisher,
+        lead=_lead(ranked, failed, shared, bench.locale),
+        ranking=_ranking_words(shared),
+        simulated=any(is_simulated(result) for result, _ in rows),
+        lines=_lines(ranked, shared, baseline_key, bench.locale),
+        heat=_heat_table([result for result, _ in ranked], bench.locale),
+        missing=tuple(_missing(one, standing) for one in failed),
+        findings=finding_texts(findings),
+        program_version=program_version,
+    )
+    return render("index.html", page=page, paper=False, style=page_style())
+
+
+# --- ranking -------------------------------------------------------------------------------------
+
+
+def shared_bands(results: Sequence[BuildResult]) -> tuple[str, ...]:
+    """Bands in which every build that has an efficiency at all has one: the common ground."""
+    known = [
+        names
+        for result in results
+        if (names := [one.band.name for one in means(result.chosen, "efficiency_ratio")])
+    ]
+    return (
+        tuple(name for name in known[0] if all(name in names for names in known)) if known else ()
+    )
+
+
+def _efficiency(result: BuildResult, shared: Sequence[str]) -> float | None:
+    return mean_over_bands(
+        result.chosen, "efficiency_ratio", result.power_w, shared if shared else None
+    )
+
+
+def _rank_key(result: BuildResult, shared: Sequence[str]) -> tuple[float, str]:
+    efficiency = _efficiency(result, shared)
+    return (-efficiency if efficiency is not None else 1.0, result.build.key)
+
+
+def _ranking_words(shared: Sequence[str]) -> str:
+    if not shared:
+        return "Ranked by mean efficiency, each build over its own bands: they share none."
+    return f"Ranked by mean efficiency over what all share: {sentences.listed(shared)}."
+
+
+def _lead(
+    ranked: Sequence[Ranked], failed: Sequence[FailedBuild], shared: Sequence[str], locale: str
+) -> str:
+    published = f"{sentences.counted(len(ranked), 'build')} published"
+    rejected = f", {len(failed)} not" if failed else ""
+    first = ranked[0][0] if ranked else None
+    efficiency = None if first is None else _efficiency(first, shared)
+    if first is None or efficiency is None:
+        return f"{published}{rejected}."
+    figure = sentences.spoken("efficiency_ratio", efficiency, locale)
+    return f"{published}{rejected}; the most efficient is {first.build.sheet.name}, {figure}."
+
+
+def _lines(
+    ranked: Sequence[Ranked], shared: Sequence[str], baseline_key: str | None, locale: str
+) -> tuple[Line, ...]:
+    return tuple(
+        _line(place, result, comparison, shared, baseline_key, locale)
+        for place, (result, comparison) in enumerate(ranked, start=1)
+    )
+
+
+def _line(
+    place: int,
+    result: BuildResult,
+    comparison: Comparison | None,
+    shared: Sequence[str],
+    baseline_key: str | None,
+    locale: str,
+) -> Line:
+    key, sheet = result.build.key, result.build.sheet
+    names = shared if shared else None
+    efficiency, loss = (
+        mean_over_bands(result.chosen, quantity, result.power_w, names)
+        for quantity in ("efficiency_ratio", "heat_loss_db")
+    )
+    every = worsts(result.chosen, "swr")
+    swr = worst_of([one for one in every if not shared or one.band.name in shared], "swr")
+    return Line(
+        rank=DASH if efficiency is None else str(place),
+        name=sheet.name,
+        report=f"{key}/report.html",
+        pdf=f"{key}/report.pdf",
+        summary=sheet.summary,
+        efficiency=_figure("efficiency_ratio", efficiency, locale),
+        heat_loss=_figure("heat_loss_db", loss, locale),
+        difference=_against(comparison, is_baseline=key == baseline_key),
+        swr=_figure("swr", None if swr is None else swr.value, locale),
+        simulated=is_simulated(result),
+        baseline=key == baseline_key,
+    )
+
+
+def _figure(key: str, value: float | None, locale: str) -> str:
+    return NOT_MEASURED if value is None else quantity_number(BY_KEY[key], value, locale=locale)
+
+
+def _against(comparison: Comparison | None, *, is_baseline: bool) -> str:
+    """How a build stands against the baseline, in a few words."""
+    if is_baseline:
+        return "is the baseline"
+    if comparison is None:
+        return "no baseline"
+    verdicts = [band.verdict for band in comparison.bands]
+    judged = [(one, verdicts.count(one)) for one in (Verdict.BETTER, Verdict.SAME, Verdict.WORSE)]
+    if any(count for _, count in judged):
+        return ", ".join(f"{verdict.value} on {count}" for verdict, count in judged if count)
+    differences = [band.heat_loss_db for band in comparison.bands if band.heat_loss_db is not None]
+    if not differences:
+        return "not comparable"
+    less = sum(difference < 0 for difference in differences)
+    return f"less loss on {less} of {len(differences)}, not judged"
+
+
+# --- heat loss, builds by bands ------------------------------------------------------------------
+
+
+def _heat_table(results: Sequence[BuildResult], locale: str) -> Table | None:
+    losses = {result.build.key: _losses(result) for result in results}
+    values = [value for found in losses.values() for value in found.values()]
+    bands = sorted(
+        {band.band for result in results for band in result.chosen.bands},
+        key=lambda band: (band.from_hz, band.to_hz, band.name),
+    )
+    if not values:
+        return None
+    edges = (min(values), max(values))
+    table = Table(
+        caption="Mean heat loss, dB. The stronger the tint, the more of the power turns into heat.",
+        corner="Build",
+        columns=tuple(Column(label=band.name) for band in bands),
+        groups=tuple(
+            (_heat_row(result, [band.name for band in bands], losses, edges, locale),)
+            for result in results
+        ),
+    )
+    return with_points_aligned(table, locale)
+
+
+def _heat_row(
+    result: BuildResult,
+    bands: Sequence[str],
+    losses: dict[str, dict[str, float]],
+    edges: tuple[float, float],
+    locale: str,
+) -> Row:
+    name, link = result.build.sheet.name, f"{result.build.key}/report.html"
+    own = losses[result.build.key]
+    if not own:
+        reason = f"{NOT_MEASURED}: {result.chosen.reason or 'its report says why'}"
+        return Row(head=name, link=link, words=reason, words_columns=len(bands))
+    cells = tuple(_tinted(result, band, own, edges, locale) for band in bands)
+    return Row(head=name, link=link, cells=cells)
+
+
+def _losses(result: BuildResult) -> dict[str, float]:
+    return {one.band.name: one.value for one in means(result.chosen, "heat_loss_db")}
+
+
+def _tinted(
+    result: BuildResult,
+    band: str,
+    losses: dict[str, float],
+    edges: tuple[float, float],
+    locale: str,
+) -> Cell:
+    text = heat_loss_text(result.chosen, band, locale)
+    if band not in losses:
+        return Cell(text=text, look="soft gap")
+    low, high = edges
+    share = (losses[band] - low) / (high - low) if high > low else 0.0
+    level = min(int(share * len(TINTS)), len(TINTS) - 1)
+    return Cell(text=text, look=f"tint-{level}")
+
+
+# --- what is missing -----------------------------------------------------------------------------
+
+
+def _missing(failed: FailedBuild, standing: Sequence[str]) -> Missing:
+    return Missing(
+        key=failed.key,
+        folder=failed.folder,
+        findings=finding_texts(failed.findings),
+        report=f"{failed.key}/report.html" if failed.key in standing else None,
+    )
