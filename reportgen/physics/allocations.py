@@ -67,7 +67,12 @@ def amateur_bands(region: int) -> tuple[Band, ...]:
 def known_bands(region: int, own: tuple[OwnBand, ...] = ()) -> tuple[Band, ...]:
     """Amateur bands of the region and the workshop's own, by frequency."""
     added = [
-        Band(name=band.name, from_hz=band.from_mhz * 1e6, to_hz=band.to_mhz * 1e6) for band in own
+        Band(
+            name=band.name,
+            from_hz=round(band.from_mhz * 1e6, 3),
+            to_hz=round(band.to_mhz * 1e6, 3),
+        )
+        for band in own
     ]
     return tuple(
         sorted([*amateur_bands(region), *added], key=lambda band: (band.from_hz, band.to_hz))
