@@ -25,13 +25,14 @@ from reportgen.pages.display import (
     quantity_number,
 )
 from reportgen.pages.sentences import counted, listed
-from reportgen.pages.summary import figure_of, limits_by_quantity, measured_bands
+from reportgen.pages.summary import figure_of, limits_by_quantity, means, measured_bands
 from reportgen.pages.tables import Cell, Column, Row, Table, figures, with_points_aligned
 from reportgen.physics.quantities import BY_KEY, QUANTITIES, Quantity
 
-_CAPTION = (
-    "Mean and worst over each band. Efficiency is power into the load over power entering the low "
-    "side; heat loss is the same in decibels."
+_CAPTION = "Mean and worst over each band."
+_EFFICIENCY = (
+    " Efficiency is power into the load over power entering the low side; heat loss is the same "
+    "in decibels."
 )
 _LOOKS = {"mean": "", "worst": "soft", "95 %": "soft range"}
 _INTERVALS = " 95 % is the interval that holds the mean with that confidence."
@@ -63,7 +64,7 @@ def band_table(result: BuildResult, bench: BenchSheet) -> Table | None:
     if not shown:
         return None
     table = Table(
-        caption=_CAPTION + (_INTERVALS if _has_intervals(result.chosen) else ""),
+        caption=_caption(result.chosen),
         corner="Band",
         sub="Value",
         columns=tuple(Column(label=one.label, unit=one.unit) for one in shown),
@@ -74,9 +75,11 @@ def band_table(result: BuildResult, bench: BenchSheet) -> Table | None:
     return with_points_aligned(table, bench.locale)
 
 
-def _has_intervals(method: MethodResult) -> bool:
-    figures = (figure for band in measured_bands(method) for figure in band.figures.values())
-    return any(half_width(figure) is not None for figure in figures)
+def _caption(method: MethodResult) -> str:
+    found = [figure for band in measured_bands(method) for figure in band.figures.values()]
+    known = any(half_width(figure) is not None for figure in found)
+    lossy = bool(means(method, "efficiency_ratio"))
+    return _CAPTION + (_EFFICIENCY if lossy else "") + (_INTERVALS if known else "")
 
 
 def measured_quantities(method: MethodResult) -> tuple[Quantity, ...]:
@@ -186,8 +189,10 @@ def missing_quantities(result: BuildResult) -> str:
 
 def comparison_table(
     result: BuildResult, comparison: Comparison, baseline: BuildResult | None, locale: str
-) -> Table:
-    """Heat loss of both builds by band, and the difference with its verdict where it has one."""
+) -> Table | None:
+    """Heat loss of both builds by band, the difference and its verdict; None: no band compares."""
+    if all(band.heat_loss_db is None for band in comparison.bands):
+        return None
     judged = any(band.verdict is not None for band in comparison.bands)
     sides = {"This build": result.chosen} | (
         {} if baseline is None else {comparison.name: baseline.chosen}

@@ -231,7 +231,7 @@ def _heat_table(results: Sequence[BuildResult], locale: str) -> Table | None:
     table = Table(
         caption="Mean heat loss, dB. The stronger the tint, the more of the power turns into heat.",
         corner="Build",
-        columns=tuple(Column(label=band.name) for band in bands),
+        columns=tuple(Column(label=band.name.replace(" ", "\u00a0", 1)) for band in bands),
         groups=tuple(
             (_heat_row(result, [band.name for band in bands], losses, edges, locale),)
             for result in results

@@ -153,7 +153,8 @@ def comparison_sentence(comparison: Comparison | None) -> str:
         return f"Against {name}: {_verdict_counts(verdicts)}."
     differences = [band.heat_loss_db for band in comparison.bands if band.heat_loss_db is not None]
     if not differences:
-        return f"It cannot be compared with {name}; the table says why."
+        reasons = dict.fromkeys(band.reason for band in comparison.bands if band.reason)
+        return f"It cannot be compared with {name}: {'; '.join(reasons) or 'no band in common'}."
     fewer = sum(difference < 0 for difference in differences)
     bands = counted(len(differences), "band")
     return (
