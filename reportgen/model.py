@@ -14,6 +14,9 @@ import numpy as np
 from annotated_types import Ge, Gt, Le, Len, Lt
 from numpy.typing import NDArray
 
+OUTPUT_MARKER = ".reportgen-output"
+"""File that tells an output folder of ours: never scanned, and nothing removed without it."""
+
 RealArray = NDArray[np.float64]
 ComplexArray = NDArray[np.complex128]
 

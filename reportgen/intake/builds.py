@@ -18,12 +18,13 @@ from reportgen.intake.folders import (
 )
 from reportgen.intake.paths import read_bytes
 from reportgen.intake.plausibility import check_dates, check_sweep
-from reportgen.intake.scan import MARKER, STANDARD_LIMITS, scan_runs
+from reportgen.intake.scan import STANDARD_LIMITS, scan_runs
 from reportgen.intake.sidecar import completed_entry, parse_bench, parse_build
 from reportgen.intake.sidecar_shape import nearest
 from reportgen.intake.sidecar_text import MAX_BYTES, shown_value
 from reportgen.intake.touchstone import parse_touchstone
 from reportgen.model import (
+    OUTPUT_MARKER,
     PORTS_OF_SETUP,
     Band,
     BenchSheet,
@@ -77,7 +78,7 @@ def open_runs(root: Path) -> Runs:
     """
     if not root.is_dir():
         raise UsageError(f"{root} is no folder; name the folder that holds the builds")
-    if (root / MARKER).exists():
+    if (root / OUTPUT_MARKER).exists():
         raise UsageError(f"{root} is an output folder; name the folder that holds the builds")
     scan = scan_runs(root)
     bench, inputs = _read_bench(root)

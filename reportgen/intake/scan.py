@@ -8,9 +8,8 @@ from dataclasses import dataclass
 from pathlib import Path
 
 from reportgen.intake.paths import shown
-from reportgen.model import Finding, Severity
+from reportgen.model import OUTPUT_MARKER, Finding, Severity
 
-MARKER = ".reportgen-output"
 SWEEP_SUFFIXES = (".s1p", ".s2p", ".ts", ".snp")
 _READ_SUFFIXES = (*SWEEP_SUFFIXES, ".toml", ".csv")
 
@@ -79,7 +78,7 @@ class _Walk:
             message = f"the folder cannot be read: {error.strerror}"
             self.note("unreadable", folder.rstrip("/"), message, "check its permissions")
             return []
-        if any(entry.name == MARKER for entry in entries):
+        if any(entry.name == OUTPUT_MARKER for entry in entries):
             return []
         inner = []
         for entry in entries:

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Callable, Mapping, Sequence
+from math import isnan
 
 from reportgen.model import (
     BandComparison,
@@ -42,10 +43,20 @@ def figure_text(
     quantity: Quantity, figure: Figure | None, *, limits: Sequence[float] = (), locale: str = "en"
 ) -> str:
     """A band's mean, to the place that its interval allows."""
-    if figure is None:
+    value = None if figure is None else figure.mean
+    return _value_text(quantity, figure, value, limits, locale)
+
+
+def _value_text(
+    quantity: Quantity,
+    figure: Figure | None,
+    value: float | None,
+    limits: Sequence[float],
+    locale: str,
+) -> str:
+    if figure is None or value is None or isnan(value):
         return NOT_MEASURED
-    u95 = half_width(figure)
-    return quantity_number(quantity, figure.mean, u95=u95, limits=limits, locale=locale)
+    return quantity_number(quantity, value, u95=half_width(figure), limits=limits, locale=locale)
 
 
 def half_width(figure: Figure) -> float | None:
@@ -144,10 +155,8 @@ def _lines(
 def _worst_text(
     quantity: Quantity, figure: Figure | None, *, limits: Sequence[float], locale: str
 ) -> str:
-    if figure is None:
-        return NOT_MEASURED
-    u95 = half_width(figure)
-    return quantity_number(quantity, figure.worst, u95=u95, limits=limits, locale=locale)
+    value = None if figure is None else figure.worst
+    return _value_text(quantity, figure, value, limits, locale)
 
 
 def _interval_text(quantity: Quantity, figure: Figure | None, *, locale: str, **_: object) -> str:
@@ -188,12 +197,12 @@ def missing_quantities(result: BuildResult) -> str:
 
 
 def comparison_table(
-    result: BuildResult, comparison: Comparison, baseline: BuildResult | None, locale: str
+    result: BuildResult, comparison: Comparison | None, baseline: BuildResult | None, locale: str
 ) -> Table | None:
     """Heat loss of both builds by band, the difference and its verdict; None: no band compares."""
-    if all(band.heat_loss_db is None for band in comparison.bands):
+    if comparison is None or all(band.heat_loss_db is None for band in comparison.bands):
         return None
-    judged = any(band.verdict is not None for band in comparison.bands)
+    judged = any(band.verdict and band.heat_loss_db is not None for band in comparison.bands)
     sides = {"This build": result.chosen} | (
         {} if baseline is None else {comparison.name: baseline.chosen}
     )

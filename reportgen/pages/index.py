@@ -77,20 +77,16 @@ def render_index_html(
 
     Parameters
     ----------
-    rows : sequence of (BuildResult, Comparison or None)
-        What was published, in any order.
-    bench : BenchSheet
-        Title, publisher and locale.
-    failed : sequence of FailedBuild
-        What could not be published.
-    standing : sequence of str
+    rows
+        The published builds in any order, each with its comparison where there is one.
+    bench, program_version
+        Title, publisher and locale; the foot of the page.
+    failed, findings
+        What could not be published; what concerns the whole runs folder.
+    standing
         Keys of failed builds whose pages of an earlier run are still there.
-    findings : sequence of Finding
-        What concerns the whole runs folder.
-    baseline_key : str, optional
+    baseline_key
         The build that the others are compared with.
-    program_version : str
-        For the foot of the page.
     """
     shared = shared_bands([result for result, _ in rows])
     ranked = sorted(rows, key=lambda row: _rank_key(row[0], shared))

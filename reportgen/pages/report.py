@@ -135,9 +135,6 @@ def _page(
     program_version: str,
 ) -> ReportPage:
     sheet, locale = result.build.sheet, bench.locale
-    compared = None
-    if comparison is not None:
-        compared = comparison_table(result, comparison, baseline, locale)
     return ReportPage(
         name=sheet.name,
         publisher=bench.publisher,
@@ -150,7 +147,7 @@ def _page(
         bands=band_table(result, bench),
         missing=missing_quantities(result),
         pictures=pictures,
-        comparison=compared,
+        comparison=comparison_table(result, comparison, baseline, locale),
         comparison_words=sentences.comparison_sentence(comparison),
         is_baseline=bench.baseline == result.build.key,
         method_name=METHOD_NAMES[result.chosen.method],

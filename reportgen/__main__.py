@@ -1,0 +1,206 @@
+"""The command line: arguments, progress, exit status; slow imports wait for their command."""
+
+from __future__ import annotations
+
+import argparse
+import os
+import sys
+from collections.abc import Callable, Iterator, Sequence
+from contextlib import contextmanager
+from pathlib import Path
+from typing import TYPE_CHECKING
+
+from reportgen import __version__
+from reportgen.errors import InputRejected, OutputError, ReportError, UsageError
+
+if TYPE_CHECKING:
+    from rich.console import Console
+
+    from reportgen.pipeline import Outcome
+
+DONE, REJECTED, WRONG_CALL = 0, 1, 2
+
+
+def main(arguments: Sequence[str] | None = None) -> int:
+    """Run one command; returns its exit status."""
+    options = _parser().parse_args(arguments)
+    command: Callable[[argparse.Namespace], int] = options.command
+    try:
+        return command(options)
+    except InputRejected as rejected:
+        return _tell_rejected(rejected)
+    except UsageError as error:
+        return _tell(error, WRONG_CALL)
+    except ReportError as error:
+        return _tell(error, REJECTED)
+    except KeyboardInterrupt:
+        return _tell(OutputError("interrupted; what was published before still stands"), REJECTED)
+
+
+def _tell(error: ReportError, status: int) -> int:
+    from reportgen.pages.plain_text import clean_text
+
+    print(f"reportgen: {clean_text(str(error))}", file=sys.stderr)
+    return status
+
+
+def _tell_rejected(rejected: InputRejected) -> int:
+    from reportgen.pages.terminal import print_findings
+
+    print_findings(_console(stderr=True), "nothing was done", rejected.findings)
+    return REJECTED
+
+
+def _parser() -> argparse.ArgumentParser:
+    parser = argparse.ArgumentParser(
+        prog="reportgen",
+        description="Loss, match and heat of impedance transformers, from folders of "
+        "network-analyzer sweeps to pages and PDFs.",
+    )
+    parser.add_argument("--version", action="version", version=f"reportgen {__version__}")
+    commands = parser.add_subparsers(title="commands", required=True, metavar="COMMAND")
+    _add_publish(commands)
+    _add_inspect(commands)
+    _add_table(commands)
+    return parser
+
+
+def _add_publish(commands: argparse._SubParsersAction[argparse.ArgumentParser]) -> None:
+    text = "publish every build of a runs folder"
+    publish = commands.add_parser("publish", help=text, description=text)
+    publish.add_argument("runs", metavar="RUNS", type=Path, help="folder of build folders")
+    publish.add_argument(
+        "--out",
+        type=Path,
+        default=Path("published"),
+        help="where the pages go (default: ./published)",
+    )
+    publish.add_argument("--baseline", metavar="KEY", help="build to compare with")
+    publish.add_argument(
+        "--only",
+        metavar="KEY",
+        action="append",
+        default=[],
+        help="make the pages of this build only; may be repeated",
+    )
+    publish.add_argument(
+        "--jobs",
+        type=_jobs,
+        default=os.cpu_count() or 1,
+        help="builds worked on at the same time (default: one for each core)",
+    )
+    publish.add_argument("--strict", action="store_true", help="warnings count as errors")
+    publish.set_defaults(command=_publish)
+
+
+def _add_inspect(commands: argparse._SubParsersAction[argparse.ArgumentParser]) -> None:
+    text = "say what is wrong or worth knowing about a runs folder; write nothing"
+    inspect = commands.add_parser("inspect", help=text, description=text)
+    inspect.add_argument("runs", metavar="RUNS", type=Path, help="folder of build folders")
+    inspect.add_argument("--strict", action="store_true", help="warnings count as errors")
+    inspect.set_defaults(command=_inspect)
+
+
+def _add_table(commands: argparse._SubParsersAction[argparse.ArgumentParser]) -> None:
+    text = "show the figures of one build, band by band"
+    table = commands.add_parser("table", help=text, description=text)
+    table.add_argument("build", metavar="BUILD", type=Path, help="a build folder")
+    table.set_defaults(command=_table)
+
+
+def _jobs(text: str) -> int:
+    try:
+        jobs = int(text)
+    except ValueError:
+        jobs = 0
+    if jobs < 1:
+        raise argparse.ArgumentTypeError(f"found {text[:80]!r}, expected a whole number above 0")
+    return jobs
+
+
+# --- commands ----------------------------------------------------------------------------------
+
+
+def _publish(options: argparse.Namespace) -> int:
+    from reportgen.pipeline import Request, publish
+
+    request = Request(
+        runs=options.runs,
+        out=options.out,
+        baseline=options.baseline,
+        only=tuple(options.only),
+        jobs=options.jobs,
+    )
+    console = _console(stderr=True)
+    with _progress(console) as announce:
+        outcome = publish(request, announce)
+    _print_outcome(console, outcome)
+    count = f"{len(outcome.made)} of {len(outcome.made) + len(outcome.failed)} builds"
+    print(f"{count} published; open {options.out / 'index.html'}")
+    return _status(outcome, strict=options.strict)
+
+
+def _inspect(options: argparse.Namespace) -> int:
+    from reportgen.pipeline import inspect
+
+    with _progress(_console(stderr=True)) as announce:
+        outcome = inspect(options.runs, announce)
+    _print_outcome(_console(), outcome)
+    if not outcome.made and not outcome.failed:
+        print("no build was found: a build is a folder that holds a build.toml")
+    elif outcome.worst() is None:
+        print("nothing to report")
+    return _status(outcome, strict=options.strict)
+
+
+def _table(options: argparse.Namespace) -> int:
+    from reportgen.pages.terminal import print_bands
+    from reportgen.pipeline import measure_folder
+
+    result, runs = measure_folder(options.build)
+    print_bands(_console(), result, runs.bench)
+    return DONE
+
+
+def _print_outcome(console: Console, outcome: Outcome) -> None:
+    from reportgen.pages.terminal import print_failed, print_findings
+
+    print_findings(console, "runs folder", outcome.findings)
+    for one in outcome.made:
+        print_findings(console, one.result.build.key, one.result.findings)
+    print_failed(console, outcome.failed)
+
+
+def _status(outcome: Outcome, *, strict: bool) -> int:
+    from reportgen.model import Severity
+
+    worst = outcome.worst()
+    counted = (Severity.ERROR, Severity.WARNING) if strict else (Severity.ERROR,)
+    nothing = not outcome.made and not outcome.failed
+    return REJECTED if worst in counted or nothing else DONE
+
+
+def _console(*, stderr: bool = False) -> Console:
+    from rich.console import Console
+
+    return Console(stderr=stderr, highlight=False, markup=False, emoji=False)
+
+
+@contextmanager
+def _progress(console: Console) -> Iterator[Callable[[str, int, int], None]]:
+    """A progress line where there is a terminal, silence elsewhere."""
+    if not console.is_terminal:
+        yield lambda *_: None
+        return
+    from rich.progress import BarColumn, MofNCompleteColumn, Progress, TextColumn
+
+    columns = (BarColumn(), MofNCompleteColumn(), TextColumn("{task.description}"))
+    with Progress(*columns, console=console, transient=True) as progress:
+        task = progress.add_task("reading", total=None)
+        yield lambda key, done, total: progress.update(
+            task, completed=done, total=total, description=key
+        )
+
+
+if __name__ == "__main__":
+    sys.exit(main())

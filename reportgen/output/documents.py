@@ -1,0 +1,186 @@
+"""`results.json`: everything computed of one build as plain data."""
+
+from __future__ import annotations
+
+import json
+import math
+from typing import Any
+
+from reportgen.model import (
+    BandComparison,
+    BandResult,
+    Bandwidth,
+    BuildResult,
+    Comparison,
+    Figure,
+    Finding,
+    Fitted,
+    MeasuredBand,
+    MethodResult,
+)
+from reportgen.physics.quantities import QUANTITIES
+
+SCHEMA = 1
+"""Counts up only when a key changes or goes."""
+
+SIGNIFICANT_DIGITS = 9
+
+Document = dict[str, Any]
+
+_OF_A_FIGURE = ("mean", "worst", "centre", "worst_at_hz", "low95", "high95")
+
+
+def results_document(
+    result: BuildResult, comparison: Comparison | None, *, program_version: str
+) -> Document:
+    """Everything computed of one build; every number finite or None."""
+    build = result.build
+    return {
+        "schema": SCHEMA,
+        "program_version": program_version,
+        "build": {"key": build.key, "name": build.sheet.name, "folder": build.folder},
+        "load_ohm": result.chosen.load_ohm,
+        "power_w": result.power_w,
+        **_method(result.chosen),
+        "units": [_method(one) for one in result.units],
+        "methods": [_method(one) for one in result.methods],
+        "bandwidth": [_bandwidth(one) for one in result.bandwidths],
+        "fitted": [_fitted(one) for one in result.fitted],
+        "budget": [],
+        "advice": [],
+        "limits": [],
+        "lot": None,
+        "heat_split": None,
+        "stress": None,
+        "thermal": None,
+        "forecast": None,
+        "baseline": None if comparison is None else _comparison(comparison),
+        "findings": [finding_document(one) for one in result.findings],
+        "inputs": [
+            {"file": one.file, "sha256": one.sha256, "points": one.points} for one in build.inputs
+        ],
+    }
+
+
+def _method(method: MethodResult) -> Document:
+    return {
+        "method": method.method.value,
+        "unit": method.unit,
+        "of_units": list(method.units),
+        "reason": method.reason,
+        "bands": [_band(band) for band in method.bands],
+    }
+
+
+def _band(result: BandResult) -> Document:
+    band = result.band
+    document: Document = {
+        "band": band.name,
+        "from_hz": band.from_hz,
+        "to_hz": band.to_hz,
+        "status": band_status(result),
+        "reason": result.reason,
+        "covered": None,
+        "interpolated": False,
+    }
+    if not isinstance(result, MeasuredBand):
+        return document | _figures({})
+    document["covered"] = list(result.covered_hz)
+    document["interpolated"] = result.interpolated
+    return document | _figures(result.figures)
+
+
+def band_status(result: BandResult) -> str:
+    """`measured`, `partial` or `not-measured`."""
+    if not isinstance(result, MeasuredBand):
+        return "not-measured"
+    return "partial" if result.partial else "measured"
+
+
+def _figures(figures: dict[str, Figure]) -> Document:
+    return {quantity.key: _figure(figures.get(quantity.key)) for quantity in QUANTITIES}
+
+
+def _figure(figure: Figure | None) -> Document | None:
+    return None if figure is None else {name: getattr(figure, name) for name in _OF_A_FIGURE}
+
+
+def _bandwidth(one: Bandwidth) -> Document:
+    return {
+        "criterion": one.criterion,
+        "from_hz": one.from_hz,
+        "to_hz": one.to_hz,
+        "ratio": one.to_hz / one.from_hz,
+        "from_sweep_edge": one.from_sweep_edge,
+        "to_sweep_edge": one.to_sweep_edge,
+    }
+
+
+def _fitted(one: Fitted) -> Document:
+    return {
+        "quantity": one.quantity,
+        "of": one.of,
+        "value": one.value,
+        "u95": one.u95,
+        "reason": one.reason,
+    }
+
+
+def _comparison(comparison: Comparison) -> Document:
+    return {
+        "key": comparison.key,
+        "name": comparison.name,
+        "bands": [_band_comparison(band) for band in comparison.bands],
+    }
+
+
+def _band_comparison(band: BandComparison) -> Document:
+    return {
+        "band": band.band,
+        "heat_loss_db": {"difference": band.heat_loss_db, "u95": band.heat_loss_u95_db},
+        "heat_w": {"difference": band.heat_w},
+        "verdict": None if band.verdict is None else band.verdict.value,
+        "reason": band.reason,
+    }
+
+
+def finding_document(finding: Finding) -> Document:
+    """A finding as plain data."""
+    return {
+        "severity": finding.severity.value,
+        "code": finding.code,
+        "file": finding.file,
+        "line": finding.line,
+        "key": finding.key,
+        "message": finding.message,
+        "remedy": finding.remedy,
+    }
+
+
+def json_bytes(document: Document) -> bytes:
+    """The document as JSON text, numbers to nine significant digits, nothing but finite ones.
+
+    Raises
+    ------
+    ValueError
+        A number is not finite: a fault of this program.
+    """
+    text = json.dumps(_rounded(document), indent=1, ensure_ascii=False, allow_nan=False)
+    return (text + "\n").encode("utf-8", errors="backslashreplace")
+
+
+def _rounded(value: Any) -> Any:
+    if isinstance(value, float):
+        return _rounded_number(value)
+    if isinstance(value, dict):
+        return {key: _rounded(item) for key, item in value.items()}
+    if isinstance(value, list | tuple):
+        return [_rounded(item) for item in value]
+    return value
+
+
+def _rounded_number(value: float) -> float | int:
+    if not math.isfinite(value):
+        raise ValueError("a number that is not finite")
+    rounded = float(f"{value:.{SIGNIFICANT_DIGITS}g}")
+    return int(rounded) if rounded.is_integer() and abs(rounded) < 2**53 else rounded

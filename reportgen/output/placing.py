@@ -1,0 +1,127 @@
+"""Putting finished files in place: whole or not at all, and nothing touched that is not ours."""
+
+from __future__ import annotations
+
+import fcntl
+import os
+import shutil
+from collections.abc import Iterator, Mapping
+from contextlib import contextmanager
+from pathlib import Path
+
+from reportgen.errors import OutputError
+from reportgen.model import OUTPUT_MARKER
+
+_NEW = ".new-"
+_OLD = ".old-"
+
+
+@contextmanager
+def open_output(out: Path) -> Iterator[None]:
+    """The output folder, ours and locked while it is written.
+
+    What an interrupted run left half moved is mended first.
+
+    Raises
+    ------
+    OutputError
+        It cannot be written, holds something else, or another run is writing it.
+    """
+    try:
+        _claim(out)
+        with (out / OUTPUT_MARKER).open("r+", encoding="utf-8") as marker:
+            _lock(marker.fileno(), out)
+            _mend(out)
+            yield
+    except OSError as error:
+        raise OutputError(f"{out}: {error.strerror or error}; nothing more was written") from error
+
+
+def _claim(out: Path) -> None:
+    if out.exists() and not out.is_dir():
+        raise OutputError(f"{out} is a file, expected a folder for the pages; choose another --out")
+    if out.is_dir() and not (out / OUTPUT_MARKER).is_file() and any(out.iterdir()):
+        raise OutputError(
+            f"{out} holds files that this program did not make; choose an empty folder for --out"
+        )
+    out.mkdir(parents=True, exist_ok=True)
+    if not (out / OUTPUT_MARKER).exists():
+        (out / OUTPUT_MARKER).write_text(
+            "Written by reportgen; made anew by `reportgen publish`.\n"
+        )
+
+
+def _lock(descriptor: int, out: Path) -> None:
+    try:
+        fcntl.flock(descriptor, fcntl.LOCK_EX | fcntl.LOCK_NB)
+    except BlockingIOError as error:
+        raise OutputError(f"another run is writing {out}; wait until it has finished") from error
+
+
+def _mend(out: Path) -> None:
+    """Finish or undo the moves of an interrupted run."""
+    for old in sorted(out.glob(f"{_OLD}*")):
+        standing = out / old.name.removeprefix(_OLD)
+        if standing.exists():
+            shutil.rmtree(old)
+        else:
+            old.rename(standing)
+    for new in sorted(out.glob(f"{_NEW}*")):
+        _remove(new)
+
+
+def _remove(path: Path) -> None:
+    if path.is_dir():
+        shutil.rmtree(path)
+    else:
+        path.unlink()
+
+
+def place_build(out: Path, key: str, files: Mapping[str, bytes]) -> None:
+    """One build's pages in one move; the earlier ones stand until then.
+
+    Parameters
+    ----------
+    out : Path
+        The output folder, opened.
+    key : str
+        The build's key, the name of its folder.
+    files : mapping of str to bytes
+        File names and contents.
+    """
+    new, old, standing = out / f"{_NEW}{key}", out / f"{_OLD}{key}", out / key
+    if new.exists():
+        _remove(new)
+    new.mkdir()
+    for name, data in files.items():
+        _write(new / name, data)
+    if standing.exists():
+        standing.rename(old)
+    new.rename(standing)
+    if old.exists():
+        shutil.rmtree(old)
+
+
+def place_file(out: Path, name: str, data: bytes) -> None:
+    """One file of the output folder itself, replaced in one move."""
+    new = out / f"{_NEW}{name}"
+    _write(new, data)
+    new.replace(out / name)
+
+
+def _write(path: Path, data: bytes) -> None:
+    with path.open("wb") as file:
+        file.write(data)
+        file.flush()
+        os.fsync(file.fileno())
+
+
+def remove_files(out: Path, names: list[str]) -> None:
+    """Files that an earlier run wrote, by path below `out`, and their folders where then empty."""
+    for name in names:
+        path = out / name
+        if path.is_file() and not path.is_symlink():
+            path.unlink()
+    for folder in sorted({(out / name).parent for name in names} - {out}):
+        if folder.is_dir() and not any(folder.iterdir()):
+            folder.rmdir()

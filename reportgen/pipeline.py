@@ -1,0 +1,370 @@
+"""The whole story: scan, read, measure, compare, draw, render, place.
+
+What is common to a run goes to every build as one `Task`; what a build leaves behind for the
+index is one `Made`. Builds are independent of each other, the baseline alone goes first.
+"""
+
+from __future__ import annotations
+
+import traceback
+from collections.abc import Callable, Iterator, Sequence
+from concurrent.futures import ProcessPoolExecutor
+from contextlib import contextmanager
+from dataclasses import dataclass, replace
+from difflib import get_close_matches
+from itertools import repeat
+from multiprocessing import get_context
+from pathlib import Path
+
+from reportgen import __version__
+from reportgen.errors import InputRejected, NotMeasurable, OutputError, ReportError, UsageError
+from reportgen.intake.builds import BuildFolder, Runs, open_runs, read_build
+from reportgen.model import (
+    BuildResult,
+    Comparison,
+    FailedBuild,
+    Finding,
+    InputFile,
+    Severity,
+)
+from reportgen.output.manifest import (
+    FILE as MANIFEST,
+)
+from reportgen.output.manifest import (
+    BuildRecord,
+    OutputFile,
+    manifest_document,
+    output_file,
+    read_earlier,
+)
+from reportgen.output.placing import open_output, place_build, place_file, remove_files
+from reportgen.physics.compare import compare
+from reportgen.physics.measure import measure_build
+
+Announce = Callable[[str, int, int], None]
+
+
+@dataclass(frozen=True, kw_only=True, slots=True)
+class Request:
+    """What `publish` was asked for; `only` names keys, empty: all."""
+
+    runs: Path
+    out: Path
+    baseline: str | None = None
+    only: tuple[str, ...] = ()
+    jobs: int = 1
+
+
+@dataclass(frozen=True, kw_only=True, slots=True, eq=False)
+class Task:
+    """What every build of a run needs; `out` None: compute, write nothing."""
+
+    runs: Runs
+    baseline: BuildResult | None = None
+    out: Path | None = None
+    only: tuple[str, ...] = ()
+
+
+@dataclass(frozen=True, kw_only=True, slots=True, eq=False)
+class Made:
+    """A build that was computed, and what was written for it."""
+
+    result: BuildResult
+    comparison: Comparison | None
+    outputs: tuple[OutputFile, ...] = ()
+
+
+@dataclass(frozen=True, kw_only=True, slots=True, eq=False)
+class Outcome:
+    """What became of a run."""
+
+    made: tuple[Made, ...]
+    failed: tuple[FailedBuild, ...]
+    findings: tuple[Finding, ...]
+
+    def worst(self) -> Severity | None:
+        """Severity of the worst finding of the whole run."""
+        found = [finding.severity for finding in self.findings]
+        found += [finding.severity for one in self.made for finding in one.result.findings]
+        if self.failed or Severity.ERROR in found:
+            return Severity.ERROR
+        return Severity.WARNING if Severity.WARNING in found else next(iter(found), None)
+
+
+def publish(request: Request, announce: Announce) -> Outcome:
+    """Everything of a runs folder, published.
+
+    Raises
+    ------
+    UsageError
+        The call asks for something that cannot be done.
+    InputRejected
+        `runs.toml` cannot be used; nothing was written.
+    OutputError
+        The pages cannot be written.
+    """
+    runs, baseline = _opened(request)
+    _refuse_tangle(request.out, runs)
+    with open_output(request.out):
+        earlier = read_earlier(request.out)
+        task = Task(runs=runs, baseline=baseline, out=request.out, only=request.only)
+        outcome = _make_all(task, request.jobs, announce)
+        _place_index(request.out, runs, baseline, outcome, earlier)
+    return outcome
+
+
+def inspect(path: Path, announce: Announce) -> Outcome:
+    """What is wrong or worth knowing about a runs folder; writes nothing."""
+    return _make_all(Task(runs=open_runs(path)), 1, announce)
+
+
+def measure_folder(path: Path) -> tuple[BuildResult, Runs]:
+    """One build folder, computed.
+
+    Raises
+    ------
+    UsageError
+        It is no build folder.
+    InputRejected, NotMeasurable
+        Nothing can be computed from it.
+    """
+    runs, folder = _find_build(path)
+    return measure_build(read_build(runs, folder), runs.bench, runs.bands), runs
+
+
+# --- what is asked for -----------------------------------------------------------------------
+
+
+def _opened(request: Request) -> tuple[Runs, BuildResult | None]:
+    runs = open_runs(request.runs)
+    keys = [folder.key for folder in runs.folders]
+    for key in (*request.only, *([request.baseline] if request.baseline else [])):
+        if key not in keys:
+            raise UsageError(_no_such_key(key, keys))
+    if request.baseline is not None:
+        bench = replace(runs.bench, baseline=request.baseline)
+        known = tuple(one for one in runs.findings if one.code != "unknown-baseline")
+        runs = replace(runs, bench=bench, findings=known)
+    return _with_baseline(runs)
+
+
+def _no_such_key(key: str, keys: Sequence[str]) -> str:
+    near = get_close_matches(key, keys, n=1)
+    known = f"did you mean {near[0]}?" if near else f"there are: {', '.join(keys) or 'none'}"
+    return f"no build has the key {key[:80]!r}; {known}"
+
+
+def _with_baseline(runs: Runs) -> tuple[Runs, BuildResult | None]:
+    """The baseline build, computed; a finding where it cannot be."""
+    folder = next((one for one in runs.folders if one.key == runs.bench.baseline), None)
+    if folder is None:
+        return runs, None
+    made = make_build(Task(runs=runs), folder)
+    if isinstance(made, Made):
+        return runs, made.result
+    finding = Finding(
+        severity=Severity.ERROR,
+        code="no-baseline",
+        file=f"{folder.folder}/build.toml",
+        message=f"the baseline {folder.key} cannot be computed, so no build was compared with it",
+        remedy="mend its errors, or choose another baseline",
+    )
+    return replace(runs, findings=(*runs.findings, finding)), None
+
+
+def _refuse_tangle(out: Path, runs: Runs) -> None:
+    """Pages must not come to lie where sweeps are looked for, nor the other way round."""
+    place, root = out.resolve(), runs.root.resolve()
+    if place == root or place in root.parents:
+        raise UsageError(f"--out {out} holds the runs folder; choose a folder of its own")
+    for folder in runs.folders:
+        if folder.folder != "." and place.is_relative_to(root / folder.folder):
+            raise UsageError(f"--out {out} lies in the build {folder.folder}; choose another")
+
+
+def _find_build(path: Path) -> tuple[Runs, BuildFolder]:
+    if not (path / "build.toml").is_file():
+        raise UsageError(f"{path} holds no build.toml; name the folder of one build")
+    place = path.resolve()
+    above = [folder for folder in place.parents if (folder / "runs.toml").is_file()]
+    root = place if (place / "runs.toml").is_file() else next(iter(above), place.parent)
+    runs = open_runs(root)
+    for folder in runs.folders:
+        if (root / folder.folder).resolve() == place:
+            return runs, folder
+    raise UsageError(f"{path} was not found from {root}; is it a link or a hidden folder?")
+
+
+# --- builds ----------------------------------------------------------------------------------
+
+
+def _make_all(task: Task, jobs: int, announce: Announce) -> Outcome:
+    """Every build of the runs folder; one that fails does not stop the others."""
+    folders = task.runs.folders
+    made: list[Made] = []
+    failed: list[FailedBuild] = []
+    with _workers(min(jobs, len(folders))) as run:
+        for count, one in enumerate(run(make_build, repeat(task), folders), start=1):
+            (made if isinstance(one, Made) else failed).append(one)  # type: ignore[arg-type]
+            announce(folders[count - 1].key, count, len(folders))
+    return Outcome(made=tuple(made), failed=tuple(failed), findings=task.runs.findings)
+
+
+@contextmanager
+def _workers(jobs: int) -> Iterator[Callable[..., Iterator[Made | FailedBuild]]]:
+    if jobs <= 1:
+        yield map
+        return
+    with ProcessPoolExecutor(jobs, mp_context=get_context("spawn")) as pool:
+        yield pool.map
+
+
+def make_build(task: Task, folder: BuildFolder) -> Made | FailedBuild:
+    """One build from its folder to its pages; any failure is that build's alone."""
+    try:
+        build = read_build(task.runs, folder)
+        try:
+            result = measure_build(build, task.runs.bench, task.runs.bands)
+        except NotMeasurable as error:
+            raise InputRejected((*build.findings, _not_measurable(error))) from error
+        return _made(task, folder, result)
+    except InputRejected as rejected:
+        return FailedBuild(key=folder.key, folder=folder.folder, findings=rejected.findings)
+    except OutputError:
+        raise
+    except (ReportError, ArithmeticError, ValueError, LookupError, TypeError, OSError) as error:
+        fault = _fault(error)
+        return FailedBuild(key=folder.key, folder=folder.folder, findings=(fault,))
+
+
+def _made(task: Task, folder: BuildFolder, result: BuildResult) -> Made:
+    baseline = task.baseline
+    if baseline is not None and baseline.build.key == folder.key:
+        baseline = None
+    comparison = None if baseline is None else compare(result, baseline)
+    made = Made(result=result, comparison=comparison)
+    if task.out is None or (task.only and folder.key not in task.only):
+        return made
+    files = _files(task, made, baseline)
+    place_build(task.out, folder.key, files)
+    outputs = tuple(output_file(f"{folder.key}/{name}", data) for name, data in files.items())
+    return replace(made, outputs=outputs)
+
+
+def _files(task: Task, made: Made, baseline: BuildResult | None) -> dict[str, bytes]:
+    """Contents of everything that is published of one build."""
+    from reportgen.output.csv_tables import bands_csv, curves_csv
+    from reportgen.output.documents import json_bytes, results_document
+    from reportgen.pages.report import render_report_html, render_report_pdf
+
+    result, comparison = made.result, made.comparison
+    document = results_document(result, comparison, program_version=__version__)
+    html = render_report_html(
+        result,
+        comparison=comparison,
+        baseline=baseline,
+        bench=task.runs.bench,
+        program_version=__version__,
+    )
+    pdf = render_report_pdf(
+        result,
+        comparison=comparison,
+        baseline=baseline,
+        bench=task.runs.bench,
+        program_version=__version__,
+    )
+    return {
+        "report.html": html.encode("utf-8"),
+        "report.pdf": pdf,
+        "results.json": json_bytes(document),
+        "bands.csv": bands_csv(result),
+        "curves.csv": curves_csv(result.chosen.curves, result.power_w),
+    }
+
+
+def _not_measurable(error: NotMeasurable) -> Finding:
+    return Finding(
+        severity=Severity.ERROR,
+        code="not-measurable",
+        file="build.toml",
+        message=str(error),
+        remedy="add the sweep that is missing; the README lists what each set-up gives",
+    )
+
+
+def _fault(error: Exception) -> Finding:
+    """An error that nobody foresaw, told without a traceback."""
+    frame = traceback.extract_tb(error.__traceback__)[-1]
+    return Finding(
+        severity=Severity.ERROR,
+        code="fault",
+        message=f"a fault of this program: {type(error).__name__} in {Path(frame.filename).name}, "
+        f"line {frame.lineno}: {str(error)[:80]}",
+        remedy="please report it with this folder; the other builds are not touched",
+    )
+
+
+# --- index -----------------------------------------------------------------------------------
+
+
+def _place_index(
+    out: Path,
+    runs: Runs,
+    baseline: BuildResult | None,
+    outcome: Outcome,
+    earlier: dict[str, BuildRecord],
+) -> None:
+    """What concerns all builds, and the index last."""
+    from reportgen.output.csv_tables import results_csv, results_table
+    from reportgen.output.documents import json_bytes
+    from reportgen.pages.index import render_index_html
+
+    rows = [(one.result, one.comparison) for one in outcome.made]
+    records = _records(outcome, earlier)
+    kept = {output.file for record in records for output in record.outputs}
+    remove_files(
+        out, [o.file for record in earlier.values() for o in record.outputs if o.file not in kept]
+    )
+    table = results_csv(results_table(rows))
+    index = render_index_html(
+        rows,
+        bench=runs.bench,
+        failed=outcome.failed,
+        standing=[one.key for one in outcome.failed if (out / one.key / "report.html").is_file()],
+        findings=runs.findings,
+        baseline_key=None if baseline is None else baseline.build.key,
+        program_version=__version__,
+    ).encode("utf-8")
+    manifest = manifest_document(
+        program_version=__version__,
+        baseline=None if baseline is None else baseline.build.key,
+        inputs=runs.inputs,
+        builds=records,
+        outputs=[output_file("results.csv", table), output_file("index.html", index)],
+    )
+    place_file(out, "results.csv", table)
+    place_file(out, MANIFEST, json_bytes(manifest))
+    place_file(out, "index.html", index)
+
+
+def _records(outcome: Outcome, earlier: dict[str, BuildRecord]) -> list[BuildRecord]:
+    """Each build's record; where nothing was written this time, the earlier files still count."""
+    records = [
+        _record(one.result.build.key, one.result.build.folder, one.result.build.inputs, one.outputs)
+        for one in outcome.made
+    ]
+    records += [_record(one.key, one.folder, (), ()) for one in outcome.failed]
+    return [
+        replace(record, outputs=earlier[record.key].outputs)
+        if not record.outputs and record.key in earlier
+        else record
+        for record in sorted(records, key=lambda record: record.key)
+    ]
+
+
+def _record(
+    key: str, folder: str, inputs: tuple[InputFile, ...], outputs: tuple[OutputFile, ...]
+) -> BuildRecord:
+    return BuildRecord(
+        key=key, folder=folder, published=bool(outputs), inputs=inputs, outputs=outputs
+    )
