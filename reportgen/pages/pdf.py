@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+import atexit
+import gc
 import logging
 from collections.abc import Iterator, Mapping
 from contextlib import contextmanager
@@ -72,7 +74,15 @@ def _font_configuration() -> FontConfiguration:
     """One for the whole process: a new one for each document would pile up in memory."""
     from weasyprint.text.fonts import FontConfiguration
 
+    atexit.register(_release_fonts)
     return FontConfiguration()
+
+
+def _release_fonts() -> None:
+    """Let go of the fonts while they can still be cleaned up."""
+    _paper_style.cache_clear()
+    _font_configuration.cache_clear()
+    gc.collect()
 
 
 @cache

@@ -75,7 +75,7 @@ def verdict(result: BuildResult, locale: str) -> str:
 def _verdict_without_loss(result: BuildResult, locale: str) -> str:
     worst = worst_of(worsts(result.chosen, "swr"), "swr")
     if worst is None:
-        return "None of the bands was measured; the findings say why."
+        return "No band was measured; the findings say why."
     ratio = spoken("swr", worst.value, locale)
     return (
         f"The match was measured and the loss was not: SWR {ratio} or better "

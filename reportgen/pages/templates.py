@@ -10,7 +10,7 @@ import tomllib
 from functools import cache
 from pathlib import Path
 
-from jinja2 import Environment, FileSystemLoader, StrictUndefined
+from jinja2 import Environment, FileSystemLoader, StrictUndefined, Undefined
 from markupsafe import Markup
 
 import reportgen
@@ -44,8 +44,8 @@ def _is_source_tree(folder: Path) -> bool:
 
 def printable(value: object) -> object:
     """What a template may print: text, whole numbers, and markup that this program made."""
-    if isinstance(value, Markup):
-        return value
+    if isinstance(value, Markup | Undefined):
+        return value  # what is undefined complains of it itself
     if isinstance(value, str):
         return clean_text(value)
     if isinstance(value, int) and not isinstance(value, bool):
