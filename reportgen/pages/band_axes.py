@@ -18,9 +18,9 @@ from reportgen.pages.canvas import (
 from reportgen.pages.look import LIGHT
 
 
-def band_figure(size: Size, names: Sequence[str]) -> tuple[Figure, Axes]:
-    """Axes with one row for each band, the first at the top."""
-    top, bottom = size.line + 4, 2.0 * size.letters
+def band_figure(size: Size, names: Sequence[str], head_lines: int) -> tuple[Figure, Axes]:
+    """Axes with one row for each band, the first at the top, and room for lines above."""
+    top, bottom = size.line * head_lines + 4, 2.0 * size.letters
     figure, axes = new_figure(size, size.row * len(names) + top + bottom, top, bottom)
     axes.set_ylim(len(names) - 0.5, -0.5)
     labels = [name_in_chart(name) for name in names]

@@ -41,7 +41,7 @@ def _heat_at(result: BuildResult, power_w: float) -> dict[str, float]:
 def _draw_heat(
     size: Size, heat: Sequence[BandValue], other: Mapping[str, float], locale: str
 ) -> str:
-    figure, axes = band_figure(size, [one.band.name for one in heat])
+    figure, axes = band_figure(size, [one.band.name for one in heat], head_lines=1 if other else 0)
     values = [one.value for one in heat]
     rivals = [other.get(one.band.name) for one in heat]
     present = [*values, *(rival for rival in rivals if rival is not None)]

@@ -73,20 +73,10 @@ def render_index_html(
     baseline_key: str | None = None,
     program_version: str,
 ) -> str:
-    """All builds of a runs folder on one page.
+    """All builds of a runs folder on one page, published ones in any order.
 
-    Parameters
-    ----------
-    rows
-        The published builds in any order, each with its comparison where there is one.
-    bench, program_version
-        Title, publisher and locale; the foot of the page.
-    failed, findings
-        What could not be published; what concerns the whole runs folder.
-    standing
-        Keys of failed builds whose pages of an earlier run are still there.
-    baseline_key
-        The build that the others are compared with.
+    `failed` could not be published; `standing` are the keys of those whose pages of an earlier run
+    are still there; `findings` concern the whole runs folder.
     """
     shared = shared_bands([result for result, _ in rows])
     ranked = sorted(rows, key=lambda row: _rank_key(row[0], shared))
