@@ -61,24 +61,29 @@ def operating_power_gain(chain: Chain, load_ohm: ComplexArray | float) -> np.nda
     return through / ((1 - abs(seen) ** 2) * abs(1 - s[1, 1] * load) ** 2)
 
 
-def _arm_ohm(draw: st.DrawFn) -> ComplexArray:
-    resistance = draw(st.floats(0.01, 1e3))
-    inductance = draw(st.floats(0, 5e-6))
+def _arm_ohm(draw: st.DrawFn, most_ohm: float) -> ComplexArray:
+    resistance = draw(st.floats(0.01, most_ohm))
+    inductance = draw(st.floats(0, 5e-9 * most_ohm))
     return np.asarray(resistance + 2j * np.pi * FREQUENCY_HZ * inductance)
 
 
-def _arm_s(draw: st.DrawFn) -> ComplexArray:
-    conductance = draw(st.floats(1e-6, 0.1))
-    capacitance = draw(st.floats(0, 1e-9))
+def _arm_s(draw: st.DrawFn, most_s: float) -> ComplexArray:
+    conductance = draw(st.floats(1e-6, most_s))
+    capacitance = draw(st.floats(0, 1e-8 * most_s))
     return np.asarray(conductance + 2j * np.pi * FREQUENCY_HZ * capacitance)
 
 
 @st.composite
-def passive_two_ports(draw: st.DrawFn) -> Chain:
+def passive_two_ports(draw: st.DrawFn, most_ohm: float = 1e3, most_s: float = 0.1) -> Chain:
     """A ladder of lossy arms with an ideal transformer in it, on `FREQUENCY_HZ`."""
     n = ideal_transformer(np.full(FREQUENCY_HZ.shape, draw(st.floats(0.2, 8))))
-    front = series_arm(_arm_ohm(draw)) @ shunt_arm(_arm_s(draw))
-    return front @ n @ series_arm(_arm_ohm(draw)) @ shunt_arm(_arm_s(draw))
+    front = series_arm(_arm_ohm(draw, most_ohm)) @ shunt_arm(_arm_s(draw, most_s))
+    return front @ n @ series_arm(_arm_ohm(draw, most_ohm)) @ shunt_arm(_arm_s(draw, most_s))
+
+
+def passive_units() -> st.SearchStrategy[Chain]:
+    """Passive two-ports through which enough comes for a pair of them to be measured."""
+    return passive_two_ports(most_ohm=100.0, most_s=5e-3)
 
 
 @st.composite
