@@ -417,6 +417,7 @@ class Curves:
     `reflection_ratio` : abs(gamma_in)^2 at the low side, re the source resistance [ratio].
     `halved_pair_ratio` : root of the through power ratio of two units back to back [ratio].
     `native` : (F,) bool, true where a point was swept and not interpolated to a band edge.
+    `efficiency_low95`, `efficiency_high95` : ends of the 95 % interval of efficiency [ratio].
     """
 
     frequency_hz: RealArray
@@ -424,11 +425,16 @@ class Curves:
     efficiency_ratio: RealArray | None = None
     reflection_ratio: RealArray | None = None
     halved_pair_ratio: RealArray | None = None
+    efficiency_low95: RealArray | None = None
+    efficiency_high95: RealArray | None = None
 
 
 @dataclass(frozen=True, kw_only=True, slots=True)
 class Figure:
-    """One quantity in one band. The interval belongs to the mean; None: not known."""
+    """One quantity in one band; the 95 % intervals are of the mean and of the worst.
+
+    None: not known, or infinite.
+    """
 
     mean: float | None
     worst: float | None
@@ -436,6 +442,8 @@ class Figure:
     worst_at_hz: float | None
     low95: float | None = None
     high95: float | None = None
+    worst_low95: float | None = None
+    worst_high95: float | None = None
 
 
 @dataclass(frozen=True, kw_only=True, slots=True)
@@ -528,7 +536,10 @@ class Comparison:
 
 @dataclass(frozen=True, kw_only=True, slots=True, eq=False)
 class BuildResult:
-    """Everything computed of one build; `chosen` is the result, `methods` all that was computed."""
+    """Everything computed of one build; `chosen` is the result, `methods` all that was computed.
+
+    `loss_draws_db` : draws of the result's mean heat loss by band, (K,) each [dB].
+    """
 
     build: Build
     power_w: float
@@ -538,3 +549,4 @@ class BuildResult:
     bandwidths: tuple[Bandwidth, ...]
     fitted: tuple[Fitted, ...]
     findings: tuple[Finding, ...]
+    loss_draws_db: dict[str, RealArray] = field(default_factory=dict)

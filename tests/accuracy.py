@@ -12,11 +12,12 @@ import numpy as np
 
 sys.path.insert(0, str(Path(__file__).parent))
 
-from reportgen.model import BenchSheet, MeasuredBand, Method
+from simulation.bench import KnownBuild, bench_sheet, known_build
+
+from reportgen.model import MeasuredBand, Method
 from reportgen.physics.allocations import amateur_bands
 from reportgen.physics.bands import mean_ratio
 from reportgen.physics.measure import measure_build
-from simulation.bench import KnownBuild, known_build
 
 CONDITIONS = {
     "bench": {"grade": "bench"},
@@ -31,14 +32,16 @@ LABELS = {
 BANDS = tuple(band for band in amateur_bands(2) if band.to_hz < 30e6)
 
 
-def errors_db(known: KnownBuild) -> dict[Method, list[float]]:
+def errors_db(known: KnownBuild, grade: str) -> dict[Method, list[float]]:
     """Computed minus true heat loss of each band, by method [dB]."""
-    result = measure_build(known.build, BenchSheet(), BANDS)
+    result = measure_build(known.build, bench_sheet(grade), BANDS)
     found: dict[Method, list[float]] = {}
     for method in result.methods:
         for band in method.bands:
             if method.method in LABELS and isinstance(band, MeasuredBand):
-                found.setdefault(method.method, []).append(_loss_db(band) - true_loss_db(known, band))
+                found.setdefault(method.method, []).append(
+                    _loss_db(band) - true_loss_db(known, band)
+                )
     return found
 
 
@@ -55,19 +58,22 @@ def true_loss_db(known: KnownBuild, band: MeasuredBand) -> float:
     return float(-10 * np.log10(mean))
 
 
-def population(builds: int, seed: int, **condition: object) -> dict[Method, np.ndarray]:
+def population(
+    builds: int, seed: int, *, grade: str, **condition: object
+) -> dict[Method, np.ndarray]:
     """Errors of all cases of a seeded population, by method [dB]."""
     rng = np.random.default_rng(seed)
     found: dict[Method, list[float]] = {method: [] for method in LABELS}
     for _ in range(builds):
-        for method, errors in errors_db(known_build(rng, **condition)).items():
+        known = known_build(rng, grade=grade, **condition)
+        for method, errors in errors_db(known, grade).items():
             found[method] += errors
     return {method: np.array(errors) for method, errors in found.items()}
 
 
 def main() -> None:
     builds = int(sys.argv[1]) if len(sys.argv) > 1 else 200
-    print(f"| sweeps | method | 95 % within | worst | mean | cases |\n|---|---|---|---|---|---|")
+    print("| sweeps | method | 95 % within | worst | mean | cases |\n|---|---|---|---|---|---|")
     for name, condition in CONDITIONS.items():
         for method, errors in population(builds, 1, **condition).items():
             print(

@@ -9,7 +9,7 @@ import pytest
 
 from reportgen.errors import InputRejected, UsageError
 from reportgen.intake.builds import Runs, open_runs, read_build
-from reportgen.intake.scan import MARKER
+from reportgen.model import OUTPUT_MARKER
 from reportgen.model import Build, Finding, Load, Setup, Severity
 
 FREQUENCIES_MHZ = (7.0, 7.05, 7.1, 7.15, 7.2)
@@ -50,7 +50,7 @@ def test_what_is_no_folder_is_an_error_of_the_call(tmp_path: Path) -> None:
 
 def test_our_own_output_is_no_runs_folder(tmp_path: Path) -> None:
     with pytest.raises(UsageError, match="is an output folder"):
-        put(tmp_path, {MARKER: ""})
+        put(tmp_path, {OUTPUT_MARKER: ""})
 
 
 def test_broken_bench_file_is_rejected(tmp_path: Path) -> None:

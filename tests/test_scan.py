@@ -10,7 +10,8 @@ import pytest
 
 from reportgen.errors import InputRejected
 from reportgen.intake.paths import build_keys, file_name_problem, read_bytes, shown
-from reportgen.intake.scan import MARKER, Scan, ScanLimits, scan_runs
+from reportgen.intake.scan import Scan, ScanLimits, scan_runs
+from reportgen.model import OUTPUT_MARKER
 
 
 def put(root: Path, *files: str, content: bytes = b"x") -> None:
@@ -40,7 +41,7 @@ def test_hidden_files_and_folders_are_passed_over_in_silence(tmp_path: Path) -> 
 
 
 def test_folder_with_our_marker_is_passed_over_with_all_below(tmp_path: Path) -> None:
-    put(tmp_path, f"published/{MARKER}", "published/x.s1p", "published/alder/x.s1p", "a.s1p")
+    put(tmp_path, f"published/{OUTPUT_MARKER}", "published/x.s1p", "published/alder/x.s1p", "a.s1p")
     assert scan_runs(tmp_path) == Scan(files=("a.s1p",), findings=())
 
 

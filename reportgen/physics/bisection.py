@@ -57,16 +57,54 @@ def halve_pair(pair: Scattering) -> Halved:
 
     Notes
     -----
-    gamma_open = S11 + S21, gamma_short = S11 - S21; with Zopen = (P + 1)/R and
-    Zshort = (P - 1)/R the pair's chain matrix follows.
+    gamma_open = S11 + S21, gamma_short = S11 - S21.
     """
     s11 = (pair.s11 + pair.s22) / 2
     s21 = (pair.s21 + pair.s12) / 2
-    z_open = impedance_of_reflection(s11 + s21)
-    z_short = impedance_of_reflection(s11 - s21)
-    r = 2 / (z_open - z_short)
-    p = r * z_open - 1
-    return Halved(p, (p * p - 1) / r, r, z_open, z_short)
+    return halved_of_impedances(
+        impedance_of_reflection(s11 + s21), impedance_of_reflection(s11 - s21)
+    )
+
+
+def halved_of_impedances(z_open_ohm: ComplexArray, z_short_ohm: ComplexArray) -> Halved:
+    """A half by its input impedance with the high side open, and shorted [ohm].
+
+    Notes
+    -----
+    Zopen = (P + 1)/R and Zshort = (P - 1)/R; P^2 - QR = 1.
+    """
+    r = 2 / (z_open_ohm - z_short_ohm)
+    p = r * z_open_ohm - 1
+    return Halved(p, (p * p - 1) / r, r, z_open_ohm, z_short_ohm)
+
+
+def halve_three_pairs(ab: Chain, ac: Chain, bc: Chain) -> Halved:
+    """The half of unit A from three pairs of three unequal units.
+
+    Parameters
+    ----------
+    ab, ac, bc : Chain
+        Pairs, from the low side of the unit named first to that of the other.
+
+    Notes
+    -----
+    With K = diag(1, -1): M_AC K (M_AB K M_BC K)^-1 = A K A^-1 = [[P, -Q], [R, -P]] of unit A, since
+    B_reversed K B = K for every reciprocal two-port.
+    """
+    turn = Chain(*(np.asarray(value, dtype=np.complex128) for value in (1, 0, 0, -1)))
+    m = ac @ turn @ _inverse(ab @ turn @ bc @ turn)
+    p = (m.a - m.d) / 2
+    return halved_of_impedances((p + 1) / m.c, (p - 1) / m.c)
+
+
+def _inverse(chain: Chain) -> Chain:
+    determinant = chain.a * chain.d - chain.b * chain.c
+    return Chain(
+        chain.d / determinant,
+        -chain.b / determinant,
+        -chain.c / determinant,
+        chain.a / determinant,
+    )
 
 
 def unit_of_pair(halved: Halved, t: ComplexArray) -> Chain:
@@ -143,7 +181,7 @@ class StrayFit:
 def fit_stray(
     squared: ComplexArray,
     expected: ComplexArray,
-    resistance_ohm: float | RealArray,
+    admittance_s: ComplexArray,
     frequency_hz: RealArray,
 ) -> StrayFit:
     """Capacitance across the load that makes the load sweep and the closed pair agree.
@@ -154,8 +192,8 @@ def fit_stray(
         2 t^2 Z of the load sweep [ohm].
     expected : (..., F) complex array
         t as the pair alone was closed [ratio].
-    resistance_ohm : float or (..., 1) array
-        The load's resistance [ohm].
+    admittance_s : (..., F) complex array
+        The load's admittance without the stray [siemens].
     frequency_hz : (F,) array
         [Hz].
 
@@ -169,19 +207,19 @@ def fit_stray(
     -----
     Complex least squares of ln(t(C)/t) above 3 MHz, its mean log-magnitude removed since the
     turns ratio and the load's resistance are only nearly known. t(C) goes with
-    sqrt(1/R + jwC), so a few Gauss-Newton steps from C = 0 settle it.
+    sqrt(Y + jwC), so a few Gauss-Newton steps from C = 0 settle it.
     """
     used = frequency_hz >= FIT_FROM_HZ
     omega = 2 * np.pi * frequency_hz[used]
-    conductance = 1 / resistance_ohm
-    root = np.sqrt(squared[..., used] * conductance / 2) / expected[..., used]
+    known = admittance_s[..., used]
+    root = np.sqrt(squared[..., used] * known / 2) / expected[..., used]
     misfit_at_zero: ComplexArray = np.log(np.where(root.real < 0, -root, root))
     stray = np.zeros(misfit_at_zero.shape[:-1])
     if not used.any():
         return StrayFit(stray, stray + np.inf, stray + 1)
     for _ in range(_ITERATIONS):
-        admittance = conductance + 1j * omega * stray[..., None]
-        whole: ComplexArray = misfit_at_zero + 0.5 * np.log(admittance / conductance)
+        admittance = known + 1j * omega * stray[..., None]
+        whole: ComplexArray = misfit_at_zero + 0.5 * np.log(admittance / known)
         misfit = _level_free(whole)
         slope = _level_free(np.asarray(0.5j * omega / admittance))
         weight = np.sum(np.abs(slope) ** 2, axis=-1)

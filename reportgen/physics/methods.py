@@ -1,46 +1,46 @@
-"""The methods: from the sweeps of a build to efficiency and match over frequency.
+"""The methods as plans: which sweeps each needs, and how figures follow from them.
 
-Each function computes one method on one grid. The algebra takes draws in front of the frequency.
+A plan computes at any frequencies within its sweeps, from the sweeps as taken or from draws.
 """
 
 from __future__ import annotations
 
-from collections.abc import Sequence
-from dataclasses import dataclass
+from collections.abc import Callable, Mapping, Sequence
+from dataclasses import dataclass, field, replace
 
 import numpy as np
 
 from reportgen.model import (
-    Band,
     BuildSheet,
     ComplexArray,
-    Curves,
     Finding,
-    Fitted,
     Method,
     RealArray,
     Severity,
+    Sweep,
 )
 from reportgen.physics.bisection import (
     Halved,
-    halve_pair,
+    StrayFit,
+    fit_stray,
+    load_squared,
+    ratio_by_load,
     section_ratio,
     unit_of_pair,
 )
-from reportgen.physics.grid import Grid, common_grid
+from reportgen.physics.grid import common_grid
+from reportgen.physics.halves import Half
+from reportgen.physics.loads import LoadSweeps, resistor_s
 from reportgen.physics.network import (
     Chain,
-    Scattering,
     efficiency_ratio,
+    impedance_of_reflection,
     reflection_ratio,
 )
-from reportgen.physics.pairs import (
-    Pair,
-    oriented_scatterings,
-    pair_findings,
-    scattering_of_pair,
-)
+from reportgen.physics.pairs import Pair, pair_scattering
+from reportgen.physics.seen import AS_SWEPT, Seen
 from reportgen.physics.winding import (
+    MISFIT_LIMIT,
     Circuit,
     Frame,
     arms_of,
@@ -49,50 +49,77 @@ from reportgen.physics.winding import (
     low_capacitor_s,
 )
 
+NOT_DETERMINED_PF = 3.0
+"""A stray known no better than this is not determined by the data [pF]."""
+
 
 @dataclass(frozen=True, kw_only=True, slots=True, eq=False)
-class Solved:
-    """What one method gives over frequency, before it is put into bands."""
+class Computed:
+    """What a plan gives over frequency; each (..., F), None: not measured by this method.
+
+    `chain` is the unit itself, `strays` the fits of each load by name.
+    """
+
+    efficiency_ratio: RealArray | None = None
+    reflection_ratio: RealArray | None = None
+    halved_pair_ratio: RealArray | None = None
+    chain: Chain | None = None
+    strays: Mapping[str, StrayFit] = field(default_factory=dict)
+
+
+@dataclass(frozen=True, kw_only=True, slots=True, eq=False)
+class Plan:
+    """One method on one set of sweeps.
+
+    `unit` is None for a mean over `units`; `load_ohm` is the load that the figures hold for.
+    """
 
     method: Method
     unit: str | None
     units: tuple[str, ...]
     load_ohm: float
-    curves: Curves
+    sweeps: tuple[Sweep, ...]
+    compute: Callable[[RealArray, Seen], Computed]
     reason: str | None = None
-    fitted: tuple[Fitted, ...] = ()
     findings: tuple[Finding, ...] = ()
 
 
-@dataclass(frozen=True, slots=True, eq=False)
-class ClosedPair:
-    """A pair on a grid of its own, and the circuit that closes it."""
+# --- halves and what closes them -----------------------------------------------------------------
 
-    pair: Pair
-    grid: Grid
+
+@dataclass(frozen=True, slots=True, eq=False)
+class ClosedHalf:
+    """A half with the equivalent circuit that was fitted to it."""
+
+    half: Half
     circuit: Circuit
 
+    def expected_ratio(self, halved: Halved, frequency_hz: RealArray, seen: Seen) -> ComplexArray:
+        """Voltage ratio A of the unit, its high side open, without any load sweep [ratio].
 
-# --- pairs alone ---------------------------------------------------------------------------------
+        By the fitted circuit, or by the lumped section at each frequency where no circuit fits.
+        """
+        frame = self.circuit.frame
+        if not self.circuit.believed:
+            ratio = section_ratio(halved, low_capacitor_s(frame, frequency_hz), frame.turns_ratio)
+        else:
+            circuit = seen.circuit(self.circuit, self.half.view)
+            arms = arms_of(circuit.parameters, frame, frequency_hz)
+            ratio = circuit_ratio(halved, arms) / frame.turns_ratio
+        return np.asarray(ratio * seen.closing_ratio(self.circuit, frequency_hz))
 
 
-def close_pair(pair: Pair, sheet: BuildSheet, bands: Sequence[Band]) -> ClosedPair:
-    """A pair with its equivalent circuit, fitted on its own points.
+def close_half(half: Half, sheet: BuildSheet) -> ClosedHalf:
+    """A half with its equivalent circuit, fitted on the swept points that it has.
 
     Raises
     ------
     NotMeasurable
-        The sweeps of the pair share no range.
+        Its sweeps share no range.
     """
-    grid = common_grid(pair.sweeps, bands)
-    swept_hz = grid.frequency_hz[grid.native]
-    halved = halve_pair(pair_scattering(pair, swept_hz))
-    return ClosedPair(pair, grid, fit_circuit(halved, frame_of_sheet(sheet), swept_hz))
-
-
-def pair_scattering(pair: Pair, frequency_hz: RealArray) -> Scattering:
-    """A pair's scattering matrix at frequencies within its sweeps."""
-    return scattering_of_pair(pair, oriented_scatterings(pair, frequency_hz))
+    grid = common_grid(half.sweeps, ())
+    halved, _ = half.view(grid.frequency_hz, AS_SWEPT)
+    return ClosedHalf(half, fit_circuit(halved, frame_of_sheet(sheet), grid.frequency_hz))
 
 
 def frame_of_sheet(sheet: BuildSheet) -> Frame:
@@ -109,77 +136,137 @@ def frame_of_sheet(sheet: BuildSheet) -> Frame:
     )
 
 
-def closing_ratio(halved: Halved, circuit: Circuit, frequency_hz: RealArray) -> ComplexArray:
-    """Voltage ratio A of a unit, its high side open, from a pair alone [ratio].
-
-    By the fitted circuit, or by the lumped section at each frequency where no circuit fits.
-    """
-    frame = circuit.frame
-    if not circuit.believed:
-        capacitor_s = low_capacitor_s(frame, frequency_hz)
-        return section_ratio(halved, capacitor_s, frame.turns_ratio)
-    arms = arms_of(circuit.parameters, frame, frequency_hz)
-    return circuit_ratio(halved, arms) / frame.turns_ratio
-
-
-def curves_of_chain(chain: Chain, grid: Grid, sheet: BuildSheet, pair: Scattering) -> Curves:
-    """Efficiency and match with the nominal load, and the pair's halved figure beside them."""
+def computed_of_chain(chain: Chain, sheet: BuildSheet, through: RealArray | None) -> Computed:
+    """Efficiency and match of a unit with the nominal load."""
     load_ohm = sheet.nominal_load_ohm
-    return Curves(
-        frequency_hz=grid.frequency_hz,
-        native=grid.native,
+    return Computed(
         efficiency_ratio=efficiency_ratio(chain, load_ohm),
         reflection_ratio=reflection_ratio(chain, load_ohm, sheet.match.source_ohm),
-        halved_pair_ratio=np.abs(pair.s21),
+        halved_pair_ratio=through,
+        chain=chain,
     )
 
 
-def halving(closed: ClosedPair, sheet: BuildSheet) -> Solved:
-    """Half of the through loss of a pair: common practice, and not the loss of a unit."""
-    s = pair_scattering(closed.pair, closed.grid.frequency_hz)
-    return Solved(
-        method=Method.HALVING,
-        unit=None,
-        units=closed.pair.units,
+def closed_by_circuit(closed: ClosedHalf, sheet: BuildSheet) -> Plan:
+    """Bisection of a pair, or the like for one unit: nothing but the half and its circuit."""
+    half = closed.half
+
+    def compute(frequency_hz: RealArray, seen: Seen) -> Computed:
+        halved, through = half.view(frequency_hz, seen)
+        ratio = closed.expected_ratio(halved, frequency_hz, seen)
+        return computed_of_chain(unit_of_pair(halved, ratio), sheet, through)
+
+    return Plan(
+        method=half.alone,
+        unit=half.unit,
+        units=half.units,
         load_ohm=sheet.nominal_load_ohm,
-        curves=Curves(
-            frequency_hz=closed.grid.frequency_hz,
-            native=closed.grid.native,
-            halved_pair_ratio=np.abs(s.s21),
-        ),
-        reason="half of a through loss holds the mismatch between the two units: it is not the "
-        "heat loss of one",
+        sweeps=half.sweeps,
+        compute=compute,
+        findings=(*half.findings, *_circuit_findings(closed)),
     )
 
 
-def bisection(closed: ClosedPair, sheet: BuildSheet) -> Solved:
-    """The mean of two units from their pair alone."""
-    hz = closed.grid.frequency_hz
-    s = pair_scattering(closed.pair, hz)
-    halved = halve_pair(s)
-    chain = unit_of_pair(halved, closing_ratio(halved, closed.circuit, hz))
-    return Solved(
-        method=Method.BISECTION,
-        unit=None,
-        units=closed.pair.units,
+def closed_by_loads(closed: ClosedHalf, loads: Sequence[LoadSweeps], sheet: BuildSheet) -> Plan:
+    """A half closed by load sweeps of its units; t^2 is the mean over units and loads.
+
+    Parameters
+    ----------
+    closed : ClosedHalf
+        The half, and the circuit that tells the loads' strays.
+    loads : sequence of LoadSweeps
+        At least one, all of units of the half.
+    sheet : BuildSheet
+        For the nominal load.
+    """
+    half = closed.half
+
+    def compute(frequency_hz: RealArray, seen: Seen) -> Computed:
+        halved, through = half.view(frequency_hz, seen)
+        expected = closed.expected_ratio(halved, frequency_hz, seen)
+        squared = [
+            load_squared(halved, impedance_of_reflection(one.reflection(frequency_hz, seen)))
+            for one in loads
+        ]
+        strays = _fit_strays(loads, squared, expected, frequency_hz, seen)
+        admittances_s = [
+            resistor_s(one, frequency_hz, seen)
+            + 2j * np.pi * frequency_hz * used_stray_f(one, strays[one.name], seen)
+            for one in loads
+        ]
+        mean = np.mean([s * y for s, y in zip(squared, admittances_s, strict=True)], axis=0)
+        chain = unit_of_pair(halved, ratio_by_load(mean, 1.0, expected))
+        return replace(computed_of_chain(chain, sheet, through), strays=strays)
+
+    return Plan(
+        method=half.loaded,
+        unit=half.unit,
+        units=half.units,
         load_ohm=sheet.nominal_load_ohm,
-        curves=curves_of_chain(chain, closed.grid, sheet, s),
-        findings=(*pair_findings(closed.pair), *_circuit_findings(closed)),
+        sweeps=(*half.sweeps, *(one.sweep for sweeps in loads for one in sweeps.measurements)),
+        compute=compute,
+        findings=(*half.findings, *_circuit_findings(closed)),
     )
 
 
-def _circuit_findings(closed: ClosedPair) -> tuple[Finding, ...]:
+def _fit_strays(
+    loads: Sequence[LoadSweeps],
+    squared: Sequence[ComplexArray],
+    expected: ComplexArray,
+    frequency_hz: RealArray,
+    seen: Seen,
+) -> dict[str, StrayFit]:
+    """The stray of each load, from the mean over the units swept with it."""
+    fits = {}
+    for name in dict.fromkeys(one.name for one in loads):
+        same = [(one, s) for one, s in zip(loads, squared, strict=True) if one.name == name]
+        mean = np.mean([s for _, s in same], axis=0)
+        known_s = resistor_s(same[0][0], frequency_hz, seen)
+        fits[name] = fit_stray(mean, expected, known_s, frequency_hz)
+    return fits
+
+
+def used_stray_f(sweeps: LoadSweeps, fit: StrayFit, seen: Seen) -> float | RealArray:
+    """The stray to compute with, (..., 1): stated, or fitted where the data determine it [F]."""
+    if sweeps.load.stray_pf != "fit":
+        return seen.stray_f(sweeps.name, sweeps.load.stray_pf)
+    determined = fit.spread_f <= NOT_DETERMINED_PF * 1e-12
+    return np.where(determined, fit.stray_f, 0.0)[..., None]
+
+
+def _circuit_findings(closed: ClosedHalf) -> tuple[Finding, ...]:
     if closed.circuit.believed:
         return ()
     return (
         Finding(
             severity=Severity.WARNING,
             code="no-circuit-fits",
-            file=closed.pair.sweeps[0].file,
-            message="the pair behaves like no winding with the turns and the capacitor entered "
-            f"(misfit {closed.circuit.misfit_ratio:.3f} where "
-            "0.02 is allowed); each frequency was closed by itself, which may be 0.2 dB off",
+            file=closed.half.sweeps[0].file,
+            message="the sweeps look like no winding with the turns and the capacitor entered "
+            f"(misfit {closed.circuit.misfit_ratio:.3f} where {MISFIT_LIMIT} is allowed); each "
+            "frequency was closed by itself, which may be 0.2 dB off",
             remedy="check turns and capacitor in build.toml and the calibration, or sweep the "
             "units with a known load",
         ),
+    )
+
+
+# --- half of the through loss --------------------------------------------------------------------
+
+
+def halving(pair: Pair, sheet: BuildSheet) -> Plan:
+    """Half of the through loss of a pair: common practice, and not the loss of a unit."""
+
+    def compute(frequency_hz: RealArray, seen: Seen) -> Computed:
+        return Computed(halved_pair_ratio=np.abs(pair_scattering(pair, frequency_hz, seen).s21))
+
+    return Plan(
+        method=Method.HALVING,
+        unit=None,
+        units=pair.units,
+        load_ohm=sheet.nominal_load_ohm,
+        sweeps=pair.sweeps,
+        compute=compute,
+        reason="half of a through loss holds the mismatch between the two units: it is not the "
+        "heat loss of one",
     )

@@ -8,8 +8,8 @@ from dataclasses import dataclass
 import numpy as np
 
 from reportgen.model import Finding, Measurement, RealArray, Setup, Severity, Sweep
-from reportgen.physics.grid import resampled
 from reportgen.physics.network import Scattering
+from reportgen.physics.seen import AS_SWEPT, Seen
 
 _POLARITY_FLOOR = 0.5
 """Polarity is read at the lowest frequency at which so much passes [ratio]."""
@@ -42,22 +42,24 @@ def find_pairs(measurements: Iterable[Measurement]) -> tuple[Pair, ...]:
     return tuple(Pair(group[0].entry.pair, tuple(group)) for group in found.values())
 
 
-def scattering_of_sweep(sweep: Sweep, frequency_hz: RealArray) -> Scattering:
-    """A two-port sweep at frequencies within it; what was not measured is taken from symmetry.
-
-    A one-path sweep gives S22 = S11, a guess, and S12 = S21, which reciprocity makes sure.
-    """
-    s = resampled(sweep, frequency_hz)
-    if sweep.one_path:
-        return Scattering(s[0, 0], s[1, 0], s[1, 0], s[0, 0])
-    return Scattering(s[0, 0], s[0, 1], s[1, 0], s[1, 1])
+def pair_scattering(
+    pair: Pair, frequency_hz: RealArray, seen: Seen = AS_SWEPT, *, first: str | None = None
+) -> Scattering:
+    """A pair's scattering matrix at frequencies within its sweeps, unit `first` at port 1."""
+    s = scattering_of_pair(pair, oriented_scatterings(pair, frequency_hz, seen))
+    return s.reversed() if first is not None and first != pair.units[0] else s
 
 
-def oriented_scatterings(pair: Pair, frequency_hz: RealArray) -> tuple[Scattering, ...]:
+def oriented_scatterings(
+    pair: Pair, frequency_hz: RealArray, seen: Seen = AS_SWEPT
+) -> tuple[Scattering, ...]:
     """Each sweep of a pair with the first unit of `pair.units` at port 1, right in polarity."""
-    seen = ((one, scattering_of_sweep(one.sweep, frequency_hz)) for one in pair.measurements)
-    turned = (s if one.entry.pair == pair.units else s.reversed() for one, s in seen)
-    return tuple(s.negated() if inverted(s) else s for s in turned)
+    oriented = []
+    for one in pair.measurements:
+        s = seen.two_port(one, frequency_hz)
+        s = s if one.entry.pair == pair.units else s.reversed()
+        oriented.append(s.negated() if inverted(one.sweep) else s)
+    return tuple(oriented)
 
 
 def scattering_of_pair(pair: Pair, scatterings: Sequence[Scattering]) -> Scattering:
@@ -89,11 +91,12 @@ def scattering_of_pair(pair: Pair, scatterings: Sequence[Scattering]) -> Scatter
     return Scattering(s11, s12, s21, s22)
 
 
-def inverted(s: Scattering) -> bool:
+def inverted(sweep: Sweep) -> bool:
     """True when the windings are joined the wrong way round: S21 begins beyond +-90 degrees."""
-    passing = np.flatnonzero(np.abs(s.s21) > _POLARITY_FLOOR)
-    first = passing[0] if passing.size else int(np.argmax(np.abs(s.s21)))
-    return bool(s.s21[first].real < 0)
+    s21 = sweep.s[:, 1, 0]
+    passing = np.flatnonzero(np.abs(s21) > _POLARITY_FLOOR)
+    first = passing[0] if passing.size else int(np.argmax(np.abs(s21)))
+    return bool(s21[first].real < 0)
 
 
 def pair_findings(pair: Pair) -> tuple[Finding, ...]:
@@ -108,7 +111,7 @@ def pair_findings(pair: Pair) -> tuple[Finding, ...]:
             remedy="nothing to do; the loss does not depend on it",
         )
         for one in pair.measurements
-        if inverted(scattering_of_sweep(one.sweep, one.sweep.frequency_hz))
+        if inverted(one.sweep)
     ]
     ways = {one.entry.pair for one in pair.measurements}
     if len(ways) == 1 and all(sweep.one_path for sweep in pair.sweeps):

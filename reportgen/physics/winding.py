@@ -153,30 +153,34 @@ def with_guesses(frame: Frame, halved: Halved, frequency_hz: RealArray) -> Frame
     )
 
 
-@dataclass(frozen=True, slots=True, eq=False)
+@dataclass(frozen=True, kw_only=True, slots=True, eq=False)
 class Circuit:
-    """A circuit as fitted: its frame, (..., 12) parameters, and the misfit left [ratio].
+    """A circuit as fitted.
 
-    The misfit is the root mean square over the open and the short reflection.
+    `parameters` is (..., 12), `misfit_ratio` the root mean square that is left over both
+    reflections. `gain`, (12, 4 P + 12), moves the parameters against the change of the misfits at
+    the P points `points_hz`; it belongs to the fit without draws.
     """
 
     frame: Frame
     parameters: RealArray
     misfit_ratio: float
+    points_hz: RealArray
+    gain: RealArray
 
     @property
     def believed(self) -> bool:
-        """False when the pair behaves otherwise than any such circuit."""
+        """False when the half behaves otherwise than any such circuit."""
         return self.misfit_ratio <= MISFIT_LIMIT
 
 
 def fit_circuit(halved: Halved, frame: Frame, frequency_hz: RealArray) -> Circuit:
-    """The circuit whose open and short reflections come nearest to those of a pair's half.
+    """The circuit whose open and short reflections come nearest to those of a half.
 
     Parameters
     ----------
     halved : Halved
-        One pair, (F,) without draws.
+        (F,) without draws.
     frame : Frame
         What the sidecar says; its guesses are made anew.
     frequency_hz : (F,) array
@@ -191,20 +195,61 @@ def fit_circuit(halved: Halved, frame: Frame, frequency_hz: RealArray) -> Circui
 
     frame = with_guesses(frame, halved, frequency_hz)
     points = fit_points(frequency_hz)
+    seen = _reflections(halved.z_open_ohm[points], halved.z_short_ohm[points])
     few_hz = frequency_hz[points]
-    seen_ohm = np.stack([halved.z_open_ohm[points], halved.z_short_ohm[points]])
-    seen = reflection_of_impedance(seen_ohm)
-    weight = np.sqrt(_EFFECTIVE_POINTS / points.size) / _SIGMA
 
     def misfit(parameters: RealArray) -> RealArray:
-        both_ohm = np.stack(open_and_short_ohm(arms_of(parameters, frame, few_hz)))
-        off = weight * (reflection_of_impedance(both_ohm) - seen).ravel()
-        return np.concatenate([off.real, off.imag, (parameters - START) / SPREAD])
+        off = _reflections(*open_and_short_ohm(arms_of(parameters, frame, few_hz))) - seen
+        return np.concatenate([_weighted(off), (parameters - START) / SPREAD])
 
     bounds = (START - _BOUND_SPREADS * SPREAD, START + _BOUND_SPREADS * SPREAD)
     found = least_squares(misfit, START, bounds=bounds, x_scale=SPREAD, max_nfev=200)
-    left = found.fun[: -START.size] / weight
-    return Circuit(frame, found.x, float(np.sqrt(2 * np.mean(left**2))))
+    left = found.fun[: -START.size] / _weight(few_hz.size)
+    return Circuit(
+        frame=frame,
+        parameters=found.x,
+        misfit_ratio=float(np.sqrt(2 * np.mean(left**2))),
+        points_hz=few_hz,
+        gain=np.linalg.pinv(found.jac),
+    )
+
+
+def _reflections(z_open_ohm: ComplexArray, z_short_ohm: ComplexArray) -> ComplexArray:
+    """Open and short reflection behind each other, (..., 2 P) [ratio]."""
+    return reflection_of_impedance(np.concatenate([z_open_ohm, z_short_ohm], axis=-1))
+
+
+def _weight(points: int) -> float:
+    return float(np.sqrt(_EFFECTIVE_POINTS / points) / _SIGMA)
+
+
+def _weighted(off: ComplexArray) -> RealArray:
+    scaled = _weight(off.shape[-1] // 2) * off
+    return np.concatenate([scaled.real, scaled.imag], axis=-1)
+
+
+def moved(circuit: Circuit, halved: Halved, drawn: Halved, expected: RealArray) -> Circuit:
+    """The circuit as it would be fitted to other data and other expectations, to first order.
+
+    Parameters
+    ----------
+    circuit : Circuit
+        As fitted.
+    halved, drawn : Halved
+        What it was fitted to, and (K, P) draws of it, both at `circuit.points_hz`.
+    expected : (K, 12) array
+        By how many of its spreads the expectation of each parameter is moved.
+
+    Notes
+    -----
+    One Gauss-Newton step from the fit; kept within the bounds of the fit.
+    """
+    before = _reflections(halved.z_open_ohm, halved.z_short_ohm)
+    after = _reflections(drawn.z_open_ohm, drawn.z_short_ohm)
+    change = np.concatenate([_weighted(after - before), expected], axis=-1)
+    parameters = circuit.parameters + change @ circuit.gain.T
+    bound = _BOUND_SPREADS * SPREAD
+    return replace(circuit, parameters=np.clip(parameters, START - bound, START + bound))
 
 
 def fit_points(frequency_hz: RealArray) -> NDArray[np.intp]:

@@ -8,6 +8,7 @@ from dataclasses import dataclass
 import numpy as np
 
 from reportgen.model import (
+    BenchSheet,
     Build,
     BuildSheet,
     Calibration,
@@ -52,7 +53,9 @@ class KnownBuild:
         return np.mean(parts, axis=0)
 
 
-def sweep_of(file: str, frequency_hz: np.ndarray, s: np.ndarray, *, one_path: bool = False) -> Sweep:
+def sweep_of(
+    file: str, frequency_hz: np.ndarray, s: np.ndarray, *, one_path: bool = False
+) -> Sweep:
     """A sweep as the reader would hand it on."""
     return Sweep(
         file=file,
@@ -87,7 +90,9 @@ def known_build(
     analyzer = Analyzer(GRADES[grade], SWEPT_HZ, rng, one_path=one_path)
     chains = [chain_of_unit(unit, SWEPT_HZ) for unit in units]
     pair = analyzer.sweep_two_port(chains[0] @ chains[1].reversed())
-    pair_entry = SweepEntry(file="pair.s2p", setup=Setup.BACK_TO_BACK, units=("A", "B"), calibration="cal")
+    pair_entry = SweepEntry(
+        file="pair.s2p", setup=Setup.BACK_TO_BACK, units=("A", "B"), calibration="cal"
+    )
     measurements = [
         Measurement(
             entry=pair_entry,
@@ -124,8 +129,12 @@ def known_build(
         winding=Winding(low_turns=design.low_turns, high_turns=design.high_turns),
         compensation=Compensation(capacitor_pf=float(design.capacitor_f * 1e12 / tolerance)),
     )
-    build = Build(key="simulated", folder="simulated", sheet=sheet, measurements=tuple(measurements))
+    build = Build(
+        key="simulated", folder="simulated", sheet=sheet, measurements=tuple(measurements)
+    )
     return KnownBuild(build, units)
 
 
-CALIBRATIONS = {grade: {"cal": Calibration(grade=grade)} for grade in GRADES}
+def bench_sheet(grade: str, **settings: object) -> BenchSheet:
+    """`runs.toml` that tells the truth about the analyzer's grade."""
+    return BenchSheet(calibrations={"cal": Calibration(grade=grade)}, **settings)
