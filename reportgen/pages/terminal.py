@@ -2,17 +2,16 @@
 
 from __future__ import annotations
 
-from collections.abc import Sequence
+from collections.abc import Callable, Iterator, Sequence
 
 from rich.console import Console
-from rich.table import Table as TerminalTable
 from rich.text import Text
 
 from reportgen.model import BenchSheet, BuildResult, FailedBuild, Finding, Severity
 from reportgen.pages import sentences
 from reportgen.pages.band_tables import band_table
 from reportgen.pages.plain_text import clean_text
-from reportgen.pages.tables import Row
+from reportgen.pages.tables import Row, Table
 from reportgen.pages.wording import METHOD_NAMES
 
 _STYLES = {Severity.ERROR: "bold red", Severity.WARNING: "yellow", Severity.NOTE: "dim"}
@@ -61,21 +60,47 @@ def print_bands(console: Console, result: BuildResult, bench: BenchSheet) -> Non
     console.print(Text(clean_text(sentences.verdict(result, bench.locale))), soft_wrap=True)
     table = band_table(result, bench)
     if table is not None:
-        shown = TerminalTable(box=None, pad_edge=False, header_style="dim")
-        shown.add_column(table.corner)
-        shown.add_column("")
-        for column in table.columns:
-            shown.add_column(Text(f"{column.label}\n{column.unit}"), justify="right")
-        for group in table.groups:
-            for row in group:
-                shown.add_row(*_cells(row, len(table.columns)))
-        console.print(shown)
+        for block in _blocks(table, console.width):
+            console.print(Text("\n".join(block)), soft_wrap=True)
     console.print(Text(f"method: {METHOD_NAMES[result.chosen.method]}", style="dim"))
 
 
-def _cells(row: Row, columns: int) -> list[Text]:
-    head = [Text(clean_text(row.head or "")), Text(clean_text(row.sub or ""), style="dim")]
-    if row.words is not None:
-        return [*head, Text(clean_text(row.words))]
-    cells = [Text(clean_text(cell.text)) for cell in row.cells]
-    return [*head, *cells, *([Text("")] * (columns - len(cells)))]
+def _blocks(table: Table, width: int) -> Iterator[list[str]]:
+    """The table as lines of text; columns that find no room go into a further block."""
+    rows = [row for group in table.groups for row in group]
+    heads = _padded(["", table.corner, *[clean_text(row.head or "") for row in rows]], str.ljust)
+    subs = _padded(["", "", *[clean_text(row.sub or "") for row in rows]], str.ljust)
+    lines = [f"{head}  {sub}" for head, sub in zip(heads, subs, strict=True)]
+    room = width - len(lines[0])
+    for columns in _fitting(_column_texts(table, rows), room):
+        block = ["".join(parts) for parts in zip(lines, *columns, strict=True)]
+        words = [f"  {clean_text(row.words)}" if row.words else "" for row in rows]
+        yield [
+            (line.rstrip() + text).rstrip()
+            for line, text in zip(block, ["", "", *words], strict=True)
+        ]
+
+
+def _column_texts(table: Table, rows: Sequence[Row]) -> list[list[str]]:
+    """Every column, its two lines of head first, padded to one width."""
+    columns = []
+    for place, column in enumerate(table.columns):
+        cells = [clean_text(row.cells[place].text) if row.cells else "" for row in rows]
+        columns.append(_padded([column.label, column.unit, *cells], str.rjust, gap="  "))
+    return columns
+
+
+def _padded(texts: Sequence[str], pad: Callable[[str, int], str], gap: str = "") -> list[str]:
+    width = max(len(text) for text in texts)
+    return [gap + pad(text, width) for text in texts]
+
+
+def _fitting(columns: Sequence[list[str]], room: int) -> Iterator[list[list[str]]]:
+    """The columns in groups that fit, at least one in each."""
+    group: list[list[str]] = []
+    for column in columns:
+        if group and sum(len(one[0]) for one in [*group, column]) > room:
+            yield group
+            group = []
+        group.append(column)
+    yield group
