@@ -7,6 +7,7 @@ import os
 import sys
 from collections.abc import Callable, Iterator, Sequence
 from contextlib import contextmanager
+from io import TextIOWrapper
 from pathlib import Path
 from typing import TYPE_CHECKING
 
@@ -23,6 +24,9 @@ DONE, REJECTED, WRONG_CALL = 0, 1, 2
 
 def main(arguments: Sequence[str] | None = None) -> int:
     """Run one command; returns its exit status."""
+    for stream in (sys.stdout, sys.stderr):
+        if isinstance(stream, TextIOWrapper):
+            stream.reconfigure(errors="backslashreplace")
     options = _parser().parse_args(arguments)
     command: Callable[[argparse.Namespace], int] = options.command
     try:
@@ -33,6 +37,9 @@ def main(arguments: Sequence[str] | None = None) -> int:
         return _tell(error, WRONG_CALL)
     except ReportError as error:
         return _tell(error, REJECTED)
+    except BrokenPipeError:
+        os.dup2(os.open(os.devnull, os.O_WRONLY), sys.stdout.fileno())
+        return REJECTED
     except KeyboardInterrupt:
         return _tell(OutputError("interrupted; what was published before still stands"), REJECTED)
 
@@ -83,12 +90,7 @@ def _add_publish(commands: argparse._SubParsersAction[argparse.ArgumentParser]) 
         default=[],
         help="make the pages of this build only; may be repeated",
     )
-    publish.add_argument(
-        "--jobs",
-        type=_jobs,
-        default=os.cpu_count() or 1,
-        help="builds worked on at the same time (default: one for each core)",
-    )
+    _add_jobs(publish)
     publish.add_argument("--strict", action="store_true", help="warnings count as errors")
     publish.set_defaults(command=_publish)
 
@@ -97,6 +99,7 @@ def _add_inspect(commands: argparse._SubParsersAction[argparse.ArgumentParser]) 
     text = "say what is wrong or worth knowing about a runs folder; write nothing"
     inspect = commands.add_parser("inspect", help=text, description=text)
     inspect.add_argument("runs", metavar="RUNS", type=Path, help="folder of build folders")
+    _add_jobs(inspect)
     inspect.add_argument("--strict", action="store_true", help="warnings count as errors")
     inspect.set_defaults(command=_inspect)
 
@@ -106,6 +109,15 @@ def _add_table(commands: argparse._SubParsersAction[argparse.ArgumentParser]) ->
     table = commands.add_parser("table", help=text, description=text)
     table.add_argument("build", metavar="BUILD", type=Path, help="a build folder")
     table.set_defaults(command=_table)
+
+
+def _add_jobs(command: argparse.ArgumentParser) -> None:
+    command.add_argument(
+        "--jobs",
+        type=_jobs,
+        default=os.cpu_count() or 1,
+        help="builds worked on at the same time (default: one for each core)",
+    )
 
 
 def _jobs(text: str) -> int:
@@ -135,7 +147,8 @@ def _publish(options: argparse.Namespace) -> int:
     with _progress(console) as announce:
         outcome = publish(request, announce)
     _print_outcome(console, outcome)
-    count = f"{len(outcome.made)} of {len(outcome.made) + len(outcome.failed)} builds"
+    written = sum(bool(one.outputs) for one in outcome.made)
+    count = f"{written} of {len(outcome.made) + len(outcome.failed)} builds"
     print(f"{count} published; open {options.out / 'index.html'}")
     return _status(outcome, strict=options.strict)
 
@@ -144,7 +157,7 @@ def _inspect(options: argparse.Namespace) -> int:
     from reportgen.pipeline import inspect
 
     with _progress(_console(stderr=True)) as announce:
-        outcome = inspect(options.runs, announce)
+        outcome = inspect(options.runs, options.jobs, announce)
     _print_outcome(_console(), outcome)
     if not outcome.made and not outcome.failed:
         print("no build was found: a build is a folder that holds a build.toml")

@@ -1,14 +1,14 @@
 """The whole story: scan, read, measure, compare, draw, render, place.
 
-What is common to a run goes to every build as one `Task`; what a build leaves behind for the
-index is one `Made`. Builds are independent of each other, the baseline alone goes first.
+Builds are independent of each other, the baseline alone goes first; `one_build` tells what happens
+to each.
 """
 
 from __future__ import annotations
 
-import traceback
 from collections.abc import Callable, Iterator, Sequence
 from concurrent.futures import ProcessPoolExecutor
+from concurrent.futures.process import BrokenProcessPool
 from contextlib import contextmanager
 from dataclasses import dataclass, replace
 from difflib import get_close_matches
@@ -17,28 +17,19 @@ from multiprocessing import get_context
 from pathlib import Path
 
 from reportgen import __version__
-from reportgen.errors import InputRejected, NotMeasurable, OutputError, ReportError, UsageError
+from reportgen.errors import InputRejected, OutputError, UsageError
 from reportgen.intake.builds import BuildFolder, Runs, open_runs, read_build
-from reportgen.model import (
-    BuildResult,
-    Comparison,
-    FailedBuild,
-    Finding,
-    InputFile,
-    Severity,
-)
+from reportgen.model import BuildResult, FailedBuild, Finding, InputFile, Severity
+from reportgen.one_build import Made, Task, make_build
 from reportgen.output.manifest import (
-    FILE as MANIFEST,
-)
-from reportgen.output.manifest import (
+    MANIFEST_FILE,
     BuildRecord,
     OutputFile,
     manifest_document,
     output_file,
     read_earlier,
 )
-from reportgen.output.placing import open_output, place_build, place_file, remove_files
-from reportgen.physics.compare import compare
+from reportgen.output.placing import open_output, place_file, remove_files
 from reportgen.physics.measure import measure_build
 
 Announce = Callable[[str, int, int], None]
@@ -53,25 +44,6 @@ class Request:
     baseline: str | None = None
     only: tuple[str, ...] = ()
     jobs: int = 1
-
-
-@dataclass(frozen=True, kw_only=True, slots=True, eq=False)
-class Task:
-    """What every build of a run needs; `out` None: compute, write nothing."""
-
-    runs: Runs
-    baseline: BuildResult | None = None
-    out: Path | None = None
-    only: tuple[str, ...] = ()
-
-
-@dataclass(frozen=True, kw_only=True, slots=True, eq=False)
-class Made:
-    """A build that was computed, and what was written for it."""
-
-    result: BuildResult
-    comparison: Comparison | None
-    outputs: tuple[OutputFile, ...] = ()
 
 
 @dataclass(frozen=True, kw_only=True, slots=True, eq=False)
@@ -99,7 +71,7 @@ def publish(request: Request, announce: Announce) -> Outcome:
     UsageError
         The call asks for something that cannot be done.
     InputRejected
-        `runs.toml` cannot be used; nothing was written.
+        `runs.toml` cannot be used, or there is no build; nothing was written.
     OutputError
         The pages cannot be written.
     """
@@ -107,15 +79,17 @@ def publish(request: Request, announce: Announce) -> Outcome:
     _refuse_tangle(request.out, runs)
     with open_output(request.out):
         earlier = read_earlier(request.out)
-        task = Task(runs=runs, baseline=baseline, out=request.out, only=request.only)
+        task = Task(
+            runs=runs, baseline=baseline, out=request.out, only=request.only, earlier=earlier
+        )
         outcome = _make_all(task, request.jobs, announce)
         _place_index(request.out, runs, baseline, outcome, earlier)
     return outcome
 
 
-def inspect(path: Path, announce: Announce) -> Outcome:
+def inspect(path: Path, jobs: int, announce: Announce) -> Outcome:
     """What is wrong or worth knowing about a runs folder; writes nothing."""
-    return _make_all(Task(runs=open_runs(path)), 1, announce)
+    return _make_all(Task(runs=open_runs(path)), jobs, announce)
 
 
 def measure_folder(path: Path) -> tuple[BuildResult, Runs]:
@@ -137,6 +111,8 @@ def measure_folder(path: Path) -> tuple[BuildResult, Runs]:
 
 def _opened(request: Request) -> tuple[Runs, BuildResult | None]:
     runs = open_runs(request.runs)
+    if not runs.folders:
+        raise InputRejected((*runs.findings, _no_build()))
     keys = [folder.key for folder in runs.folders]
     for key in (*request.only, *([request.baseline] if request.baseline else [])):
         if key not in keys:
@@ -146,6 +122,15 @@ def _opened(request: Request) -> tuple[Runs, BuildResult | None]:
         known = tuple(one for one in runs.findings if one.code != "unknown-baseline")
         runs = replace(runs, bench=bench, findings=known)
     return _with_baseline(runs)
+
+
+def _no_build() -> Finding:
+    return Finding(
+        severity=Severity.ERROR,
+        code="no-build",
+        message="no build was found; earlier pages were left as they are",
+        remedy="a build is a folder that holds a build.toml and its sweeps",
+    )
 
 
 def _no_such_key(key: str, keys: Sequence[str]) -> str:
@@ -215,93 +200,11 @@ def _workers(jobs: int) -> Iterator[Callable[..., Iterator[Made | FailedBuild]]]
     if jobs <= 1:
         yield map
         return
-    with ProcessPoolExecutor(jobs, mp_context=get_context("spawn")) as pool:
-        yield pool.map
-
-
-def make_build(task: Task, folder: BuildFolder) -> Made | FailedBuild:
-    """One build from its folder to its pages; any failure is that build's alone."""
     try:
-        build = read_build(task.runs, folder)
-        try:
-            result = measure_build(build, task.runs.bench, task.runs.bands)
-        except NotMeasurable as error:
-            raise InputRejected((*build.findings, _not_measurable(error))) from error
-        return _made(task, folder, result)
-    except InputRejected as rejected:
-        return FailedBuild(key=folder.key, folder=folder.folder, findings=rejected.findings)
-    except OutputError:
-        raise
-    except (ReportError, ArithmeticError, ValueError, LookupError, TypeError, OSError) as error:
-        fault = _fault(error)
-        return FailedBuild(key=folder.key, folder=folder.folder, findings=(fault,))
-
-
-def _made(task: Task, folder: BuildFolder, result: BuildResult) -> Made:
-    baseline = task.baseline
-    if baseline is not None and baseline.build.key == folder.key:
-        baseline = None
-    comparison = None if baseline is None else compare(result, baseline)
-    made = Made(result=result, comparison=comparison)
-    if task.out is None or (task.only and folder.key not in task.only):
-        return made
-    files = _files(task, made, baseline)
-    place_build(task.out, folder.key, files)
-    outputs = tuple(output_file(f"{folder.key}/{name}", data) for name, data in files.items())
-    return replace(made, outputs=outputs)
-
-
-def _files(task: Task, made: Made, baseline: BuildResult | None) -> dict[str, bytes]:
-    """Contents of everything that is published of one build."""
-    from reportgen.output.csv_tables import bands_csv, curves_csv
-    from reportgen.output.documents import json_bytes, results_document
-    from reportgen.pages.report import render_report_html, render_report_pdf
-
-    result, comparison = made.result, made.comparison
-    document = results_document(result, comparison, program_version=__version__)
-    html = render_report_html(
-        result,
-        comparison=comparison,
-        baseline=baseline,
-        bench=task.runs.bench,
-        program_version=__version__,
-    )
-    pdf = render_report_pdf(
-        result,
-        comparison=comparison,
-        baseline=baseline,
-        bench=task.runs.bench,
-        program_version=__version__,
-    )
-    return {
-        "report.html": html.encode("utf-8"),
-        "report.pdf": pdf,
-        "results.json": json_bytes(document),
-        "bands.csv": bands_csv(result),
-        "curves.csv": curves_csv(result.chosen.curves, result.power_w),
-    }
-
-
-def _not_measurable(error: NotMeasurable) -> Finding:
-    return Finding(
-        severity=Severity.ERROR,
-        code="not-measurable",
-        file="build.toml",
-        message=str(error),
-        remedy="add the sweep that is missing; the README lists what each set-up gives",
-    )
-
-
-def _fault(error: Exception) -> Finding:
-    """An error that nobody foresaw, told without a traceback."""
-    frame = traceback.extract_tb(error.__traceback__)[-1]
-    return Finding(
-        severity=Severity.ERROR,
-        code="fault",
-        message=f"a fault of this program: {type(error).__name__} in {Path(frame.filename).name}, "
-        f"line {frame.lineno}: {str(error)[:80]}",
-        remedy="please report it with this folder; the other builds are not touched",
-    )
+        with ProcessPoolExecutor(jobs, mp_context=get_context("spawn")) as pool:
+            yield pool.map
+    except BrokenProcessPool as error:
+        raise OutputError("a worker was ended from outside; try again with --jobs 1") from error
 
 
 # --- index -----------------------------------------------------------------------------------
@@ -319,7 +222,7 @@ def _place_index(
     from reportgen.output.documents import json_bytes
     from reportgen.pages.index import render_index_html
 
-    rows = [(one.result, one.comparison) for one in outcome.made]
+    rows = [(one.result, one.comparison) for one in outcome.made if _stands(out, one)]
     records = _records(outcome, earlier)
     kept = {output.file for record in records for output in record.outputs}
     remove_files(
@@ -343,8 +246,13 @@ def _place_index(
         outputs=[output_file("results.csv", table), output_file("index.html", index)],
     )
     place_file(out, "results.csv", table)
-    place_file(out, MANIFEST, json_bytes(manifest))
+    place_file(out, MANIFEST_FILE, json_bytes(manifest))
     place_file(out, "index.html", index)
+
+
+def _stands(out: Path, one: Made) -> bool:
+    """Whether a build has a page: of this run, or of an earlier one where it was passed over."""
+    return bool(one.outputs) or (out / one.result.build.key / "report.html").is_file()
 
 
 def _records(outcome: Outcome, earlier: dict[str, BuildRecord]) -> list[BuildRecord]:

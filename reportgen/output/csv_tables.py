@@ -7,11 +7,10 @@ from collections.abc import Iterable, Sequence
 import pandas as pd
 
 from reportgen.model import BandResult, BuildResult, Comparison, Curves, MeasuredBand
-from reportgen.output.documents import band_status
+from reportgen.output.documents import OF_A_FIGURE, band_status
 from reportgen.physics.quantities import QUANTITIES
 
 _FORMULA_STARTS = ("=", "+", "-", "@", "\t", "\r")
-_OF_A_FIGURE = ("mean", "worst", "centre", "worst_at_hz", "low95", "high95")
 
 
 def bands_csv(result: BuildResult) -> bytes:
@@ -98,7 +97,7 @@ def _method_rows(
             **_band_columns(band),
         }
         for key, figure in figures.items():
-            values = {name: getattr(figure, name) for name in _OF_A_FIGURE}
+            values = {name: getattr(figure, name) for name in OF_A_FIGURE}
             yield {**named, "quantity": key, **values}
         if not figures:
             yield named

@@ -27,7 +27,10 @@ SIGNIFICANT_DIGITS = 9
 
 Document = dict[str, Any]
 
-_OF_A_FIGURE = ("mean", "worst", "centre", "worst_at_hz", "low95", "high95")
+OF_A_FIGURE = (
+    "mean", "worst", "centre", "worst_at_hz", "low95", "high95", "worst_low95", "worst_high95"
+)  # fmt: skip
+"""Names of the numbers of a `Figure`, as they are published."""
 
 
 def results_document(
@@ -102,7 +105,7 @@ def _figures(figures: dict[str, Figure]) -> Document:
 
 
 def _figure(figure: Figure | None) -> Document | None:
-    return None if figure is None else {name: getattr(figure, name) for name in _OF_A_FIGURE}
+    return None if figure is None else {name: getattr(figure, name) for name in OF_A_FIGURE}
 
 
 def _bandwidth(one: Bandwidth) -> Document:

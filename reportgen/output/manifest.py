@@ -11,7 +11,7 @@ from typing import Any
 
 from reportgen.model import InputFile
 
-FILE = "manifest.json"
+MANIFEST_FILE = "manifest.json"
 SCHEMA = 1
 
 
@@ -78,7 +78,7 @@ def _output(one: OutputFile) -> dict[str, Any]:
 def read_earlier(out: Path) -> dict[str, BuildRecord]:
     """Build records of the run before, by key; none where there was none or it is not readable."""
     try:
-        document = json.loads((out / FILE).read_bytes())
+        document = json.loads((out / MANIFEST_FILE).read_bytes())
         records = [_record(entry) for entry in document["builds"]]
     except (OSError, ValueError, KeyError, TypeError, RecursionError):
         return {}

@@ -5,7 +5,7 @@ from __future__ import annotations
 import fcntl
 import os
 import shutil
-from collections.abc import Iterator, Mapping
+from collections.abc import Collection, Iterator, Mapping
 from contextlib import contextmanager
 from pathlib import Path
 
@@ -27,12 +27,18 @@ def open_output(out: Path) -> Iterator[None]:
     OutputError
         It cannot be written, holds something else, or another run is writing it.
     """
-    try:
+    with _translated(out):
         _claim(out)
         with (out / OUTPUT_MARKER).open("r+", encoding="utf-8") as marker:
             _lock(marker.fileno(), out)
             _mend(out)
             yield
+
+
+@contextmanager
+def _translated(out: Path) -> Iterator[None]:
+    try:
+        yield
     except OSError as error:
         raise OutputError(f"{out}: {error.strerror or error}; nothing more was written") from error
 
@@ -63,7 +69,7 @@ def _mend(out: Path) -> None:
     for old in sorted(out.glob(f"{_OLD}*")):
         standing = out / old.name.removeprefix(_OLD)
         if standing.exists():
-            shutil.rmtree(old)
+            _remove(old)
         else:
             old.rename(standing)
     for new in sorted(out.glob(f"{_NEW}*")):
@@ -71,13 +77,15 @@ def _mend(out: Path) -> None:
 
 
 def _remove(path: Path) -> None:
-    if path.is_dir():
+    if path.is_dir() and not path.is_symlink():
         shutil.rmtree(path)
     else:
         path.unlink()
 
 
-def place_build(out: Path, key: str, files: Mapping[str, bytes]) -> None:
+def place_build(
+    out: Path, key: str, files: Mapping[str, bytes], earlier: Collection[str] = ()
+) -> None:
     """One build's pages in one move; the earlier ones stand until then.
 
     Parameters
@@ -88,18 +96,38 @@ def place_build(out: Path, key: str, files: Mapping[str, bytes]) -> None:
         The build's key, the name of its folder.
     files : mapping of str to bytes
         File names and contents.
+    earlier : collection of str, optional
+        File names that an earlier run wrote there; whatever else lies there stays.
+
+    Raises
+    ------
+    OutputError
+        The folder cannot be written, or its name is taken by something that is no folder.
     """
     new, old, standing = out / f"{_NEW}{key}", out / f"{_OLD}{key}", out / key
-    if new.exists():
-        _remove(new)
-    new.mkdir()
-    for name, data in files.items():
-        _write(new / name, data)
-    if standing.exists():
-        standing.rename(old)
-    new.rename(standing)
-    if old.exists():
-        shutil.rmtree(old)
+    if standing.is_symlink() or standing.is_file():
+        raise OutputError(f"{standing} is in the way; move it, or choose another --out")
+    with _translated(out):
+        new.mkdir()
+        for name, data in files.items():
+            _write(new / name, data)
+        if standing.exists():
+            _copy_others(standing, new, {*files, *earlier})
+            standing.rename(old)
+        new.rename(standing)
+        if old.exists():
+            shutil.rmtree(old)
+
+
+def _copy_others(standing: Path, new: Path, ours: Collection[str]) -> None:
+    """What somebody else has put beside the pages goes along."""
+    for path in standing.iterdir():
+        if path.name in ours:
+            continue
+        if path.is_dir() and not path.is_symlink():
+            shutil.copytree(path, new / path.name, symlinks=True)
+        else:
+            shutil.copy2(path, new / path.name, follow_symlinks=False)
 
 
 def place_file(out: Path, name: str, data: bytes) -> None:

@@ -30,7 +30,7 @@ FIT_FROM_HZ = 3e6
 FIT_BOUND_PF = 25.0
 """Largest stray that the fit believes, either way [pF]."""
 
-_ITERATIONS = 12
+_ITERATIONS = 6
 
 
 @dataclass(frozen=True, slots=True, eq=False)

@@ -90,6 +90,8 @@ class Drawn(Seen):
         self.calibrations, self.owner, self.draws = calibrations, owner, draws
         self.contributions = contributions
         self._circuits: dict[int, Circuit] = {}
+        self._sweeps: dict[tuple[str, bytes], Scattering] = {}
+        self._ports: dict[tuple[object, ...], PortResiduals] = {}
 
     # --- sweeps ----------------------------------------------------------------------------------
 
@@ -101,7 +103,13 @@ class Drawn(Seen):
         return reflection_corrected(seen, self._port(one, frequency_hz, 1))
 
     def two_port(self, one: Measurement, frequency_hz: RealArray) -> Scattering:
-        """Draws of a two-port sweep."""
+        """Draws of a two-port sweep; the same ones each time they are asked for."""
+        key = (one.sweep.sha256, frequency_hz.tobytes())
+        if key not in self._sweeps:
+            self._sweeps[key] = self._two_port(one, frequency_hz)
+        return self._sweeps[key]
+
+    def _two_port(self, one: Measurement, frequency_hz: RealArray) -> Scattering:
         s11 = self._as_connected(one, frequency_hz, 0, 0)
         s21 = self._as_connected(one, frequency_hz, 1, 0)
         forward = self._port(one, frequency_hz, 1)
@@ -158,6 +166,12 @@ class Drawn(Seen):
 
     def _port(self, one: Measurement, frequency_hz: RealArray, port: int) -> PortResiduals:
         """The residuals of one direction, the same for every sweep of a calibration."""
+        key = (self._name(one), one.sweep.one_path, port, frequency_hz.tobytes())
+        if key not in self._ports:
+            self._ports[key] = self._drawn_port(one, frequency_hz, port)
+        return self._ports[key]
+
+    def _drawn_port(self, one: Measurement, frequency_hz: RealArray, port: int) -> PortResiduals:
         limits, name = self._limits(one), self._name(one)
         match_db = limits.one_path_load_match_db if one.sweep.one_path else limits.load_match_db
 

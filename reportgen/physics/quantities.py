@@ -42,9 +42,9 @@ class Quantity:
 
 
 def decibel_loss(ratio: RealArray) -> RealArray:
-    """Loss of a power ratio, positive [dB]; 0 gives inf, a negative ratio nan."""
-    with np.errstate(divide="ignore", invalid="ignore"):
-        return -10 * np.log10(ratio)
+    """Loss of a power ratio, positive [dB]; inf where nothing passes, or less than that."""
+    with np.errstate(divide="ignore"):
+        return np.asarray(-10 * np.log10(np.maximum(ratio, 0)))
 
 
 def swr_of_reflection(reflection_ratio: RealArray) -> RealArray:

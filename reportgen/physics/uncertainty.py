@@ -26,8 +26,8 @@ from reportgen.physics.seen import AS_SWEPT, Seen
 DRAWS = 1000
 """Number of draws."""
 
-_BETWEEN_BANDS = 24
-_POINTS_IN_BAND = 5
+_BETWEEN_BANDS = 16
+_POINTS_IN_BAND = 3
 _LOW, _HIGH = 0.025, 0.975
 
 
@@ -45,7 +45,7 @@ class Spread:
 
 
 def draw_grid(from_hz: float, to_hz: float, bands: Sequence[Band]) -> RealArray:
-    """Where draws are computed: five points for each band and some between [Hz]."""
+    """Where draws are computed: edges and centre of each band, and some points between [Hz]."""
     between = np.geomspace(from_hz, to_hz, _BETWEEN_BANDS)
     inside = [np.linspace(band.from_hz, band.to_hz, _POINTS_IN_BAND) for band in bands]
     marks = np.unique(np.concatenate([*inside, between, [from_hz, to_hz]]))

@@ -25,11 +25,11 @@ from reportgen.physics.network import reflection_of_impedance
 MISFIT_LIMIT = 0.02
 """Largest root mean square of the reflections' misfit with which the circuit is believed."""
 
-_FIT_POINTS = 100
+_FIT_POINTS = 60
 _FIT_TO_HZ = 60e6
 _SIGMA = 2e-3  # what a reflection may be off, all of its points together [ratio]
 _EFFECTIVE_POINTS = 30  # residuals turn slowly with frequency: that many say something new
-_SPLIT_ROUNDS = 6
+_SPLIT_ROUNDS = 4
 
 
 @dataclass(frozen=True, slots=True)

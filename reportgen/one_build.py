@@ -1,0 +1,139 @@
+"""One build, from its folder to its pages: read, measure, compare, draw, render, place.
+
+What is common to a run goes to every build as one `Task`; what a build leaves behind for the
+index is one `Made`.
+"""
+
+from __future__ import annotations
+
+import traceback
+from collections.abc import Mapping
+from dataclasses import dataclass, field, replace
+from pathlib import Path
+
+from reportgen import __version__
+from reportgen.errors import InputRejected, NotMeasurable, OutputError
+from reportgen.intake.builds import BuildFolder, Runs, read_build
+from reportgen.model import BuildResult, Comparison, FailedBuild, Finding, Severity
+from reportgen.output.manifest import BuildRecord, OutputFile, output_file
+from reportgen.output.placing import place_build
+from reportgen.physics.compare import compare
+from reportgen.physics.measure import measure_build
+
+
+@dataclass(frozen=True, kw_only=True, slots=True, eq=False)
+class Task:
+    """What every build of a run needs; `out` None: compute, write nothing.
+
+    `earlier` names what an earlier run wrote, by key.
+    """
+
+    runs: Runs
+    baseline: BuildResult | None = None
+    out: Path | None = None
+    only: tuple[str, ...] = ()
+    earlier: Mapping[str, BuildRecord] = field(default_factory=dict)
+
+
+@dataclass(frozen=True, kw_only=True, slots=True, eq=False)
+class Made:
+    """A build that was computed, and what was written for it."""
+
+    result: BuildResult
+    comparison: Comparison | None
+    outputs: tuple[OutputFile, ...] = ()
+
+
+def make_build(task: Task, folder: BuildFolder) -> Made | FailedBuild:
+    """One build from its folder to its pages; any failure is that build's alone."""
+    try:
+        return _made(task, folder, _measured(task, folder))
+    except InputRejected as rejected:
+        return FailedBuild(key=folder.key, folder=folder.folder, findings=rejected.findings)
+    except OutputError:
+        raise
+    except Exception as error:
+        fault = _fault(error)
+        return FailedBuild(key=folder.key, folder=folder.folder, findings=(fault,))
+
+
+def _measured(task: Task, folder: BuildFolder) -> BuildResult:
+    if task.baseline is not None and task.baseline.build.key == folder.key:
+        return task.baseline
+    build = read_build(task.runs, folder)
+    try:
+        return measure_build(build, task.runs.bench, task.runs.bands)
+    except NotMeasurable as error:
+        raise InputRejected((*build.findings, _not_measurable(error))) from error
+
+
+def _made(task: Task, folder: BuildFolder, result: BuildResult) -> Made:
+    baseline = task.baseline
+    if baseline is not None and baseline.build.key == folder.key:
+        baseline = None
+    comparison = None if baseline is None else compare(result, baseline)
+    made = Made(result=result, comparison=comparison)
+    if task.out is None or (task.only and folder.key not in task.only):
+        return made
+    files = _files(task, made, baseline)
+    place_build(task.out, folder.key, files, _names_of(task.earlier.get(folder.key)))
+    outputs = tuple(output_file(f"{folder.key}/{name}", data) for name, data in files.items())
+    return replace(made, outputs=outputs)
+
+
+def _names_of(record: BuildRecord | None) -> set[str]:
+    """File names that an earlier run wrote for a build."""
+    return set() if record is None else {one.file.rpartition("/")[2] for one in record.outputs}
+
+
+def _files(task: Task, made: Made, baseline: BuildResult | None) -> dict[str, bytes]:
+    """Contents of everything that is published of one build."""
+    from reportgen.output.csv_tables import bands_csv, curves_csv
+    from reportgen.output.documents import json_bytes, results_document
+    from reportgen.pages.report import render_report_html, render_report_pdf
+
+    result, comparison = made.result, made.comparison
+    document = results_document(result, comparison, program_version=__version__)
+    html = render_report_html(
+        result,
+        comparison=comparison,
+        baseline=baseline,
+        bench=task.runs.bench,
+        program_version=__version__,
+    )
+    pdf = render_report_pdf(
+        result,
+        comparison=comparison,
+        baseline=baseline,
+        bench=task.runs.bench,
+        program_version=__version__,
+    )
+    return {
+        "report.html": html.encode("utf-8"),
+        "report.pdf": pdf,
+        "results.json": json_bytes(document),
+        "bands.csv": bands_csv(result),
+        "curves.csv": curves_csv(result.chosen.curves, result.power_w),
+    }
+
+
+def _not_measurable(error: NotMeasurable) -> Finding:
+    return Finding(
+        severity=Severity.ERROR,
+        code="not-measurable",
+        file="build.toml",
+        message=str(error),
+        remedy="add the sweep that is missing; the README lists what each set-up gives",
+    )
+
+
+def _fault(error: Exception) -> Finding:
+    """An error that nobody foresaw, told without a traceback."""
+    frame = traceback.extract_tb(error.__traceback__)[-1]
+    return Finding(
+        severity=Severity.ERROR,
+        code="fault",
+        message=f"a fault of this program: {type(error).__name__} in {Path(frame.filename).name}, "
+        f"line {frame.lineno}: {str(error)[:80]}",
+        remedy="please report it with this folder; the other builds are not touched",
+    )
