@@ -1,6 +1,17 @@
 """Settings common to all tests."""
 
+from collections.abc import Iterator
+
+import pytest
 from hypothesis import settings
 
 settings.register_profile("suite", deadline=None, derandomize=True)
 settings.load_profile("suite")
+
+
+@pytest.fixture(scope="module")
+def few_draws() -> Iterator[None]:
+    """Intervals from few draws: saves most of the time where no interval is checked."""
+    with pytest.MonkeyPatch.context() as patch:
+        patch.setattr("reportgen.physics.measure.DRAWS", 40)
+        yield

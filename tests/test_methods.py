@@ -33,6 +33,8 @@ from reportgen.physics.network import (
     shunt_arm,
 )
 
+pytestmark = pytest.mark.usefixtures("few_draws")
+
 HZ = np.linspace(1.5e6, 30e6, 96)
 BANDS = amateur_bands(2)
 
