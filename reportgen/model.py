@@ -514,6 +514,68 @@ class Fitted:
 
 
 @dataclass(frozen=True, kw_only=True, slots=True)
+class Agreement:
+    """Whether another method says the same as the result, and where it differs most.
+
+    `difference_db` is its heat loss minus the result's in `band`, `u95_db` the difference's own
+    uncertainty. `agrees` None: not comparable, `reason` says why.
+    """
+
+    method: Method
+    unit: str | None
+    agrees: bool | None
+    band: str | None = None
+    difference_db: float | None = None
+    u95_db: float | None = None
+    reason: str | None = None
+
+
+@dataclass(frozen=True, kw_only=True, slots=True)
+class BudgetLine:
+    """What one contribution alone makes of the uncertainty of heat loss, by band [dB]."""
+
+    contribution: str
+    u95_db: dict[str, float]
+
+
+@dataclass(frozen=True, kw_only=True, slots=True)
+class Advice:
+    """A further sweep, and what it would do to the uncertainty of the band it helps most [dB]."""
+
+    sweep: str
+    band: str
+    u95_db: float
+    u95_then_db: float
+
+
+class Judgement(StrEnum):
+    """Whether a figure keeps to a limit; the whole interval has to."""
+
+    PASS = "pass"
+    FAIL = "fail"
+    UNDECIDED = "undecided"
+    NOT_MEASURED = "not measured"
+
+
+@dataclass(frozen=True, kw_only=True, slots=True)
+class LimitResult:
+    """The worst of a quantity in one band against the workshop's limit.
+
+    References
+    ----------
+    JCGM 106:2012, clause 8.3: the uncertainty is the guard band.
+    """
+
+    band: str
+    quantity: str
+    limit: float
+    value: float | None
+    low95: float | None
+    high95: float | None
+    judgement: Judgement
+
+
+@dataclass(frozen=True, kw_only=True, slots=True)
 class BandComparison:
     """This build minus the baseline in one band; None: not comparable, `reason` says why."""
 
@@ -550,3 +612,7 @@ class BuildResult:
     fitted: tuple[Fitted, ...]
     findings: tuple[Finding, ...]
     loss_draws_db: dict[str, RealArray] = field(default_factory=dict)
+    agreements: tuple[Agreement, ...] = ()
+    budget: tuple[BudgetLine, ...] = ()
+    advice: tuple[Advice, ...] = ()
+    limits: tuple[LimitResult, ...] = ()

@@ -1,4 +1,4 @@
-"""How far figures are from the truth on simulated builds: `python tests/accuracy.py [builds]`.
+"""How far figures are from the truth on simulated builds: `python tests/accuracy.py [builds [sweeps ...]]`.
 
 Prints the table of DEVELOPERS.md. A case is the mean heat loss of one amateur band, 160 m to 10 m,
 of one unit or mean of units. Coverage is the share of cases whose 95 % interval holds the truth.
@@ -25,8 +25,11 @@ from simulation.bench import KnownBuild, bench_sheet, known_build
 
 CONDITIONS = {
     "bench": {"grade": "bench"},
+    "bench, with checks": {"grade": "bench", "checks": True},
     "handheld": {"grade": "handheld"},
+    "handheld, with checks": {"grade": "handheld", "checks": True},
     "handheld, one path": {"grade": "handheld", "one_path": True},
+    "handheld, one path, with checks": {"grade": "handheld", "one_path": True, "checks": True},
 }
 LABELS = {
     Method.HALVING: "halving (common practice)",
@@ -115,6 +118,8 @@ def main() -> None:
     print("| sweeps | method | 95 % within | worst | mean | median u95 | held | cases |")
     print("|---|---|---|---|---|---|---|---|")
     for name, condition in CONDITIONS.items():
+        if sys.argv[2:] and name not in sys.argv[2:]:
+            continue
         found = population(builds, everything=True, **condition)
         for method in LABELS:
             if method in found:

@@ -10,9 +10,11 @@ from reportgen.model import (
     BuildResult,
     Comparison,
     MeasuredBand,
+    RealArray,
     Verdict,
 )
 from reportgen.physics.quantities import BY_KEY
+from reportgen.physics.uncertainty import interval
 
 
 def compare(result: BuildResult, baseline: BuildResult) -> Comparison:
@@ -25,14 +27,18 @@ def compare(result: BuildResult, baseline: BuildResult) -> Comparison:
         key=baseline.build.key,
         name=baseline.build.sheet.name,
         bands=tuple(
-            _compare_band(band.band.name, result, band, theirs.get(band.band.name))
+            _compare_band(band.band.name, result, baseline, band, theirs.get(band.band.name))
             for band in result.chosen.bands
         ),
     )
 
 
 def _compare_band(
-    name: str, result: BuildResult, ours: BandResult, theirs: BandResult | None
+    name: str,
+    result: BuildResult,
+    baseline: BuildResult,
+    ours: BandResult,
+    theirs: BandResult | None,
 ) -> BandComparison:
     if not isinstance(ours, MeasuredBand):
         return _without(name, Verdict.NOT_MEASURED, "this build was not measured there")
@@ -46,11 +52,34 @@ def _compare_band(
     if losses[0] is None or losses[1] is None:
         who = "this build" if losses[0] is None else "the baseline"
         return _without(name, Verdict.NOT_COMPARABLE, f"the loss of {who} was not measured")
+    difference_db = losses[0][0] - losses[1][0]
+    u95_db, verdict = _judged(result.loss_draws_db.get(name), baseline.loss_draws_db.get(name))
     return BandComparison(
         band=name,
-        heat_loss_db=losses[0][0] - losses[1][0],
+        heat_loss_db=difference_db,
         heat_w=losses[0][1] - losses[1][1],
+        heat_loss_u95_db=u95_db,
+        verdict=verdict,
     )
+
+
+def _judged(
+    ours_db: RealArray | None, theirs_db: RealArray | None
+) -> tuple[float | None, Verdict | None]:
+    """Half of the difference's 95 % interval [dB], and on which side of zero it lies.
+
+    Draws of one calibration are common to both builds, so what it leaves cancels.
+    """
+    if ours_db is None or theirs_db is None:
+        return None, None
+    difference = ours_db - theirs_db
+    low, high = interval(difference)
+    if low is None or high is None or low <= 0 <= high:
+        verdict = Verdict.SAME
+    else:
+        verdict = Verdict.BETTER if high < 0 else Verdict.WORSE
+    width = None if low is None or high is None else (high - low) / 2
+    return width, verdict
 
 
 def _without(name: str, verdict: Verdict, reason: str) -> BandComparison:

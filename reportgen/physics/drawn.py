@@ -125,15 +125,29 @@ class Drawn(Seen):
     ) -> ComplexArray:
         """One parameter without this sweep's noise, drift and connection."""
         swept = resampled(one.sweep, frequency_hz)[i, j]
+        added, factor = self._of_the_moment(one, frequency_hz, 2 * i + j)
+        return np.asarray((swept - added) / factor)
+
+    def as_swept_again(
+        self, one: Measurement, shown: ComplexArray, frequency_hz: RealArray, which: int
+    ) -> ComplexArray:
+        """What the analyzer shows, with a sweep's noise, drift and connection on it."""
+        added, factor = self._of_the_moment(one, frequency_hz, which)
+        return np.asarray(shown * factor + added)
+
+    def _of_the_moment(
+        self, one: Measurement, frequency_hz: RealArray, which: int
+    ) -> tuple[ComplexArray, RealArray]:
+        """Draws of what one sweep alone has: noise and drift (K, F), and a gain (K, 1)."""
         limits = self._limits(one)
-        rng = generator("sweep", one.sweep.sha256, i, j)
+        rng = generator("sweep", one.sweep.sha256, which)
         noise = rng.normal(size=(2, self.draws, frequency_hz.size)) / np.sqrt(2)
         level = self._if(Contribution.NOISE, 10 ** (-limits.noise_db / 20))
         drift_db = self._if(Contribution.DRIFT, limits.drift_db, _SILENT_DB)
         connection_db = self._if(Contribution.DRIFT, limits.connection_db)
         drift = disc(rng, self.draws, drift_db, frequency_hz)
-        seen = swept - drift - level * (noise[0] + 1j * noise[1])
-        return np.asarray(seen / gain(rng, self.draws, connection_db))
+        factor = gain(rng, self.draws, connection_db)
+        return np.asarray(drift + level * (noise[0] + 1j * noise[1])), factor
 
     def _unmeasured(
         self, one: Measurement, s11: ComplexArray, frequency_hz: RealArray
@@ -163,6 +177,12 @@ class Drawn(Seen):
 
     def _limits(self, one: Measurement) -> Limits:
         return limits_of(self.calibrations.get(one.entry.calibration or "", Calibration()))
+
+    def ports(
+        self, one: Measurement, frequency_hz: RealArray
+    ) -> tuple[PortResiduals, PortResiduals]:
+        """The residuals that a sweep was taken with, forward and backward."""
+        return self._port(one, frequency_hz, 1), self._port(one, frequency_hz, 2)
 
     def _port(self, one: Measurement, frequency_hz: RealArray, port: int) -> PortResiduals:
         """The residuals of one direction, the same for every sweep of a calibration."""

@@ -19,6 +19,7 @@ from reportgen.model import (
     Fitted,
     Limits,
     MeasuredBand,
+    Measurement,
     Method,
     MethodResult,
     RealArray,
@@ -27,13 +28,14 @@ from reportgen.model import (
 )
 from reportgen.physics.bands import in_bands
 from reportgen.physics.bandwidths import find_bandwidths
+from reportgen.physics.checks import CHECKS, conditioned, corrected, find_checks
 from reportgen.physics.drawn import Drawn
 from reportgen.physics.grid import common_grid
 from reportgen.physics.loads import find_load_sweeps, load_findings, one_unit_only
 from reportgen.physics.methods import NOT_DETERMINED_PF, Computed, Plan
 from reportgen.physics.plans import find_plans, not_measurable
 from reportgen.physics.quantities import BY_KEY
-from reportgen.physics.seen import AS_SWEPT, Seen
+from reportgen.physics.seen import AS_SWEPT
 from reportgen.physics.uncertainty import (
     DRAWS,
     RATIOS,
@@ -69,6 +71,7 @@ USED_SETUPS = (
     Setup.SHORT,
     Setup.SERIES_RESISTOR,
     Setup.DIRECT,
+    *CHECKS,
 )
 
 
@@ -135,16 +138,17 @@ def _touched(build: Build, known: Sequence[Band]) -> tuple[Band, ...]:
 
 
 def _solve_all(
-    build: Build, bands: Sequence[Band], power_w: float, drawn: Seen
+    build: Build, bands: Sequence[Band], power_w: float, drawn: Drawn
 ) -> tuple[list[Solved], tuple[Finding, ...]]:
     """All methods that the sweeps allow, and what was found on the way."""
     plans, found = find_plans(build)
+    checks = find_checks(build.measurements)
     solved: list[Solved] = []
     findings = list(found)
     for plan in plans:
         findings += plan.findings
         try:
-            one = _solve(plan, bands, power_w, drawn)
+            one = _solve(plan, bands, power_w, drawn, checks)
         except NotMeasurable as error:
             findings.append(not_measurable(plan.sweeps[0].file, error))
             continue
@@ -153,12 +157,20 @@ def _solve_all(
     return solved, tuple(findings)
 
 
-def _solve(plan: Plan, bands: Sequence[Band], power_w: float, drawn: Seen) -> Solved:
+def _solve(
+    plan: Plan,
+    bands: Sequence[Band],
+    power_w: float,
+    drawn: Drawn,
+    checks: Sequence[Measurement],
+) -> Solved:
     grid = common_grid(plan.sweeps, bands)
     computed = plan.compute(grid.frequency_hz, AS_SWEPT)
     curves = curves_of(computed, grid.frequency_hz, grid.native)
     hz = grid.frequency_hz
     spread = spread_of(plan, draw_grid(hz[0], hz[-1], bands), drawn)
+    spread = conditioned(spread, checks, drawn)
+    curves = corrected(curves, spread)
     result = MethodResult(
         method=plan.method,
         unit=plan.unit,

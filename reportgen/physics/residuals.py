@@ -148,6 +148,24 @@ def two_port_corrected(
     )
 
 
+def seen_through(true: Scattering, forward: PortResiduals, backward: PortResiduals) -> Scattering:
+    """What the analyzer shows of a two-port [ratio]; the 12-term model [2]_."""
+    s11, s21 = _seen_from(forward, true)
+    s22, s12 = _seen_from(backward, true.reversed())
+    return Scattering(s11, s12, s21, s22)
+
+
+def _seen_from(port: PortResiduals, s: Scattering) -> tuple[ComplexArray, ComplexArray]:
+    determinant = s.s11 * s.s22 - s.s12 * s.s21
+    below = 1 - port.source_match * s.s11 - port.load_match * s.s22
+    below = below + port.source_match * port.load_match * determinant
+    reflected = (s.s11 - port.load_match * determinant) / below
+    return (
+        np.asarray(port.directivity + port.reflection_tracking * reflected),
+        np.asarray(port.isolation + port.transmission_tracking * s.s21 / below),
+    )
+
+
 def one_path_corrected(
     s11: ComplexArray, s21: ComplexArray, port: PortResiduals, s22: ComplexArray
 ) -> Scattering:

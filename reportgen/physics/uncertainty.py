@@ -36,12 +36,14 @@ class Spread:
     """What draws of the inputs do to the curves of a method.
 
     `seen` holds curves of (F,) without draws, `drawn` of (K, F), at the same few frequencies;
-    `strays` the loads' strays as fitted to the draws, (K,).
+    `strays` the loads' strays as fitted to the draws, (K,); `shift` what check sweeps added to
+    each curve of `seen`, (F,).
     """
 
     seen: Curves
     drawn: Curves
     strays: Mapping[str, StrayFit] = field(default_factory=dict)
+    shift: Mapping[str, RealArray] = field(default_factory=dict)
 
 
 def draw_grid(from_hz: float, to_hz: float, bands: Sequence[Band]) -> RealArray:

@@ -1,4 +1,4 @@
-"""A build on the workbench: simulated units swept by a simulated analyzer, as the program gets it."""
+"""A build on the workbench: simulated units, swept by a simulated analyzer."""
 
 from __future__ import annotations
 
@@ -98,10 +98,12 @@ def known_build(
     loads: bool = True,
     stray_pf: float | None = None,
     everything: bool = False,
+    checks: bool = False,
 ) -> KnownBuild:
     """A random build of unequal units: their pair and, if asked for, both with a load.
 
-    `everything` adds three pairs, open and short, the series resistor and straight-through sweeps.
+    `everything` adds three pairs, open and short, the series resistor and straight-through sweeps,
+    `checks` a thru and the bare series resistor.
     The capacitor is off by its tolerance, the load by half a percent, its stray is 3 to 5 pF.
     """
     design = random_unit(rng)
@@ -130,6 +132,8 @@ def known_build(
         bench.sweep_terminations("A")
         bench.sweep_series("A", resistor_ohm(true_ohm, body_f, SWEPT_HZ), stray_f, load)
         bench.sweep_direct("A")
+    if checks:
+        bench.sweep_checks(resistor_ohm(true_ohm, body_f, SWEPT_HZ), load)
     tolerance = 1 + 0.05 * rng.uniform(-1, 1)
     sheet = BuildSheet(
         name="Simulated",
@@ -187,6 +191,14 @@ class _Bench:
             file=f"{name}-direct.s2p".lower(), setup=Setup.DIRECT, unit=name, calibration="cal"
         )
         self._two_port(entry, self.chains[name])
+
+    def sweep_checks(self, resistor: np.ndarray, load: Load) -> None:
+        thru = SweepEntry(file="thru.s2p", setup=Setup.THRU_CHECK, calibration="cal")
+        bare = SweepEntry(
+            file="resistor.s2p", setup=Setup.RESISTOR_CHECK, load="main", calibration="cal"
+        )
+        self._two_port(thru, series_arm(0 * resistor))
+        self._two_port(bare, series_arm(resistor), load)
 
     def _two_port(self, entry: SweepEntry, chain: Chain, load: Load | None = None) -> None:
         s = matrix_of(self.analyzer.sweep_two_port(chain))
