@@ -104,11 +104,15 @@ def _method_rows(
 
 
 def _csv(table: pd.DataFrame) -> bytes:
-    """UTF-8 with plain line ends; text that a spreadsheet would run is put in front of a quote."""
+    """UTF-8 with plain line ends; text that a spreadsheet would run is put behind a quote."""
     safe = table.apply(lambda column: column.map(_harmless))
     text: str = safe.to_csv(index=False, float_format="%.9g", lineterminator="\n")
     return text.encode("utf-8", errors="backslashreplace")
 
 
 def _harmless(value: object) -> object:
-    return f"'{value}" if isinstance(value, str) and value.startswith(_FORMULA_STARTS) else value
+    """Text in one line, a quote in front where it would start a formula; numbers as they are."""
+    if not isinstance(value, str):
+        return value
+    guarded = f"'{value}" if value.startswith(_FORMULA_STARTS) else value
+    return guarded.replace("\r", " ").replace("\n", " ")
