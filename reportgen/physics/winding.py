@@ -188,7 +188,7 @@ def fit_circuit(halved: Halved, frame: Frame, frequency_hz: RealArray) -> Circui
 
     Notes
     -----
-    Least squares of both reflections re 50 ohm over at most 100 points, together with what is
+    Least squares of both reflections re 50 ohm over at most 60 points, together with what is
     expected of each parameter beforehand.
     """
     from scipy.optimize import least_squares  # slow to import, and only here
