@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+from dataclasses import replace
+
 import numpy as np
 import pytest
 from hypothesis import given
@@ -79,6 +81,51 @@ def test_each_against_the_other_mirrors(one, other):
     back = by_band(result_of(other), result_of(one))["40 m"]
     assert forth.heat_loss_db == pytest.approx(-back.heat_loss_db, abs=1e-12)
     assert forth.heat_w == pytest.approx(-back.heat_w, abs=1e-9)
+
+
+# --- verdicts ------------------------------------------------------------------------------------
+
+
+def judged(ours_db: np.ndarray, theirs_db: np.ndarray) -> BandComparison:
+    ours, theirs = (
+        replace(result_of(10 ** (-float(np.median(draws)) / 10)), loss_draws_db={"40 m": draws})
+        for draws in (ours_db, theirs_db)
+    )
+    return by_band(ours, theirs)["40 m"]
+
+
+DRAWS_DB = np.random.default_rng(1).normal(0.5, 0.1, 4000)
+OTHER_DB = np.random.default_rng(2).normal(0.5, 0.1, 4000)
+
+
+def test_a_build_against_itself_is_the_same_with_nothing_in_doubt():
+    one = judged(DRAWS_DB, DRAWS_DB)
+    assert (one.verdict, one.heat_loss_db, one.heat_loss_u95_db) == (Verdict.SAME, 0, 0)
+
+
+@pytest.mark.parametrize(
+    ("more_db", "verdict"),
+    [(0.3, Verdict.WORSE), (0.25, Verdict.SAME), (-0.25, Verdict.SAME), (-0.3, Verdict.BETTER)],
+)
+def test_verdict_where_the_interval_of_the_difference_leaves_zero(more_db, verdict):
+    """Two independent losses, 0.1 dB each: the difference is known to 1.96 sqrt(2) 0.1 = 0.277."""
+    one = judged(OTHER_DB + more_db, DRAWS_DB)
+    assert one.verdict is verdict
+    assert one.heat_loss_u95_db == pytest.approx(0.277, rel=0.04)
+
+
+def test_what_both_builds_share_does_not_hide_a_difference():
+    """Common draws cancel: 0.02 dB between two losses of 0.1 dB each."""
+    assert judged(DRAWS_DB + 0.02, DRAWS_DB).verdict is Verdict.WORSE
+    assert judged(DRAWS_DB, DRAWS_DB + 0.02).verdict is Verdict.BETTER
+
+
+def test_without_draws_there_is_no_verdict():
+    one = by_band(result_of(0.9), result_of(0.8))["40 m"]
+    assert (one.verdict, one.heat_loss_u95_db) == (None, None)
+
+
+# --- reasons -------------------------------------------------------------------------------------
 
 
 def without(one: BandComparison) -> tuple[Verdict | None, str | None]:
