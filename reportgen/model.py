@@ -515,14 +515,15 @@ class Fitted:
 
 @dataclass(frozen=True, kw_only=True, slots=True)
 class Agreement:
-    """Whether another method says the same as the result, and where it differs most.
+    """Whether a method says the same as the best one for its units, and where it differs most.
 
-    `difference_db` is its heat loss minus the result's in `band`, `u95_db` the difference's own
-    uncertainty. `agrees` None: not comparable, `reason` says why.
+    `difference_db` is its heat loss minus that of `against` in `band`, `u95_db` the difference's
+    own uncertainty. `agrees` None: not comparable, `reason` says why.
     """
 
     method: Method
     unit: str | None
+    against: Method
     agrees: bool | None
     band: str | None = None
     difference_db: float | None = None

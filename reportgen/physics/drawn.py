@@ -32,7 +32,7 @@ from reportgen.physics.residuals import (
     two_port_corrected,
 )
 from reportgen.physics.seen import Seen, View
-from reportgen.physics.winding import SPREAD, Circuit, moved
+from reportgen.physics.winding import SPREAD, Circuit, refitted
 
 
 class Contribution(StrEnum):
@@ -58,7 +58,7 @@ UNMEASURED_RATIO = 0.02
 STATED_STRAY_F = 0.3e-12
 """Standard deviation of a stray capacitance that the sidecar states [F]."""
 
-CLOSING_RATIO = 0.0015
+CLOSING_RATIO = 0.0025
 """By what the closing of a half may be off at 10 MHz, as a standard deviation [ratio]."""
 
 _SILENT_DB = 400.0
@@ -246,9 +246,8 @@ class Drawn(Seen):
             rng = generator("circuit", self.owner, circuit.parameters.tobytes())
             expected = rng.normal(size=(self.draws, SPREAD.size))
             expected = self._if(Contribution.CLOSING, 1.0) * expected
-            seen, _ = view(circuit.points_hz, Seen())
             drawn, _ = view(circuit.points_hz, self)
-            self._circuits[id(circuit)] = moved(circuit, seen, drawn, expected)
+            self._circuits[id(circuit)] = refitted(circuit, drawn, expected)
         return self._circuits[id(circuit)]
 
     def closing_ratio(self, circuit: Circuit, frequency_hz: RealArray) -> ComplexArray:

@@ -39,6 +39,11 @@ class LoadSweeps:
     measurements: tuple[Measurement, ...]
     series: bool = False
 
+    @property
+    def stray_key(self) -> str:
+        """What tells its stray from others: the same resistor sits elsewhere in series."""
+        return f"{self.name}, in series" if self.series else self.name
+
     def reflection(self, frequency_hz: RealArray, seen: Seen) -> ComplexArray:
         """Mean of the sweeps at frequencies within all of them, (..., F) [ratio]."""
         found = [seen.one_port(one, frequency_hz) for one in self.measurements]
@@ -67,6 +72,14 @@ def resistor_s(sweeps: LoadSweeps, frequency_hz: RealArray, seen: Seen) -> Compl
     omega = 2 * np.pi * frequency_hz
     body_s = conductance_s + 1j * omega * seen.body_f(sweeps.name, sweeps.load)
     return np.asarray(1 / (1 / body_s + ANALYZER_OHM))
+
+
+def load_had_ohm(
+    sweeps: LoadSweeps, stray_f: float | RealArray, frequency_hz: RealArray, seen: Seen
+) -> ComplexArray:
+    """What was really on the high side, a stray of (..., 1) farad included [ohm]."""
+    stray_s = 2j * np.pi * frequency_hz * stray_f
+    return np.asarray(1 / (resistor_s(sweeps, frequency_hz, seen) + stray_s))
 
 
 def load_findings(sweeps: LoadSweeps, fit: StrayFit) -> tuple[Finding, ...]:

@@ -3,66 +3,35 @@
 from __future__ import annotations
 
 from collections.abc import Sequence
-from dataclasses import dataclass, replace
-
-import numpy as np
+from typing import TypedDict
 
 from reportgen.errors import NotMeasurable
 from reportgen.model import (
+    Advice,
     Band,
-    BandResult,
     BenchSheet,
+    BudgetLine,
     Build,
     BuildResult,
-    Curves,
     Finding,
     Fitted,
     Limits,
-    MeasuredBand,
-    Measurement,
     Method,
     MethodResult,
-    RealArray,
     Setup,
     Severity,
 )
-from reportgen.physics.bands import in_bands
+from reportgen.physics.agree import find_agreements
 from reportgen.physics.bandwidths import find_bandwidths
-from reportgen.physics.checks import CHECKS, conditioned, corrected, find_checks
+from reportgen.physics.budget import Question, find_advice, find_budget
+from reportgen.physics.checks import CHECKS
+from reportgen.physics.choose import chosen_of, rank
 from reportgen.physics.drawn import Drawn
-from reportgen.physics.grid import common_grid
-from reportgen.physics.loads import find_load_sweeps, load_findings, one_unit_only
-from reportgen.physics.methods import NOT_DETERMINED_PF, Computed, Plan
-from reportgen.physics.plans import find_plans, not_measurable
-from reportgen.physics.quantities import BY_KEY
-from reportgen.physics.seen import AS_SWEPT
-from reportgen.physics.uncertainty import (
-    DRAWS,
-    RATIOS,
-    Spread,
-    curves_of,
-    draw_grid,
-    efficiency_ribbon,
-    half_width,
-    in_range,
-    mean_draws,
-    mean_spread,
-    spread_of,
-    with_intervals,
-)
-
-PREFERENCE = (
-    Method.BISECTION_LOAD,
-    Method.THREE_PAIRS_LOAD,
-    Method.TERMINATIONS,
-    Method.THREE_PAIRS,
-    Method.BISECTION,
-    Method.SERIES_RESISTOR,
-    Method.DIRECT,
-    Method.LOAD_ONLY,
-    Method.HALVING,
-)
-"""Which method is the result where their intervals are equal."""
+from reportgen.physics.judge import judge
+from reportgen.physics.loads import find_load_sweeps
+from reportgen.physics.methods import NOT_DETERMINED_PF
+from reportgen.physics.solve import Solved, bands_with_loss, loss_draws_db, solve_all
+from reportgen.physics.uncertainty import DRAWS, half_width
 
 USED_SETUPS = (
     Setup.BACK_TO_BACK,
@@ -73,16 +42,6 @@ USED_SETUPS = (
     Setup.DIRECT,
     *CHECKS,
 )
-
-
-@dataclass(frozen=True, kw_only=True, slots=True, eq=False)
-class Solved:
-    """A plan carried out: its figures, what draws do to them, and what it computed on the way."""
-
-    plan: Plan
-    result: MethodResult
-    spread: Spread
-    computed: Computed
 
 
 def measure_build(build: Build, bench: BenchSheet, known: Sequence[Band]) -> BuildResult:
@@ -105,10 +64,11 @@ def measure_build(build: Build, bench: BenchSheet, known: Sequence[Band]) -> Bui
     bands = known if bench.bands is not None else _touched(build, known)
     power_w = build.sheet.rating.power_w or bench.power_w
     drawn = Drawn(bench.calibrations, build.key, DRAWS)
-    solved, findings = _solve_all(build, bands, power_w, drawn)
+    solved, findings = solve_all(build, bands, power_w, drawn)
     if not solved:
         raise NotMeasurable(_why_nothing(build, findings))
-    chosen, spread = _chosen(solved, bands, power_w)
+    group, chosen, spread = chosen_of(solved, bands, power_w)
+    agreements, doubts = find_agreements(solved, drawn)
     methods = tuple(one.result for one in solved)
     return BuildResult(
         build=build,
@@ -119,8 +79,11 @@ def measure_build(build: Build, bench: BenchSheet, known: Sequence[Band]) -> Bui
         methods=methods,
         bandwidths=find_bandwidths(chosen.curves, bench.limits.get("all", Limits())),
         fitted=_fitted(build, solved),
-        findings=_unique((*build.findings, *findings, *_unused(build))),
-        loss_draws_db=_loss_draws_db(chosen, spread),
+        findings=_unique((*build.findings, *findings, *doubts, *_unused(build))),
+        loss_draws_db=loss_draws_db(chosen, spread),
+        agreements=agreements,
+        limits=judge(chosen.bands, bench),
+        **_budget_and_advice(build, bench, group, chosen),
     )
 
 
@@ -134,62 +97,6 @@ def _touched(build: Build, known: Sequence[Band]) -> tuple[Band, ...]:
     )
 
 
-# --- methods -------------------------------------------------------------------------------------
-
-
-def _solve_all(
-    build: Build, bands: Sequence[Band], power_w: float, drawn: Drawn
-) -> tuple[list[Solved], tuple[Finding, ...]]:
-    """All methods that the sweeps allow, and what was found on the way."""
-    plans, found = find_plans(build)
-    checks = find_checks(build.measurements)
-    solved: list[Solved] = []
-    findings = list(found)
-    for plan in plans:
-        findings += plan.findings
-        try:
-            one = _solve(plan, bands, power_w, drawn, checks)
-        except NotMeasurable as error:
-            findings.append(not_measurable(plan.sweeps[0].file, error))
-            continue
-        solved.append(one)
-        findings += _findings_of_loads(build, one)
-    return solved, tuple(findings)
-
-
-def _solve(
-    plan: Plan,
-    bands: Sequence[Band],
-    power_w: float,
-    drawn: Drawn,
-    checks: Sequence[Measurement],
-) -> Solved:
-    grid = common_grid(plan.sweeps, bands)
-    computed = plan.compute(grid.frequency_hz, AS_SWEPT)
-    curves = curves_of(computed, grid.frequency_hz, grid.native)
-    hz = grid.frequency_hz
-    spread = spread_of(plan, draw_grid(hz[0], hz[-1], bands), drawn)
-    spread = conditioned(spread, checks, drawn)
-    curves = corrected(curves, spread)
-    result = MethodResult(
-        method=plan.method,
-        unit=plan.unit,
-        units=plan.units,
-        load_ohm=plan.load_ohm,
-        curves=_with_ribbon(curves, spread),
-        bands=with_intervals(in_bands(curves, bands, power_w), spread, power_w),
-        reason=plan.reason,
-    )
-    return Solved(plan=plan, result=result, spread=spread, computed=computed)
-
-
-def _with_ribbon(curves: Curves, spread: Spread) -> Curves:
-    ends = efficiency_ribbon(curves, spread)
-    if ends is None:
-        return curves
-    return replace(curves, efficiency_low95=ends[0], efficiency_high95=ends[1])
-
-
 def _why_nothing(build: Build, findings: Sequence[Finding]) -> str:
     if findings:
         return "; ".join(finding.message for finding in findings)
@@ -200,93 +107,34 @@ def _why_nothing(build: Build, findings: Sequence[Finding]) -> str:
     )
 
 
-# --- the result ----------------------------------------------------------------------------------
+# --- beside the result ---------------------------------------------------------------------------
 
 
-def _chosen(
-    solved: Sequence[Solved], bands: Sequence[Band], power_w: float
-) -> tuple[MethodResult, Spread]:
-    """The method with loss in most bands and then the smallest interval; several: their mean."""
-    groups: dict[Method, list[Solved]] = {}
-    for one in solved:
-        groups.setdefault(one.plan.method, []).append(one)
-    means = [_mean_of(group, bands, power_w) for group in groups.values()]
-    return min(means, key=lambda mean: _rank(mean[0]))
+class _Beside(TypedDict):
+    budget: tuple[BudgetLine, ...]
+    advice: tuple[Advice, ...]
 
 
-def _rank(result: MethodResult) -> tuple[int, float, int]:
-    losses = [
-        band.figures["heat_loss_db"]
-        for band in result.bands
-        if isinstance(band, MeasuredBand) and "heat_loss_db" in band.figures
-    ]
-    widths = [
-        figure.high95 - figure.low95
-        for figure in losses
-        if figure.high95 is not None and figure.low95 is not None
-    ]
-    width = float(np.mean(widths)) if widths else float("inf")
-    return -len(losses), round(width, 4), PREFERENCE.index(result.method)
-
-
-def _mean_of(
-    group: Sequence[Solved], bands: Sequence[Band], power_w: float
-) -> tuple[MethodResult, Spread]:
-    """The mean over several pairs or units, on the points of the first that all cover."""
-    first = group[0].result
-    if len(group) == 1:
-        return first, group[0].spread
-    low = max(one.result.curves.frequency_hz[0] for one in group)
-    high = min(one.result.curves.frequency_hz[-1] for one in group)
-    inside = (first.curves.frequency_hz >= low) & (first.curves.frequency_hz <= high)
-    if np.count_nonzero(inside) < 2:
-        return first, group[0].spread
-    hz = first.curves.frequency_hz[inside]
-    parts = {name: _mean_ratio([one.result.curves for one in group], name, hz) for name in RATIOS}
-    curves = Curves(frequency_hz=hz, native=first.curves.native[inside], **parts)
-    spread = mean_spread([one.spread for one in group])
-    result = replace(
-        first,
-        unit=None,
-        units=tuple(dict.fromkeys(unit for one in group for unit in one.result.units)),
-        curves=_with_ribbon(curves, spread),
-        bands=with_intervals(in_bands(curves, bands, power_w), spread, power_w),
+def _budget_and_advice(
+    build: Build, bench: BenchSheet, group: Sequence[Solved], chosen: MethodResult
+) -> _Beside:
+    bands = tuple(bands_with_loss(chosen.bands))
+    if not bands:
+        return {"budget": (), "advice": ()}
+    question = Question(
+        build=build,
+        calibrations=bench.calibrations,
+        plans=tuple(one.plan for one in group),
+        bands=bands,
     )
-    return result, spread
-
-
-def _mean_ratio(parts: Sequence[Curves], name: str, frequency_hz: RealArray) -> RealArray | None:
-    found = [(one.frequency_hz, getattr(one, name)) for one in parts]
-    if any(ratio is None for _, ratio in found):
-        return None
-    return np.asarray(np.mean([np.interp(frequency_hz, hz, ratio) for hz, ratio in found], axis=0))
-
-
-def _loss_draws_db(chosen: MethodResult, spread: Spread) -> dict[str, RealArray]:
-    """Draws of the mean heat loss of each band, for comparisons [dB]."""
-    quantity = BY_KEY["heat_loss_db"]
-    return {
-        band.band.name: mean_draws(
-            quantity, band.figures["heat_loss_db"], spread, in_range(spread, band), 1.0
-        )
-        for band in _with_loss(chosen.bands)
-    }
-
-
-def _with_loss(bands: Sequence[BandResult]) -> list[MeasuredBand]:
-    return [
-        band for band in bands if isinstance(band, MeasuredBand) and "heat_loss_db" in band.figures
-    ]
-
-
-# --- strays and what contradicts the sidecar -----------------------------------------------------
+    return {"budget": find_budget(question), "advice": find_advice(question)}
 
 
 def _fitted(build: Build, solved: Sequence[Solved]) -> tuple[Fitted, ...]:
     """The stray of every load that was to be fitted, by the method that knows it best."""
-    loads = {sweeps.name: sweeps.load for sweeps in find_load_sweeps(build.measurements)}
+    loads = {sweeps.stray_key: sweeps.load for sweeps in find_load_sweeps(build.measurements)}
     found: dict[str, Fitted] = {}
-    for one in sorted(solved, key=lambda one: _rank(one.result)):
+    for one in sorted(solved, key=lambda one: rank(one.result)):
         for name, fit in one.computed.strays.items():
             if loads[name].stray_pf != "fit" or name in found:
                 continue
@@ -299,24 +147,9 @@ def _fitted_stray(name: str, stray_f: float, spread_f: float, one: Solved) -> Fi
     if spread_f > NOT_DETERMINED_PF * 1e-12:
         reason = "not determined: the range swept leaves no trace of a few picofarads in the data"
         return Fitted(quantity="stray_pf", of=of, value=None, reason=reason)
-    drawn = one.spread.strays.get(name)
+    drawn = one.spread.computed.strays.get(name)
     u95 = None if drawn is None else half_width(drawn.stray_f) * 1e12
     return Fitted(quantity="stray_pf", of=of, value=stray_f * 1e12, u95=u95)
-
-
-def _findings_of_loads(build: Build, one: Solved) -> list[Finding]:
-    loads = [
-        sweeps
-        for sweeps in find_load_sweeps(build.measurements)
-        if sweeps.unit in one.plan.units and sweeps.name in one.computed.strays
-    ]
-    first = {sweeps.name: sweeps for sweeps in reversed(loads)}
-    findings = [
-        finding
-        for name, sweeps in first.items()
-        for finding in load_findings(sweeps, one.computed.strays[name])
-    ]
-    return [*findings, *(one_unit_only(one.plan.units, loads) if loads else ())]
 
 
 def _unused(build: Build) -> tuple[Finding, ...]:

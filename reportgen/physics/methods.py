@@ -71,7 +71,8 @@ class Computed:
 class Plan:
     """One method on one set of sweeps.
 
-    `unit` is None for a mean over `units`; `load_ohm` is the load that the figures hold for.
+    `unit` is None for a mean over `units`; `load_ohm` is the load that the figures hold for. Where
+    they hold for what was really on the high side instead, `had` is what was there.
     """
 
     method: Method
@@ -80,6 +81,7 @@ class Plan:
     load_ohm: float
     sweeps: tuple[Sweep, ...]
     compute: Callable[[RealArray, Seen], Computed]
+    had: LoadSweeps | None = None
     reason: str | None = None
     findings: tuple[Finding, ...] = ()
 
@@ -191,7 +193,7 @@ def closed_by_loads(closed: ClosedHalf, loads: Sequence[LoadSweeps], sheet: Buil
         strays = _fit_strays(loads, squared, expected, frequency_hz, seen)
         admittances_s = [
             resistor_s(one, frequency_hz, seen)
-            + 2j * np.pi * frequency_hz * used_stray_f(one, strays[one.name], seen)
+            + 2j * np.pi * frequency_hz * used_stray_f(one, strays[one.stray_key], seen)
             for one in loads
         ]
         mean = np.mean([s * y for s, y in zip(squared, admittances_s, strict=True)], axis=0)
@@ -218,8 +220,8 @@ def _fit_strays(
 ) -> dict[str, StrayFit]:
     """The stray of each load, from the mean over the units swept with it."""
     fits = {}
-    for name in dict.fromkeys(one.name for one in loads):
-        same = [(one, s) for one, s in zip(loads, squared, strict=True) if one.name == name]
+    for name in dict.fromkeys(one.stray_key for one in loads):
+        same = [(one, s) for one, s in zip(loads, squared, strict=True) if one.stray_key == name]
         mean = np.mean([s for _, s in same], axis=0)
         known_s = resistor_s(same[0][0], frequency_hz, seen)
         fits[name] = fit_stray(mean, expected, known_s, frequency_hz)

@@ -7,7 +7,7 @@ from collections.abc import Sequence
 import numpy as np
 
 from reportgen.model import BuildSheet, Measurement, Method, RealArray, Setup
-from reportgen.physics.loads import LoadSweeps
+from reportgen.physics.loads import LoadSweeps, load_had_ohm
 from reportgen.physics.methods import Computed, Plan, computed_of_chain
 from reportgen.physics.network import (
     ANALYZER_OHM,
@@ -15,7 +15,6 @@ from reportgen.physics.network import (
     chain_of_scattering,
     impedance_of_reflection,
     reflection_of_impedance,
-    series_arm,
 )
 from reportgen.physics.seen import Seen
 
@@ -45,44 +44,30 @@ def series_resistor(sweeps: LoadSweeps, sheet: BuildSheet) -> Plan:
 
     Notes
     -----
-    One path: efficiency = |S21|^2 (Re(Zs + 50)/50) / (1 - |S11|^2), into the load that it had.
-    Both paths: M times the inverse of the series arm is the unit, for any load.
+    efficiency = |S21|^2 (Re(Zs + 50)/50) / (1 - |S11|^2), into the load that it had, which is
+    Zs + 50 ohm with whatever stray lies across it; port 2 is matched once the sweep is corrected.
     """
-    one_path = any(one.sweep.one_path for one in sweeps.measurements)
 
-    def two_port(frequency_hz: RealArray, seen: Seen) -> Scattering:
+    def compute(frequency_hz: RealArray, seen: Seen) -> Computed:
         found = [seen.two_port(one, frequency_hz) for one in sweeps.measurements]
-        names = ("s11", "s12", "s21", "s22")
-        return Scattering(*(np.mean([getattr(s, name) for s in found], axis=0) for name in names))
-
-    def resistor_ohm(
-        frequency_hz: RealArray, seen: Seen
-    ) -> np.ndarray[tuple[int, ...], np.dtype[np.complex128]]:
-        omega = 2 * np.pi * frequency_hz
-        conductance_s = 1 / np.asarray(seen.resistance_ohm(sweeps.name, sweeps.load))
-        return np.asarray(1 / (conductance_s + 1j * omega * seen.body_f(sweeps.name, sweeps.load)))
-
-    def with_load_it_had(frequency_hz: RealArray, seen: Seen) -> Computed:
-        s = two_port(frequency_hz, seen)
-        load_ohm = resistor_ohm(frequency_hz, seen) + ANALYZER_OHM
-        entering = 1 - np.abs(s.s11) ** 2
-        gamma = reflection_of_impedance(impedance_of_reflection(s.s11), sheet.match.source_ohm)
+        s11 = np.mean([s.s11 for s in found], axis=0)
+        s21 = np.mean([s.s21 for s in found], axis=0)
+        load_ohm = load_had_ohm(sweeps, 0.0, frequency_hz, seen)
+        entering = 1 - np.abs(s11) ** 2
+        gamma = reflection_of_impedance(impedance_of_reflection(s11), sheet.match.source_ohm)
         return Computed(
-            efficiency_ratio=np.abs(s.s21) ** 2 * load_ohm.real / ANALYZER_OHM / entering,
+            efficiency_ratio=np.abs(s21) ** 2 * load_ohm.real / ANALYZER_OHM / entering,
             reflection_ratio=np.abs(gamma) ** 2,
         )
-
-    def with_nominal_load(frequency_hz: RealArray, seen: Seen) -> Computed:
-        whole = chain_of_scattering(two_port(frequency_hz, seen))
-        return computed_of_chain(whole @ series_arm(-resistor_ohm(frequency_hz, seen)), sheet, None)
 
     return Plan(
         method=Method.SERIES_RESISTOR,
         unit=sweeps.unit,
         units=(sweeps.unit,),
-        load_ohm=sweeps.load.resistance_ohm + ANALYZER_OHM if one_path else sheet.nominal_load_ohm,
+        load_ohm=sweeps.load.resistance_ohm + ANALYZER_OHM,
         sweeps=tuple(one.sweep for one in sweeps.measurements),
-        compute=with_load_it_had if one_path else with_nominal_load,
+        compute=compute,
+        had=sweeps,
     )
 
 

@@ -18,7 +18,6 @@ from numpy.typing import NDArray
 
 from reportgen.model import Band, BandResult, Curves, Figure, MeasuredBand, RealArray
 from reportgen.physics.bands import mean_ratio
-from reportgen.physics.bisection import StrayFit
 from reportgen.physics.methods import Computed, Plan
 from reportgen.physics.quantities import BY_KEY, Better, Quantity
 from reportgen.physics.seen import AS_SWEPT, Seen
@@ -36,13 +35,13 @@ class Spread:
     """What draws of the inputs do to the curves of a method.
 
     `seen` holds curves of (F,) without draws, `drawn` of (K, F), at the same few frequencies;
-    `strays` the loads' strays as fitted to the draws, (K,); `shift` what check sweeps added to
-    each curve of `seen`, (F,).
+    `computed` is all that the plan made of the draws; `shift` what check sweeps added to each
+    curve of `seen`, (F,).
     """
 
     seen: Curves
     drawn: Curves
-    strays: Mapping[str, StrayFit] = field(default_factory=dict)
+    computed: Computed = field(default_factory=Computed)
     shift: Mapping[str, RealArray] = field(default_factory=dict)
 
 
@@ -60,7 +59,7 @@ def spread_of(plan: Plan, frequency_hz: RealArray, drawn: Seen) -> Spread:
     return Spread(
         seen=curves_of(plan.compute(frequency_hz, AS_SWEPT), frequency_hz),
         drawn=curves_of(computed, frequency_hz),
-        strays=computed.strays,
+        computed=computed,
     )
 
 

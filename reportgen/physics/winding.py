@@ -25,11 +25,12 @@ from reportgen.physics.network import reflection_of_impedance
 MISFIT_LIMIT = 0.02
 """Largest root mean square of the reflections' misfit with which the circuit is believed."""
 
-_FIT_POINTS = 60
+_FIT_POINTS = 48
 _FIT_TO_HZ = 60e6
 _SIGMA = 2e-3  # what a reflection may be off, all of its points together [ratio]
 _EFFECTIVE_POINTS = 30  # residuals turn slowly with frequency: that many say something new
 _SPLIT_ROUNDS = 4
+_REFIT_STEPS = 4
 
 
 @dataclass(frozen=True, slots=True)
@@ -228,28 +229,46 @@ def _weighted(off: ComplexArray) -> RealArray:
     return np.concatenate([scaled.real, scaled.imag], axis=-1)
 
 
-def moved(circuit: Circuit, halved: Halved, drawn: Halved, expected: RealArray) -> Circuit:
-    """The circuit as it would be fitted to other data and other expectations, to first order.
+def refitted(circuit: Circuit, drawn: Halved, expected: RealArray) -> Circuit:
+    """The circuit as it is fitted to draws of its half, under other expectations.
 
     Parameters
     ----------
     circuit : Circuit
-        As fitted.
-    halved, drawn : Halved
-        What it was fitted to, and (K, P) draws of it, both at `circuit.points_hz`.
+        As fitted without draws.
+    drawn : Halved
+        (K, P) draws of the half at `circuit.points_hz`.
     expected : (K, 12) array
         By how many of its spreads the expectation of each parameter is moved.
 
     Notes
     -----
-    One Gauss-Newton step from the fit; kept within the bounds of the fit.
+    Gauss-Newton steps with the slope of the fit without draws, halved for a draw where they do not
+    lessen its misfit.
     """
-    before = _reflections(halved.z_open_ohm, halved.z_short_ohm)
-    after = _reflections(drawn.z_open_ohm, drawn.z_short_ohm)
-    change = np.concatenate([_weighted(after - before), expected], axis=-1)
-    parameters = circuit.parameters + change @ circuit.gain.T
+    goal = _reflections(drawn.z_open_ohm, drawn.z_short_ohm)
+
+    def misfit(parameters: RealArray) -> RealArray:
+        arms = arms_of(parameters, circuit.frame, circuit.points_hz)
+        off = _reflections(*open_and_short_ohm(arms)) - goal
+        return np.concatenate([_weighted(off), (parameters - START) / SPREAD - expected], axis=-1)
+
+    parameters = np.broadcast_to(circuit.parameters, expected.shape).copy()
+    left = misfit(parameters)
+    stride = np.ones((len(expected), 1))
+    for _ in range(_REFIT_STEPS):
+        trial = _bounded(parameters - stride * (left @ circuit.gain.T))
+        then = misfit(trial)
+        better = np.sum(then**2, axis=-1, keepdims=True) < np.sum(left**2, axis=-1, keepdims=True)
+        parameters = np.where(better, trial, parameters)
+        left = np.where(better, then, left)
+        stride = np.where(better, stride, stride / 2)
+    return replace(circuit, parameters=parameters)
+
+
+def _bounded(parameters: RealArray) -> RealArray:
     bound = _BOUND_SPREADS * SPREAD
-    return replace(circuit, parameters=np.clip(parameters, START - bound, START + bound))
+    return np.clip(parameters, START - bound, START + bound)
 
 
 def fit_points(frequency_hz: RealArray) -> NDArray[np.intp]:
