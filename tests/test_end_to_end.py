@@ -1,0 +1,110 @@
+"""The example runs from folders to pages: figures as kept, the same bytes from everywhere."""
+
+from __future__ import annotations
+
+import json
+import math
+import os
+import re
+import shutil
+import subprocess
+import sys
+from pathlib import Path
+
+import pytest
+from small_runs import contents
+from write_goldens import EXAMPLE_RUNS, GOLDENS, golden_of
+
+from reportgen.model import OUTPUT_MARKER
+
+KEYS = sorted(path.stem for path in GOLDENS.glob("*.json"))
+OF_A_BUILD = {"report.html", "report.pdf", "results.json", "bands.csv", "curves.csv"}
+TOLERANCE, TOLERANCE_OF_INTERVALS = 1e-4, 5e-3
+FINDING = re.compile(r"  (error|warning|note) +\S.*|[a-z0-9-]+")
+
+
+def in_a_process(
+    runs: Path, out: Path, jobs: int, **environment: str
+) -> subprocess.CompletedProcess:
+    """A run of its own, with every Python warning an error."""
+    command = ["-W", "error", "-m", "reportgen", "publish", str(runs), "--out", str(out)]
+    return subprocess.run(
+        [sys.executable, *command, "--jobs", str(jobs)],
+        env=os.environ | environment,
+        capture_output=True,
+        text=True,
+        check=False,
+    )
+
+
+@pytest.fixture(scope="module")
+def run(tmp_path_factory) -> tuple[subprocess.CompletedProcess, Path]:
+    out = tmp_path_factory.mktemp("first") / "published"
+    return in_a_process(EXAMPLE_RUNS, out, 1, PYTHONHASHSEED="1", TZ="UTC", LC_ALL="C"), out
+
+
+def test_all_published_and_nothing_said_but_findings(run) -> None:
+    done, out = run
+    assert (done.returncode, done.stdout) == (
+        0, f"{len(KEYS)} of {len(KEYS)} builds published; open {out / 'index.html'}\n"
+    )  # fmt: skip
+    assert [line for line in done.stderr.splitlines() if not FINDING.fullmatch(line)] == []
+
+
+def test_files_that_are_published(run) -> None:
+    files = {f"{key}/{name}" for key in KEYS for name in OF_A_BUILD}
+    assert set(contents(run[1])) == files | {
+        OUTPUT_MARKER, "index.html", "results.csv", "manifest.json"
+    }  # fmt: skip
+
+
+@pytest.mark.parametrize("key", KEYS)
+def test_figures_are_those_kept(run, key: str) -> None:
+    found = golden_of(json.loads((run[1] / key / "results.json").read_bytes()))
+    kept = json.loads((GOLDENS / f"{key}.json").read_bytes())
+    assert list(differences(found, kept)) == []
+
+
+def differences(found: object, kept: object, path: str = ""):
+    """Places where two documents differ by more than another machine may make them."""
+    if isinstance(found, dict) and isinstance(kept, dict) and found.keys() == kept.keys():
+        for key in kept:
+            yield from differences(found[key], kept[key], f"{path}.{key}")
+    elif isinstance(found, list) and isinstance(kept, list) and len(found) == len(kept):
+        for place, (one, other) in enumerate(zip(found, kept, strict=True)):
+            yield from differences(one, other, f"{path}[{place}]")
+    elif isinstance(found, int | float) and isinstance(kept, int | float):
+        drawn = "95" in path.rpartition(".")[2]
+        relative = TOLERANCE_OF_INTERVALS if drawn else TOLERANCE
+        if not math.isclose(found, kept, rel_tol=relative, abs_tol=relative):
+            yield f"{path}: {found} is not {kept}"
+    elif found != kept:
+        yield f"{path}: {found!r} is not {kept!r}"
+
+
+def test_the_comparison_of_figures_sees_a_difference() -> None:
+    kept = {"a": [1.0, {"b": "x", "low95": 1.0}], "c": None}
+    assert list(differences(kept, kept)) == []
+    assert list(differences({"a": [1.001, {"b": "x", "low95": 1.001}], "c": None}, kept)) == [
+        ".a[0]: 1.001 is not 1.0"
+    ]
+    assert len(list(differences({"a": [1.0, {"b": "y", "low95": 1.0}], "c": 0.0}, kept))) == 2
+    assert len(list(differences({"a": []}, kept))) == 1
+
+
+def test_same_bytes_from_elsewhere(run, tmp_path: Path) -> None:
+    """Another folder, process, number of workers, hash seed, time zone and language."""
+    shutil.copytree(EXAMPLE_RUNS, tmp_path / "copied here")
+    out = tmp_path / "elsewhere"
+    settings = {"PYTHONHASHSEED": "2", "TZ": "Pacific/Auckland", "LC_ALL": "C.UTF-8"}
+    assert in_a_process(tmp_path / "copied here", out, 2, **settings).returncode == 0
+    first, second = contents(run[1]), contents(out)
+    assert [name for name in first if first[name] != second.get(name)] == []
+    assert first.keys() == second.keys()
+
+
+@pytest.mark.parametrize("name", ["index.html", *(f"{key}/report.html" for key in KEYS)])
+def test_pages_tell_nothing_of_the_machine(run, name: str) -> None:
+    text = (run[1] / name).read_text("utf-8")
+    assert str(EXAMPLE_RUNS.parent) not in text
+    assert not re.search(r"\b(nan|NaN|None|Infinity)\b", re.sub(r"data:[^\"]*", "", text))
