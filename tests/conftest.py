@@ -5,7 +5,7 @@ from collections.abc import Iterator
 import pytest
 from hypothesis import settings
 
-settings.register_profile("suite", deadline=None, derandomize=True)
+settings.register_profile("suite", max_examples=50, deadline=None, derandomize=True)
 settings.load_profile("suite")
 
 
