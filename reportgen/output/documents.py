@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import json
 import math
+from dataclasses import asdict
 from typing import Any
 
 from reportgen.model import (
@@ -18,6 +19,7 @@ from reportgen.model import (
     MeasuredBand,
     MethodResult,
 )
+from reportgen.physics.judge import overall
 from reportgen.physics.quantities import QUANTITIES
 
 SCHEMA = 1
@@ -49,9 +51,11 @@ def results_document(
         "methods": [_method(one) for one in result.methods],
         "bandwidth": [_bandwidth(one) for one in result.bandwidths],
         "fitted": [_fitted(one) for one in result.fitted],
-        "budget": [],
-        "advice": [],
-        "limits": [],
+        "agreements": [asdict(one) for one in result.agreements],
+        "budget": [asdict(one) for one in result.budget],
+        "advice": [asdict(one) for one in result.advice],
+        "limits": [asdict(one) for one in result.limits],
+        "limits_overall": overall(result.limits),
         "lot": None,
         "heat_split": None,
         "stress": None,
