@@ -5,7 +5,6 @@ from __future__ import annotations
 import json
 import math
 from dataclasses import asdict
-from dataclasses import asdict
 from typing import Any
 
 from reportgen.model import (
