@@ -559,6 +559,34 @@ class Judgement(StrEnum):
 
 
 @dataclass(frozen=True, kw_only=True, slots=True)
+class LotBand:
+    """Heat loss of several units of a build in one band [dB]."""
+
+    band: str
+    least_db: float
+    greatest_db: float
+    standard_deviation_db: float
+    worst_unit: str
+
+
+@dataclass(frozen=True, kw_only=True, slots=True)
+class Lot:
+    """How alike the units of a build are: each by its best method."""
+
+    units: tuple[str, ...]
+    bands: tuple[LotBand, ...]
+
+
+@dataclass(frozen=True, kw_only=True, slots=True)
+class Repeatability:
+    """How far sweeps of the same connection made anew differ, root mean square [ratio]."""
+
+    file: str
+    of: str
+    rms_ratio: float
+
+
+@dataclass(frozen=True, kw_only=True, slots=True)
 class LimitResult:
     """The worst of a quantity in one band against the workshop's limit.
 
@@ -617,3 +645,5 @@ class BuildResult:
     budget: tuple[BudgetLine, ...] = ()
     advice: tuple[Advice, ...] = ()
     limits: tuple[LimitResult, ...] = ()
+    lot: Lot | None = None
+    repeatability: tuple[Repeatability, ...] = ()

@@ -17,16 +17,31 @@ from dataclasses import replace
 
 import numpy as np
 
-from reportgen.model import ComplexArray, Curves, Measurement, RealArray, Setup
+from reportgen.model import (
+    ComplexArray,
+    Curves,
+    Finding,
+    Measurement,
+    RealArray,
+    Setup,
+    Severity,
+)
 from reportgen.physics.drawn import Drawn
 from reportgen.physics.grid import resampled
-from reportgen.physics.network import Chain, Scattering, scattering_of_chain, series_arm
+from reportgen.physics.network import (
+    Chain,
+    Scattering,
+    reflection_of_impedance,
+    scattering_of_chain,
+    series_arm,
+)
 from reportgen.physics.residuals import seen_through
 from reportgen.physics.uncertainty import RATIOS, Spread
 
 CHECKS = (Setup.THRU_CHECK, Setup.RESISTOR_CHECK)
 
 _POINTS = 8
+_ALLOWED_EXCESS = 1.5
 _SMALLEST_SHARE = 1e-5  # of the artefact's variance; what is below is noise
 
 
@@ -35,6 +50,36 @@ def find_checks(measurements: Sequence[Measurement]) -> tuple[Measurement, ...]:
     used = {one.entry.calibration for one in measurements if one.entry.setup not in CHECKS}
     return tuple(
         one for one in measurements if one.entry.setup in CHECKS and one.entry.calibration in used
+    )
+
+
+def check_findings(measurements: Sequence[Measurement], drawn: Drawn) -> tuple[Finding, ...]:
+    """Check sweeps that show more than their calibration's limits allow."""
+    return tuple(
+        _contradiction(one, excess)
+        for one in measurements
+        if one.entry.setup in (*CHECKS, Setup.LOAD_CHECK)
+        if (excess := _excess(one, drawn)) > _ALLOWED_EXCESS
+    )
+
+
+def _excess(one: Measurement, drawn: Drawn) -> float:
+    """How far what was seen lies from what is expected, over the furthest of all draws [ratio]."""
+    seen, shown = _seen_and_shown(one, drawn)
+    expected = shown.mean(axis=0)
+    return float(np.max(np.abs(seen - expected) / np.max(np.abs(shown - expected), axis=0)))
+
+
+def _contradiction(one: Measurement, excess: float) -> Finding:
+    calibration = one.entry.calibration or "of this build"
+    return Finding(
+        severity=Severity.WARNING,
+        code="check-contradicts-grade",
+        file=one.sweep.file,
+        message=f"the {one.entry.setup.value} is {excess:.1f} times as far from its true value as "
+        f"the limits of the calibration {calibration} allow",
+        remedy="calibrate again, check the resistor's value, or state larger limits for this "
+        "calibration in runs.toml",
     )
 
 
@@ -95,14 +140,33 @@ def _seen_and_shown(one: Measurement, drawn: Drawn) -> tuple[RealArray, RealArra
     swept_hz = one.sweep.frequency_hz
     hz = np.linspace(swept_hz[0], swept_hz[-1], _POINTS)
     at = resampled(one.sweep, hz)
-    forward, backward = drawn.ports(one, hz)
-    shown = seen_through(_artefact(one, hz, drawn), forward, backward)
-    pairs = [(at[0, 0], shown.s11, 0), (at[1, 0], shown.s21, 1)]
-    if not one.sweep.one_path:
-        pairs += [(at[1, 1], shown.s22, 2), (at[0, 1], shown.s12, 3)]
-    seen = _real(np.concatenate([value for value, _, _ in pairs]))
-    draws = [drawn.as_swept_again(one, value, hz, which) for _, value, which in pairs]
+    pairs = _shown_by_one_port(one, hz, drawn) if one.sweep.ports == 1 else _shown(one, hz, drawn)
+    seen = _real(np.concatenate([at[i, j] for i, j in pairs]))
+    draws = [drawn.as_swept_again(one, shown, hz, 2 * i + j) for (i, j), shown in pairs.items()]
     return seen, _real(np.concatenate(draws, axis=-1))
+
+
+_Shown = dict[tuple[int, int], ComplexArray]
+
+
+def _shown(one: Measurement, frequency_hz: RealArray, drawn: Drawn) -> _Shown:
+    """Each measured parameter of a two-port artefact as the draws show it."""
+    forward, backward = drawn.ports(one, frequency_hz)
+    shown = seen_through(_artefact(one, frequency_hz, drawn), forward, backward)
+    measured: _Shown = {(0, 0): shown.s11, (1, 0): shown.s21}
+    if not one.sweep.one_path:
+        measured |= {(1, 1): shown.s22, (0, 1): shown.s12}
+    return measured
+
+
+def _shown_by_one_port(one: Measurement, frequency_hz: RealArray, drawn: Drawn) -> _Shown:
+    """The reflection of a bare load as the draws show it; its stray is not known."""
+    forward, _ = drawn.ports(one, frequency_hz)
+    assert one.load is not None
+    ohm = drawn.resistance_ohm(one.entry.load or "load", one.load)
+    true = reflection_of_impedance(ohm + 0 * frequency_hz)
+    tracked = forward.reflection_tracking * true / (1 - forward.source_match * true)
+    return {(0, 0): np.asarray(forward.directivity + tracked)}
 
 
 def _artefact(one: Measurement, frequency_hz: RealArray, drawn: Drawn) -> Scattering:

@@ -29,6 +29,7 @@ from reportgen.physics.residuals import (
     limits_of,
     one_path_corrected,
     reflection_corrected,
+    trace_noise_ratio,
     two_port_corrected,
 )
 from reportgen.physics.seen import Seen, View
@@ -142,12 +143,20 @@ class Drawn(Seen):
         limits = self._limits(one)
         rng = generator("sweep", one.sweep.sha256, which)
         noise = rng.normal(size=(2, self.draws, frequency_hz.size)) / np.sqrt(2)
-        level = self._if(Contribution.NOISE, 10 ** (-limits.noise_db / 20))
+        level = self._if(Contribution.NOISE, self._noise_ratio(one, which, limits))
         drift_db = self._if(Contribution.DRIFT, limits.drift_db, _SILENT_DB)
         connection_db = self._if(Contribution.DRIFT, limits.connection_db)
         drift = disc(rng, self.draws, drift_db, frequency_hz)
         factor = gain(rng, self.draws, connection_db)
         return np.asarray(drift + level * (noise[0] + 1j * noise[1])), factor
+
+    def _noise_ratio(self, one: Measurement, which: int, limits: Limits) -> float:
+        """As the sidecar states it, as the trace shows it, or as the grade assumes [ratio]."""
+        calibration = self.calibrations.get(one.entry.calibration or "", Calibration())
+        seen = trace_noise_ratio(one.sweep.s[:, which // 2, which % 2])
+        if calibration.noise_db is not None or seen is None:
+            return float(10 ** (-limits.noise_db / 20))
+        return seen
 
     def _unmeasured(
         self, one: Measurement, s11: ComplexArray, frequency_hz: RealArray

@@ -16,7 +16,6 @@ from reportgen.model import (
     Finding,
     Fitted,
     Limits,
-    Method,
     MethodResult,
     Setup,
     Severity,
@@ -24,11 +23,12 @@ from reportgen.model import (
 from reportgen.physics.agree import find_agreements
 from reportgen.physics.bandwidths import find_bandwidths
 from reportgen.physics.budget import Question, find_advice, find_budget
-from reportgen.physics.checks import CHECKS
+from reportgen.physics.checks import CHECKS, check_findings
 from reportgen.physics.choose import chosen_of, rank
 from reportgen.physics.drawn import Drawn
 from reportgen.physics.judge import judge
 from reportgen.physics.loads import find_load_sweeps
+from reportgen.physics.lots import find_repeatability, lot_of
 from reportgen.physics.methods import NOT_DETERMINED_PF
 from reportgen.physics.solve import Solved, bands_with_loss, loss_draws_db, solve_all
 from reportgen.physics.uncertainty import DRAWS, half_width
@@ -41,6 +41,7 @@ USED_SETUPS = (
     Setup.SERIES_RESISTOR,
     Setup.DIRECT,
     *CHECKS,
+    Setup.LOAD_CHECK,
 )
 
 
@@ -68,21 +69,24 @@ def measure_build(build: Build, bench: BenchSheet, known: Sequence[Band]) -> Bui
     if not solved:
         raise NotMeasurable(_why_nothing(build, findings))
     group, chosen, spread = chosen_of(solved, bands, power_w)
+    units = _units(solved)
     agreements, doubts = find_agreements(solved, drawn)
+    checked = check_findings(build.measurements, drawn)
     methods = tuple(one.result for one in solved)
     return BuildResult(
         build=build,
         power_w=power_w,
         chosen=chosen,
-        units=tuple(one for one in methods if one.unit is not None and one.method is chosen.method)
-        or tuple(one for one in methods if one.method is Method.LOAD_ONLY),
+        units=units,
         methods=methods,
         bandwidths=find_bandwidths(chosen.curves, bench.limits.get("all", Limits())),
         fitted=_fitted(build, solved),
-        findings=_unique((*build.findings, *findings, *doubts, *_unused(build))),
+        findings=_unique((*build.findings, *findings, *doubts, *checked, *_unused(build))),
         loss_draws_db=loss_draws_db(chosen, spread),
         agreements=agreements,
         limits=judge(chosen.bands, bench),
+        lot=lot_of(units),
+        repeatability=find_repeatability(build.measurements),
         **_budget_and_advice(build, bench, group, chosen),
     )
 
@@ -108,6 +112,15 @@ def _why_nothing(build: Build, findings: Sequence[Finding]) -> str:
 
 
 # --- beside the result ---------------------------------------------------------------------------
+
+
+def _units(solved: Sequence[Solved]) -> tuple[MethodResult, ...]:
+    """Each unit by itself, by the method that knows it best."""
+    best: dict[str, MethodResult] = {}
+    for one in sorted((one.result for one in solved), key=rank):
+        if one.unit is not None:
+            best.setdefault(one.unit, one)
+    return tuple(best[unit] for unit in sorted(best))
 
 
 class _Beside(TypedDict):

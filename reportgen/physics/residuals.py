@@ -27,6 +27,8 @@ LONGEST_DELAY_S = 17e-9
 ONE_PATH_LOAD_MATCH_DB = 26.0
 """Match of an uncorrected port 2 when only one path is measured [dB]."""
 
+_FEWEST_FOR_NOISE = 25
+
 
 @dataclass(frozen=True, kw_only=True, slots=True)
 class Limits:
@@ -99,6 +101,23 @@ def disc(
 def gain(rng: np.random.Generator, draws: int, limit_db: float) -> RealArray:
     """(K, 1) factors, uniform in decibels between the limits [ratio]."""
     return np.asarray(10 ** (rng.uniform(-limit_db, limit_db, size=(draws, 1)) / 20))
+
+
+def trace_noise_ratio(swept: ComplexArray) -> float | None:
+    """Noise of a trace from its own fourth differences, in which what is smooth vanishes [ratio].
+
+    None where there are too few points. A standard deviation of the complex value; by the median,
+    so spikes do not count.
+
+    Notes
+    -----
+    The weights 1, -4, 6, -4, 1 give 70 times the variance; the square of a complex Gaussian has
+    its median at ln 2 times its mean.
+    """
+    if swept.size < _FEWEST_FOR_NOISE:
+        return None
+    fourth = np.diff(swept, n=4)
+    return float(np.sqrt(np.median(np.abs(fourth) ** 2) / (70 * np.log(2))))
 
 
 @dataclass(frozen=True, slots=True, eq=False)
