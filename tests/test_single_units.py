@@ -158,20 +158,13 @@ def resistor_ohm() -> ComplexArray:
     return 1 / (1 / RESISTOR_OHM + 1j * OMEGA * BODY_PF * 1e-12)
 
 
-def test_series_resistor_with_both_paths_is_taken_out_exactly(units, sheet):
-    sweep = two_port(Setup.SERIES_RESISTOR, units["A"] @ series_arm(resistor_ohm()))
-    (found,) = methods_of(sheet, [sweep], Method.SERIES_RESISTOR)
-    assert (found.unit, found.load_ohm) == ("A", sheet.nominal_load_ohm)
-    assert off_db(found, units["A"], sheet.nominal_load_ohm) < 1e-6
-
-
-def test_series_resistor_with_one_path_is_exact_for_the_load_it_had(units, sheet):
+@pytest.mark.parametrize("one_path", [True, False])
+def test_series_resistor_is_exact_for_the_load_it_had(units, sheet, one_path):
     """|S21|^2 (Re Zs + 50)/50 / (1 - |S11|^2), port 2 being part of the load."""
     whole = units["A"] @ series_arm(resistor_ohm())
-    (found,) = methods_of(
-        sheet, [two_port(Setup.SERIES_RESISTOR, whole, one_path=True)], Method.SERIES_RESISTOR
-    )
-    assert found.load_ohm == RESISTOR_OHM + 50
+    sweep = two_port(Setup.SERIES_RESISTOR, whole, one_path=one_path)
+    (found,) = methods_of(sheet, [sweep], Method.SERIES_RESISTOR)
+    assert (found.unit, found.load_ohm) == ("A", RESISTOR_OHM + 50)
     assert off_db(found, units["A"], resistor_ohm() + 50) < 1e-6
 
 
