@@ -183,9 +183,7 @@ class _Reading:
         if sweep.ports != PORTS_OF_SETUP[entry.setup]:
             raise InputRejected((_contradiction(entry, sweep.ports, f"{key}.setup"),))
         loads = self.runs.bench.loads | self.sheet.loads
-        return Measurement(
-            entry=entry, sweep=sweep, load=loads[entry.load] if entry.load else None
-        )
+        return Measurement(entry=entry, sweep=sweep, load=loads[entry.load] if entry.load else None)
 
     def take_log(self, entry: ThermalEntry, key: str) -> None:
         """See that a temperature log is there."""

@@ -48,9 +48,7 @@ class Rows:
 NO_ROWS = Rows(np.empty((0, 0)), np.empty(0, dtype=np.int64))
 
 
-def read_rows(
-    lines: SweepLines, remarks: Remarks, *, decimal: str = ".", max_points: int
-) -> Rows:
+def read_rows(lines: SweepLines, remarks: Remarks, *, decimal: str = ".", max_points: int) -> Rows:
     """The table of numbers; empty when an error was remarked."""
     if not lines.data:
         remarks.error(

@@ -148,9 +148,7 @@ def distinct_points(points: Points, remarks: Remarks) -> Points:
     return Points(kept.frequency_hz, network, kept.lines)
 
 
-def _remark_seams(
-    kept: Points, differing: NDArray[np.intp], gap: float, remarks: Remarks
-) -> None:
+def _remark_seams(kept: Points, differing: NDArray[np.intp], gap: float, remarks: Remarks) -> None:
     lines = kept.lines[differing]
     message = (
         f"{len(differing)} of {len(kept)} frequencies stand there more than once with data that "

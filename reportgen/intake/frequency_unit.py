@@ -104,9 +104,7 @@ def _remark_no_unit(
             option.line,
         )
     else:
-        remarks.warn(
-            "unit-missing", message, f"name the unit, as in `{EXAMPLE}`", option.line
-        )
+        remarks.warn("unit-missing", message, f"name the unit, as in `{EXAMPLE}`", option.line)
 
 
 def _remark_implausible_unit(

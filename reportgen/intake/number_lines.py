@@ -198,8 +198,7 @@ def _kind_of_stray(row: NumberLine, decimal: str) -> str:
     tokens = _tokens(text, ",")
     commas = [is_decimal_comma(token) for token in tokens]
     if any(commas) and all(
-        comma or read_number(token) is not None
-        for comma, token in zip(commas, tokens, strict=True)
+        comma or read_number(token) is not None for comma, token in zip(commas, tokens, strict=True)
     ):
         return "decimal-comma" if len(tokens) > 1 else "separator"
     if "," in stray or ";" in stray:

@@ -196,9 +196,7 @@ def _check_parameter(option: Option, remarks: Remarks) -> None:
         )
 
 
-def _compare_with_first(
-    first: Option, others: list[Line], remarks: Remarks, decimal: str
-) -> None:
+def _compare_with_first(first: Option, others: list[Line], remarks: Remarks, decimal: str) -> None:
     alike: set[str] = set()
     for line in others:
         if line.text in alike:
