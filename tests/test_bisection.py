@@ -10,7 +10,6 @@ from reportgen.physics.bisection import (
     FIT_BOUND_PF,
     Halved,
     StrayFit,
-    close_by_section,
     fit_stray,
     halve_pair,
     halve_three_pairs,
@@ -109,14 +108,15 @@ def test_section_arms_of_a_true_section():
 
 def test_true_section_is_closed_exactly():
     halved = halved_pair(section())
-    assert_close(close_by_section(halved, CAPACITOR_S, N), section())
+    ratio = section_ratio(halved, CAPACITOR_S, N)
+    assert_close(unit_of_pair(halved, ratio), section())
     np.testing.assert_allclose(section_ratio(halved, CAPACITOR_S, N), section().a)
 
 
 def test_forgotten_capacitor_is_seen_in_the_efficiency():
     """A closing that did not care about the capacitor would pass every other test here."""
     halved = halved_pair(section())
-    forgotten = close_by_section(halved, 0 * CAPACITOR_S, N)
+    forgotten = unit_of_pair(halved, section_ratio(halved, 0 * CAPACITOR_S, N))
     off = efficiency_ratio(forgotten, LOAD_OHM) / efficiency_ratio(section(), LOAD_OHM)
     assert np.max(np.abs(10 * np.log10(off))) > 0.02
 

@@ -10,7 +10,6 @@ from reportgen.physics.bisection import halve_pair
 from reportgen.physics.network import Chain, efficiency_ratio, series_arm, shunt_arm
 from reportgen.physics.winding import (
     LEAKAGE,
-    MISFIT_LIMIT,
     SHARE,
     SPREAD,
     START,
@@ -18,12 +17,10 @@ from reportgen.physics.winding import (
     Frame,
     arms_of,
     circuit_ratio,
-    fit_circuit,
-    fit_points,
     low_capacitor_s,
     open_and_short_ohm,
-    with_guesses,
 )
+from reportgen.physics.winding_fit import MISFIT_LIMIT, fit_circuit, fit_points, with_guesses
 
 HZ = np.linspace(1.5e6, 30e6, 60)
 FRAME = Frame(

@@ -20,7 +20,6 @@ from reportgen.physics.network import (
     Chain,
     Impedance,
     Scattering,
-    ideal_transformer,
     impedance_of_reflection,
 )
 
@@ -142,14 +141,6 @@ def section_ratio(
     """Voltage ratio A of a unit with the high side open, by the lumped section [ratio]."""
     z, y = section_arms(halved, capacitor_s)
     return np.asarray((1 + z * y) / turns_ratio)
-
-
-def close_by_section(
-    halved: Halved, capacitor_s: ComplexArray, turns_ratio: float | RealArray
-) -> Chain:
-    """One unit from a pair alone, closed by the lumped section and the turns ratio."""
-    z, y = section_arms(halved, capacitor_s)
-    return unit_of_pair(halved, 1 + z * y) @ ideal_transformer(turns_ratio)
 
 
 def load_squared(halved: Halved, z_in_ohm: ComplexArray) -> ComplexArray:

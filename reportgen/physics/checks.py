@@ -42,6 +42,7 @@ CHECKS = (Setup.THRU_CHECK, Setup.RESISTOR_CHECK)
 
 _POINTS = 8
 _ALLOWED_EXCESS = 1.5
+_LEAST_RATIO = 1e-6  # 60 dB of return loss
 _SMALLEST_SHARE = 1e-5  # of the artefact's variance; what is below is noise
 
 
@@ -119,13 +120,20 @@ def conditioned(spread: Spread, checks: Sequence[Measurement], drawn: Drawn) -> 
                 ]
             )
             shift[name] = (after[name] - ratio).mean(axis=0)
+            after[name] = _possible(name, after[name])
     moved = {name: getattr(spread.seen, name) + part for name, part in shift.items()}
+    moved = {name: _possible(name, ratio) for name, ratio in moved.items()}
     return replace(
         spread,
         drawn=replace(spread.drawn, **after),
         seen=replace(spread.seen, **moved),
         shift=shift,
     )
+
+
+def _possible(name: str, ratio: RealArray) -> RealArray:
+    """Reflected power is not negative, which a linear update does not know."""
+    return np.maximum(ratio, _LEAST_RATIO) if name == "reflection_ratio" else ratio
 
 
 def _gain(shown: RealArray, ratio: RealArray) -> RealArray:
@@ -188,8 +196,10 @@ def _real(value: ComplexArray) -> RealArray:
 def corrected(curves: Curves, spread: Spread) -> Curves:
     """Curves moved as the check sweeps moved the draws' mean."""
     parts = {
-        name: getattr(curves, name)
-        + np.interp(curves.frequency_hz, spread.seen.frequency_hz, shift)
+        name: _possible(
+            name,
+            getattr(curves, name) + np.interp(curves.frequency_hz, spread.seen.frequency_hz, shift),
+        )
         for name, shift in spread.shift.items()
         if getattr(curves, name) is not None
     }

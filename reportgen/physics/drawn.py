@@ -33,7 +33,8 @@ from reportgen.physics.residuals import (
     two_port_corrected,
 )
 from reportgen.physics.seen import Seen, View
-from reportgen.physics.winding import SPREAD, Circuit, refitted
+from reportgen.physics.winding import SPREAD
+from reportgen.physics.winding_fit import Circuit, refitted
 
 
 class Contribution(StrEnum):

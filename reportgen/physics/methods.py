@@ -39,15 +39,8 @@ from reportgen.physics.network import (
 )
 from reportgen.physics.pairs import Pair, pair_scattering
 from reportgen.physics.seen import AS_SWEPT, Seen
-from reportgen.physics.winding import (
-    MISFIT_LIMIT,
-    Circuit,
-    Frame,
-    arms_of,
-    circuit_ratio,
-    fit_circuit,
-    low_capacitor_s,
-)
+from reportgen.physics.winding import Frame, arms_of, circuit_ratio, low_capacitor_s
+from reportgen.physics.winding_fit import MISFIT_LIMIT, Circuit, fit_circuit
 
 NOT_DETERMINED_PF = 3.0
 """A stray known no better than this is not determined by the data [pF]."""

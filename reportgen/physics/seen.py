@@ -14,7 +14,7 @@ from reportgen.model import ComplexArray, Load, Measurement, RealArray
 from reportgen.physics.bisection import Halved
 from reportgen.physics.grid import resampled
 from reportgen.physics.network import Scattering
-from reportgen.physics.winding import Circuit
+from reportgen.physics.winding_fit import Circuit
 
 View = Callable[[RealArray, "Seen"], tuple[Halved, RealArray | None]]
 """Gives a half at frequencies, and the root of its pair's through power if it has one [ratio]."""
