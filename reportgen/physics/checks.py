@@ -14,6 +14,7 @@ from __future__ import annotations
 
 from collections.abc import Sequence
 from dataclasses import replace
+from typing import Any
 
 import numpy as np
 
@@ -59,9 +60,13 @@ def check_findings(measurements: Sequence[Measurement], drawn: Drawn) -> tuple[F
     return tuple(
         _contradiction(one, excess)
         for one in measurements
-        if one.entry.setup in (*CHECKS, Setup.LOAD_CHECK)
+        if one.entry.setup is Setup.THRU_CHECK or _is_known_resistor(one)
         if (excess := _excess(one, drawn)) > _ALLOWED_EXCESS
     )
+
+
+def _is_known_resistor(one: Measurement) -> bool:
+    return one.entry.setup in (Setup.RESISTOR_CHECK, Setup.LOAD_CHECK) and one.load is not None
 
 
 def _excess(one: Measurement, drawn: Drawn) -> float:
@@ -195,7 +200,7 @@ def _real(value: ComplexArray) -> RealArray:
 
 def corrected(curves: Curves, spread: Spread) -> Curves:
     """Curves moved as the check sweeps moved the draws' mean."""
-    parts = {
+    parts: dict[str, Any] = {
         name: _possible(
             name,
             getattr(curves, name) + np.interp(curves.frequency_hz, spread.seen.frequency_hz, shift),
