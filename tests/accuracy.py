@@ -1,4 +1,4 @@
-"""How far figures are from the truth on simulated builds: `python tests/accuracy.py [builds [sweeps ...]]`.
+"""How far figures are from the truth on simulated builds: `python tests/accuracy.py [builds [sweeps]]`.
 
 Prints the table of DEVELOPERS.md. A case is the mean heat loss of one amateur band, 160 m to 10 m,
 of one unit or mean of units. Coverage is the share of cases whose 95 % interval holds the truth.
@@ -17,11 +17,12 @@ import numpy as np
 
 sys.path.insert(0, str(Path(__file__).parent))
 
+from simulation.bench import KnownBuild, bench_sheet, known_build
+
 from reportgen.model import MeasuredBand, Method, MethodResult
 from reportgen.physics.allocations import amateur_bands
 from reportgen.physics.bands import mean_ratio
 from reportgen.physics.measure import measure_build
-from simulation.bench import KnownBuild, bench_sheet, known_build
 
 CONDITIONS = {
     "bench": {"grade": "bench"},

@@ -9,8 +9,7 @@ import pytest
 
 from reportgen.errors import InputRejected, UsageError
 from reportgen.intake.builds import Runs, open_runs, read_build
-from reportgen.model import OUTPUT_MARKER
-from reportgen.model import Build, Finding, Load, Setup, Severity
+from reportgen.model import OUTPUT_MARKER, Build, Finding, Load, Setup, Severity
 
 FREQUENCIES_MHZ = (7.0, 7.05, 7.1, 7.15, 7.2)
 ONE_PORT = "# MHz S RI R 50\n" + "".join(f"{f} 0.5 0.1\n" for f in FREQUENCIES_MHZ)
