@@ -1,4 +1,4 @@
-"""How far figures are from the truth on simulated builds: `python tests/accuracy.py [builds [sweeps]]`.
+"""How far figures are from the truth, simulated: `python tests/accuracy.py [builds [sweeps ...]]`.
 
 Prints the table of DEVELOPERS.md. A case is the mean heat loss of one amateur band, 160 m to 10 m,
 of one unit or mean of units. Coverage is the share of cases whose 95 % interval holds the truth.
