@@ -22,7 +22,7 @@ from reportgen.model import (
     MethodResult,
 )
 from reportgen.physics.allocations import amateur_bands
-from reportgen.physics.bisection import halve_pair, section_ratio, unit_of_pair
+from reportgen.physics.bisection import halve_pair, section_arms, unit_of_pair
 from reportgen.physics.measure import measure_build
 from reportgen.physics.network import (
     Chain,
@@ -186,7 +186,8 @@ def odd() -> BuildResult:
 def test_where_no_circuit_fits_each_frequency_is_closed_by_the_section(odd):
     unit = no_winding()
     halved = halve_pair(back_to_back(unit, unit))
-    closed = unit_of_pair(halved, section_ratio(halved, 0j * HZ, 7.0))
+    series, shunt = section_arms(halved, 0j * HZ)
+    closed = unit_of_pair(halved, (1 + series * shunt) / 7)
     found = swept(measured(odd, Method.BISECTION))
     np.testing.assert_allclose(found, efficiency_ratio(closed, 2450.0), rtol=1e-6)
 

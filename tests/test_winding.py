@@ -16,9 +16,10 @@ from reportgen.physics.winding import (
     Arms,
     Frame,
     arms_of,
-    circuit_ratio,
+    arms_seen,
     low_capacitor_s,
     open_and_short_ohm,
+    open_ratio,
 )
 from reportgen.physics.winding_fit import MISFIT_LIMIT, fit_circuit, fit_points, with_guesses
 
@@ -76,7 +77,7 @@ def test_ratio_of_a_pair_of_such_circuits_is_that_of_the_row_of_parts(values):
     """Series arm and core are found again from the pair; the rest is the circuit's."""
     arms = arms_of(values, FRAME, HZ)
     unit = chain_of(arms)
-    found = circuit_ratio(halve_pair(back_to_back(unit, unit)), arms)
+    found = open_ratio(arms_seen(halve_pair(back_to_back(unit, unit)), arms))
     np.testing.assert_allclose(found, unit.a, rtol=1e-3)
 
 
@@ -86,7 +87,7 @@ def test_ratio_of_an_extreme_circuit():
     spreads[[LEAKAGE, SHARE]] = 1
     arms = arms_of(START + SPREAD * spreads, FRAME, HZ)
     unit = chain_of(arms)
-    found = circuit_ratio(halve_pair(back_to_back(unit, unit)), arms)
+    found = open_ratio(arms_seen(halve_pair(back_to_back(unit, unit)), arms))
     assert np.max(np.abs(20 * np.log10(np.abs(found / unit.a)))) < 0.05
 
 
@@ -142,7 +143,7 @@ def test_fit_finds_a_circuit_of_its_own_kind(seed):
     fitted = fit_circuit(halved, FRAME, HZ)
     assert fitted.believed
     assert fitted.misfit_ratio < MISFIT_LIMIT / 10
-    found = circuit_ratio(halved, arms_of(fitted.parameters, fitted.frame, HZ))
+    found = open_ratio(arms_seen(halved, arms_of(fitted.parameters, fitted.frame, HZ)))
     off_db = 20 * np.log10(np.abs(found / unit.a))
     assert np.max(np.abs(off_db)) < 0.02
 

@@ -135,14 +135,6 @@ def section_arms(halved: Halved, capacitor_s: ComplexArray) -> tuple[ComplexArra
     return z, 1 / (z_open - z)
 
 
-def section_ratio(
-    halved: Halved, capacitor_s: ComplexArray, turns_ratio: float | RealArray
-) -> ComplexArray:
-    """Voltage ratio A of a unit with the high side open, by the lumped section [ratio]."""
-    z, y = section_arms(halved, capacitor_s)
-    return np.asarray((1 + z * y) / turns_ratio)
-
-
 def load_squared(halved: Halved, z_in_ohm: ComplexArray) -> ComplexArray:
     """2 t^2 Z from the impedance seen with the load Z on one unit's high side [ohm]."""
     above = halved.p + 1

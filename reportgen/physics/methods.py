@@ -25,7 +25,7 @@ from reportgen.physics.bisection import (
     fit_stray,
     load_squared,
     ratio_by_load,
-    section_ratio,
+    section_arms,
     unit_of_pair,
 )
 from reportgen.physics.grid import common_grid
@@ -39,7 +39,14 @@ from reportgen.physics.network import (
 )
 from reportgen.physics.pairs import Pair, pair_scattering
 from reportgen.physics.seen import AS_SWEPT, Seen
-from reportgen.physics.winding import Frame, arms_of, circuit_ratio, low_capacitor_s
+from reportgen.physics.winding import (
+    Arms,
+    Frame,
+    arms_of,
+    arms_seen,
+    low_capacitor_s,
+    open_ratio,
+)
 from reportgen.physics.winding_fit import MISFIT_LIMIT, Circuit, fit_circuit
 
 NOT_DETERMINED_PF = 3.0
@@ -50,13 +57,14 @@ NOT_DETERMINED_PF = 3.0
 class Computed:
     """What a plan gives over frequency; each (..., F), None: not measured by this method.
 
-    `chain` is the unit itself, `strays` the fits of each load by name.
+    `chain` is the unit itself, `arms` its circuit, `strays` the fits of each load by name.
     """
 
     efficiency_ratio: RealArray | None = None
     reflection_ratio: RealArray | None = None
     halved_pair_ratio: RealArray | None = None
     chain: Chain | None = None
+    arms: Arms | None = None
     strays: Mapping[str, StrayFit] = field(default_factory=dict)
 
 
@@ -89,19 +97,21 @@ class ClosedHalf:
     half: Half
     circuit: Circuit
 
-    def expected_ratio(self, halved: Halved, frequency_hz: RealArray, seen: Seen) -> ComplexArray:
-        """Voltage ratio A of the unit, its high side open, without any load sweep [ratio].
-
-        By the fitted circuit, or by the lumped section at each frequency where no circuit fits.
-        """
+    def arms(self, halved: Halved, frequency_hz: RealArray, seen: Seen) -> Arms:
+        """The circuit as the half shows it; the lumped section where no circuit fits."""
         frame = self.circuit.frame
-        if not self.circuit.believed:
-            ratio = section_ratio(halved, low_capacitor_s(frame, frequency_hz), frame.turns_ratio)
-        else:
+        if self.circuit.believed:
             circuit = seen.circuit(self.circuit, self.half.view)
-            arms = arms_of(circuit.parameters, frame, frequency_hz)
-            ratio = circuit_ratio(halved, arms) / frame.turns_ratio
-        return np.asarray(ratio * seen.closing_ratio(self.circuit, frequency_hz))
+            return arms_seen(halved, arms_of(circuit.parameters, frame, frequency_hz))
+        capacitor_s = low_capacitor_s(frame, frequency_hz)
+        series_ohm, shunt_s = section_arms(halved, capacitor_s)
+        nothing = np.zeros_like(series_ohm)
+        return Arms(nothing, capacitor_s, series_ohm, shunt_s, nothing, np.zeros(1))
+
+    def expected_ratio(self, arms: Arms, frequency_hz: RealArray, seen: Seen) -> ComplexArray:
+        """Voltage ratio A of the unit, high side open, without any load sweep [ratio]."""
+        off = seen.closing_ratio(self.circuit, frequency_hz)
+        return np.asarray(open_ratio(arms) / self.circuit.frame.turns_ratio * off)
 
 
 def close_half(half: Half, sheet: BuildSheet) -> ClosedHalf:
@@ -148,8 +158,9 @@ def closed_by_circuit(closed: ClosedHalf, sheet: BuildSheet) -> Plan:
 
     def compute(frequency_hz: RealArray, seen: Seen) -> Computed:
         halved, through = half.view(frequency_hz, seen)
-        ratio = closed.expected_ratio(halved, frequency_hz, seen)
-        return computed_of_chain(unit_of_pair(halved, ratio), sheet, through)
+        arms = closed.arms(halved, frequency_hz, seen)
+        ratio = closed.expected_ratio(arms, frequency_hz, seen)
+        return replace(computed_of_chain(unit_of_pair(halved, ratio), sheet, through), arms=arms)
 
     return Plan(
         method=half.alone,
@@ -178,7 +189,8 @@ def closed_by_loads(closed: ClosedHalf, loads: Sequence[LoadSweeps], sheet: Buil
 
     def compute(frequency_hz: RealArray, seen: Seen) -> Computed:
         halved, through = half.view(frequency_hz, seen)
-        expected = closed.expected_ratio(halved, frequency_hz, seen)
+        arms = closed.arms(halved, frequency_hz, seen)
+        expected = closed.expected_ratio(arms, frequency_hz, seen)
         squared = [
             load_squared(halved, impedance_of_reflection(one.reflection(frequency_hz, seen)))
             for one in loads
@@ -191,7 +203,7 @@ def closed_by_loads(closed: ClosedHalf, loads: Sequence[LoadSweeps], sheet: Buil
         ]
         mean = np.mean([s * y for s, y in zip(squared, admittances_s, strict=True)], axis=0)
         chain = unit_of_pair(halved, ratio_by_load(mean, 1.0, expected))
-        return replace(computed_of_chain(chain, sheet, through), strays=strays)
+        return replace(computed_of_chain(chain, sheet, through), arms=arms, strays=strays)
 
     return Plan(
         method=half.loaded,

@@ -13,7 +13,7 @@ References
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 
 import numpy as np
 
@@ -130,25 +130,34 @@ def low_capacitor_s(frame: Frame, frequency_hz: RealArray) -> ComplexArray:
     return np.asarray(omega * frame.low_capacitor_f * (1j + frame.loss_tangent))
 
 
-def circuit_ratio(halved: Halved, arms: Arms) -> ComplexArray:
-    """Voltage ratio A of a unit before its ideal transformer, high side open [ratio].
+def arms_seen(halved: Halved, arms: Arms) -> Arms:
+    """The circuit with its series arm and core as the half itself shows them at each frequency.
 
     Notes
     -----
-    Lead, capacitor, high-side capacitance and the share of the series arm behind the core are the
-    circuit's; series arm and core follow at each frequency from the pair itself: with z the whole
-    series arm and y the core, Zshort = z1 + z2/(1 + y z2) and Zopen = z1 + 1/(y + yh/(1 + z2 yh)).
-    A lead in front multiplies A by Zopen/(Zopen - lead); a capacitor there leaves it alone.
+    Lead, capacitor, high-side capacitance and the share of the series arm behind the core stay the
+    circuit's. With z the whole series arm and y the core, Zshort = z1 + z2/(1 + y z2) and
+    Zopen = z1 + 1/(y + yh/(1 + z2 yh)); a few rounds settle both.
     """
-    z_open, z_short = halved.z_open_ohm - arms.lead_ohm, halved.z_short_ohm - arms.lead_ohm
-    seen_open = 1 / (1 / z_open - arms.capacitor_s)
-    seen_short = 1 / (1 / z_short - arms.capacitor_s)
+    seen_open = 1 / (1 / (halved.z_open_ohm - arms.lead_ohm) - arms.capacitor_s)
+    seen_short = 1 / (1 / (halved.z_short_ohm - arms.lead_ohm) - arms.capacitor_s)
     z = seen_short
     for _ in range(_SPLIT_ROUNDS):
         behind = arms.share * z
         y = 1 / (seen_open - z + behind) - arms.high_s / (1 + behind * arms.high_s)
         z = seen_short + y * behind**2 / (1 + y * behind)
-    behind = arms.share * z
-    front = z - behind
-    ratio = (1 + front * y) * (1 + behind * arms.high_s) + front * arms.high_s
-    return np.asarray(ratio * halved.z_open_ohm / z_open)
+    return replace(arms, series_ohm=z, shunt_s=y)
+
+
+def open_ratio(arms: Arms) -> ComplexArray:
+    """Voltage ratio A of the circuit before its ideal transformer, high side open [ratio].
+
+    Notes
+    -----
+    The lead sees the current of all that is behind it; a capacitor there else leaves A alone.
+    """
+    behind = arms.share * arms.series_ohm
+    front = arms.series_ohm - behind
+    inner = (1 + front * arms.shunt_s) * (1 + behind * arms.high_s) + front * arms.high_s
+    z_open, _ = open_and_short_ohm(arms)
+    return np.asarray(inner * z_open / (z_open - arms.lead_ohm))
