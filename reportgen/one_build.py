@@ -75,7 +75,10 @@ def _made(task: Task, folder: BuildFolder, result: BuildResult) -> Made:
     made = Made(result=result, comparison=comparison)
     if task.out is None or (task.only and folder.key not in task.only):
         return made
-    files = _files(task, made, baseline)
+    try:
+        files = _files(task, made, baseline)
+    except OutputError as error:
+        raise InputRejected((*result.findings, _not_drawn(error))) from error
     place_build(task.out, folder.key, files, _names_of(task.earlier.get(folder.key)))
     outputs = tuple(output_file(f"{folder.key}/{name}", data) for name, data in files.items())
     return replace(made, outputs=outputs)
@@ -124,6 +127,16 @@ def _not_measurable(error: NotMeasurable) -> Finding:
         file="build.toml",
         message=str(error),
         remedy="add the sweep that is missing; the README lists what each set-up gives",
+    )
+
+
+def _not_drawn(error: OutputError) -> Finding:
+    return Finding(
+        severity=Severity.ERROR,
+        code="not-drawn",
+        file="build.toml",
+        message=str(error),
+        remedy="where it names a character, write it in Latin, Greek or Cyrillic letters",
     )
 
 

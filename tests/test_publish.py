@@ -58,6 +58,15 @@ def test_a_fault_of_the_program_is_that_builds_alone(tmp_path: Path, monkeypatch
     assert (tmp_path / "out" / "birch" / "report.html").is_file()
 
 
+def test_a_letter_that_no_font_has_is_that_builds_alone(tmp_path: Path) -> None:
+    runs = write_runs(tmp_path / "runs", "alder")
+    write_build(runs / "birch", "\N{CJK UNIFIED IDEOGRAPH-6E2C}")
+    outcome = publish_here(runs, tmp_path / "out")
+    assert [one.key for one in outcome.failed] == ["birch"]
+    assert "U+6E2C" in outcome.failed[0].findings[-1].message
+    assert (tmp_path / "out" / "alder" / "report.html").is_file()
+
+
 def test_a_broken_bench_file_stops_all_and_writes_nothing(tmp_path: Path) -> None:
     runs = write_runs(tmp_path / "runs", "alder", bench="powr_w = 3")
     with pytest.raises(InputRejected, match="powr_w"):
