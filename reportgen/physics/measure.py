@@ -5,6 +5,8 @@ from __future__ import annotations
 from collections.abc import Sequence
 from typing import TypedDict
 
+import numpy as np
+
 from reportgen.errors import NotMeasurable
 from reportgen.model import (
     Advice,
@@ -45,6 +47,7 @@ USED_SETUPS = (
 )
 
 
+@np.errstate(divide="ignore", invalid="ignore", over="ignore")
 def measure_build(build: Build, bench: BenchSheet, known: Sequence[Band]) -> BuildResult:
     """Everything that a build's sweeps say.
 

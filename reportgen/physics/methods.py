@@ -10,6 +10,7 @@ from dataclasses import dataclass, field, replace
 
 import numpy as np
 
+from reportgen.errors import NotMeasurable
 from reportgen.model import (
     BuildSheet,
     ComplexArray,
@@ -48,6 +49,9 @@ from reportgen.physics.winding import (
     open_ratio,
 )
 from reportgen.physics.winding_fit import MISFIT_LIMIT, Circuit, fit_circuit
+
+_MOST_THROUGH = 1.05
+_MOST_GAIN_SHARE = 0.05
 
 NOT_DETERMINED_PF = 3.0
 """A stray known no better than this is not determined by the data [pF]."""
@@ -123,8 +127,20 @@ def close_half(half: Half, sheet: BuildSheet) -> ClosedHalf:
         Its sweeps share no range.
     """
     grid = common_grid(half.sweeps, ())
-    halved, _ = half.view(grid.frequency_hz, AS_SWEPT)
+    halved, through = half.view(grid.frequency_hz, AS_SWEPT)
+    _refuse_what_is_no_half(half, halved, through)
     return ClosedHalf(half, fit_circuit(halved, frame_of_sheet(sheet), grid.frequency_hz))
+
+
+def _refuse_what_is_no_half(half: Half, halved: Halved, through: RealArray | None) -> None:
+    files = ", ".join(sweep.file for sweep in half.sweeps)
+    if not all(np.isfinite(part).all() for part in (halved.z_open_ohm, halved.p, halved.q)):
+        raise NotMeasurable(
+            f"{files}: nothing passes, or open and short look the same: this is no pair of "
+            "transformers"
+        )
+    if through is not None and np.mean(through**2 > _MOST_THROUGH) > _MOST_GAIN_SHARE:
+        raise NotMeasurable(f"{files}: more comes out than goes in; no passive pair does that")
 
 
 def frame_of_sheet(sheet: BuildSheet) -> Frame:
