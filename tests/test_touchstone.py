@@ -145,12 +145,9 @@ ODD = {
         ["3 points", "at most 2"]),
     "line limit": (
         "!\n" * 1100, {"max_points": 2}, "too-many-lines", REJECT, None, ["1100 lines"]),
-    "version 2": (
-        "[Version] 2.0\n" + OPTION + one_port(1), {}, "touchstone-2", REJECT, 1,
-        ["[Version] 2.0", "only version 1 is read"]),
-    "mixed mode": (
-        OPTION + "[Mixed-Mode Order] D2,3\n" + one_port(1), {}, "touchstone-2", REJECT, 2,
-        ["[Mixed-Mode Order]"]),
+    "keyword of version 2": (
+        OPTION + "[Reference] 50\n" + one_port(1), {}, "version-missing", REJECT, 2,
+        ["[Reference] 50", "[Version] 2.0 or 2.1 as the first line"]),
     # --- numbers
     "decimal comma": (
         OPTION + "1,0 0,1 0,2\n", {}, "decimal-comma", REJECT, 2,

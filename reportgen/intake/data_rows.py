@@ -214,12 +214,17 @@ def _remark_wrapped(first: NumberLine, pattern: tuple[int, ...], remarks: Remark
 # --- the name --------------------------------------------------------------------------------
 
 
+def named_ports(file: str) -> int | None:
+    """The number of ports that the name of a file promises; None where it promises none."""
+    match = _NAMED_PORTS.search(file)
+    return int(match[1]) if match else None
+
+
 def check_name(file: str, rows: Rows, remarks: Remarks) -> None:
     """Compare the ports that the name of the file promises with the columns found."""
-    match = _NAMED_PORTS.search(file)
-    if match is None:
+    named = named_ports(file)
+    if named is None:
         return
-    named = int(match[1])
     if named not in PORTS_OF_COLUMNS.values():
         remarks.error(
             "port-count",

@@ -1,4 +1,4 @@
-"""The option line of a Touchstone 1.x file, `# MHz S RI R 50`, and comments that contradict it.
+"""The option line of a Touchstone file, `# MHz S RI R 50`, and comments that contradict it.
 
 References
 ----------
@@ -10,7 +10,7 @@ from __future__ import annotations
 
 import re
 from collections import deque
-from dataclasses import dataclass, field
+from dataclasses import dataclass, field, replace
 
 from reportgen.intake.number_lines import read_number
 from reportgen.intake.remarks import Remarks, quoted
@@ -40,7 +40,8 @@ class Option:
     """What an option line says; missing items have the values of [1]_, page 6.
 
     `found` tells whether there is an option line with anything on it, `unit_found` whether it
-    names a unit. Neither counts when two lines are compared, nor does `line`.
+    names a unit. Neither counts when two lines are compared, nor do the lines. `normalized`: Z data
+    are divided by the reference, as they are in version 1.
     """
 
     unit: str = "GHz"
@@ -50,14 +51,19 @@ class Option:
     found: bool = field(default=True, compare=False)
     unit_found: bool = field(default=True, compare=False)
     line: int | None = field(default=None, compare=False)
+    reference_line: int | None = field(default=None, compare=False)
+    normalized: bool = field(default=True, compare=False)
 
 
-def read_option_line(lines: SweepLines, remarks: Remarks, *, decimal: str = ".") -> Option:
+def read_option_line(
+    lines: SweepLines, remarks: Remarks, *, decimal: str = ".", normalized: bool = True
+) -> Option:
     """What the first option line says; every mistake in it is remarked."""
     if not lines.options:
-        return Option(found=False, unit_found=False)
+        return Option(found=False, unit_found=False, normalized=normalized)
     first, *others = lines.options
-    option = _parse(first, remarks, decimal)
+    option = replace(_parse(first, remarks, decimal), normalized=normalized)
+    _check_parameter(option, remarks)
     if lines.data and first.number > lines.data[0].number:
         remarks.error(
             "option-line-late",
@@ -91,7 +97,7 @@ def _parse(line: Line, remarks: Remarks, decimal: str) -> Option:
             references = _take_reference(word, words, line, remarks, decimal)
         else:
             _remark_unknown(word, line, remarks)
-    option = Option(
+    return Option(
         unit=found.get("unit", "GHz"),
         parameter=found.get("parameter", "S"),
         format=found.get("format", "MA"),
@@ -99,9 +105,8 @@ def _parse(line: Line, remarks: Remarks, decimal: str) -> Option:
         found=anything,
         unit_found="unit" in found,
         line=line.number,
+        reference_line=line.number,
     )
-    _check_parameter(option, remarks)
-    return option
 
 
 def _begins_reference(word: str) -> bool:
@@ -134,7 +139,7 @@ def _take_reference(
             "move R and its numbers to the end of the line",
             line.number,
         )
-    ohms = [_reference(value, line, remarks, decimal) for value in values]
+    ohms = [read_reference(value, line.number, remarks, decimal) for value in values]
     if len(word) > 1 and ohms[0] is not None:
         remarks.warn(
             "reference-glued",
@@ -145,7 +150,8 @@ def _take_reference(
     return tuple(ohm for ohm in ohms if ohm is not None)
 
 
-def _reference(value: str, line: Line, remarks: Remarks, decimal: str) -> float | None:
+def read_reference(value: str, line: int, remarks: Remarks, decimal: str) -> float | None:
+    """A reference [ohm]; None when it can be none, which is remarked."""
     ohm = read_number(value, decimal)
     if ohm is not None and 0 < ohm < LARGEST_REFERENCE_OHM:
         return ohm
@@ -153,8 +159,8 @@ def _reference(value: str, line: Line, remarks: Remarks, decimal: str) -> float 
         "reference-value",
         f"the reference is {quoted(value)}; "
         f"expected a real number of ohms above 0 and below {LARGEST_REFERENCE_OHM:g}",
-        f"write it as in `{EXAMPLE}`",
-        line.number,
+        "write the reference of the calibration, such as 50",
+        line,
     )
     return None
 
@@ -179,7 +185,7 @@ def _remark_unknown(word: str, line: Line, remarks: Remarks) -> None:
 
 
 def _check_parameter(option: Option, remarks: Remarks) -> None:
-    if option.parameter == "Z":
+    if option.parameter == "Z" and option.normalized:
         remarks.warn(
             "z-parameters",
             f"Z data are normalised to R ({ohms(option.reference_ohm)} ohm) in version 1, and were "
@@ -187,7 +193,7 @@ def _check_parameter(option: Option, remarks: Remarks) -> None:
             "check one value, or export S parameters",
             option.line,
         )
-    elif option.parameter != "S":
+    elif option.parameter not in "SZ":
         remarks.error(
             "parameter-unsupported",
             f"the file holds {option.parameter} parameters; only S (and Z) are supported",
@@ -240,6 +246,7 @@ def remark_impedance_comments(comments: list[Line], option: Option, remarks: Rem
         "impedance-in-comment",
         f"a comment mentions a port impedance of {ohm:g} ohm, ignored; "
         f"the reference is taken to be {ohms(option.reference_ohm)} ohm",
-        "if the comment is right, put the number behind R on the option line",
+        "if the comment is right, put the number behind R on the option line"
+        " (or behind [Reference])",
         line,
     )

@@ -149,7 +149,10 @@ class Line(NamedTuple):
 
 @dataclass(frozen=True, slots=True)
 class SweepLines:
-    """The lines of a file by kind; `ends_open`: the last line has data and no line end."""
+    """The lines of a file by kind; `ends_open`: the last line has data and no line end.
+
+    Keywords keep the blanks before them, since they have to begin in column 1.
+    """
 
     options: list[Line] = field(default_factory=list)
     keywords: list[Line] = field(default_factory=list)
@@ -178,19 +181,20 @@ def split_lines(text: str, remarks: Remarks, *, max_lines: int) -> SweepLines:
         content, mark, comment = raw.partition("!")
         if mark and comment:
             lines.comments.append(Line(number, comment[:LONGEST_LINE]))
-        if content := content.strip(BLANKS):
-            _sort_in(Line(number, content), lines)
+        if content := content.rstrip(BLANKS):
+            _sort_in(number, content, lines)
     _refuse_long_lines(lines, remarks)
     return lines
 
 
-def _sort_in(line: Line, lines: SweepLines) -> None:
-    if line.text.startswith("#"):
-        lines.options.append(line)
-    elif line.text.startswith("[") and not lines.data:
-        lines.keywords.append(line)
+def _sort_in(number: int, content: str, lines: SweepLines) -> None:
+    text = content.lstrip(BLANKS)
+    if text.startswith("#"):
+        lines.options.append(Line(number, text))
+    elif text.startswith("[") and (lines.keywords or not lines.data):  # behind data, a footer
+        lines.keywords.append(Line(number, content))
     else:
-        lines.data.append(line)
+        lines.data.append(Line(number, text))
 
 
 def _refuse_long_lines(lines: SweepLines, remarks: Remarks) -> None:
@@ -203,21 +207,3 @@ def _refuse_long_lines(lines: SweepLines, remarks: Remarks) -> None:
                 "save the sweep with one frequency a line",
                 line.number,
             )
-
-
-def refuse_version_2(lines: SweepLines, remarks: Remarks) -> None:
-    """Give up on a keyword before the data: version 1 has none.
-
-    Raises
-    ------
-    InputRejected
-        A line in front of the data begins with `[`.
-    """
-    if lines.keywords:
-        line = lines.keywords[0]
-        remarks.reject(
-            "touchstone-2",
-            f"Touchstone 2.x: found the keyword {quoted(line.text)}; only version 1 is read",
-            "export as version 1",
-            line.number,
-        )

@@ -1,4 +1,4 @@
-"""A strict reader of Touchstone 1.x files with one or two ports.
+"""A strict reader of Touchstone files, versions 1 and 2, with one or two ports.
 
 It never guesses in silence: what is unusual is remarked, what is ambiguous is refused.
 
@@ -32,7 +32,8 @@ from reportgen.intake.option_line import (
 )
 from reportgen.intake.reference import scattering_at_50_ohm, scattering_of_impedance
 from reportgen.intake.remarks import Remarks, listed_lines
-from reportgen.intake.sweep_text import SweepLines, decode_text, refuse_version_2, split_lines
+from reportgen.intake.sweep_text import SweepLines, decode_text, split_lines
+from reportgen.intake.version_two import read_version_two
 from reportgen.model import Band, ComplexArray, Finding, RealArray, Sweep
 from reportgen.physics.network import ANALYZER_OHM
 
@@ -85,7 +86,6 @@ def parse_touchstone(
     remarks = Remarks(file)
     text = decode_text(data, remarks, max_bytes=max_bytes)
     lines = split_lines(text, remarks, max_lines=_LINES_PER_POINT * max_points + _FURTHER_LINES)
-    refuse_version_2(lines, remarks)
     option, rows = _read(lines, remarks, decimal or ".", max_points)
     reference_ohm = _reference_of_ports(option, rows.ports, remarks)
     unit = choose_unit(option, frequency_unit, rows.frequency, bands, remarks)
@@ -113,10 +113,13 @@ def parse_touchstone(
 def _read(
     lines: SweepLines, remarks: Remarks, decimal: str, max_points: int
 ) -> tuple[Option, Rows]:
-    option = read_option_line(lines, remarks, decimal=decimal)
+    if lines.keywords:
+        option, rows = read_version_two(lines, remarks, decimal=decimal, max_points=max_points)
+    else:
+        option = read_option_line(lines, remarks, decimal=decimal)
+        rows = read_rows(lines, remarks, decimal=decimal, max_points=max_points)
+        check_name(remarks.file, rows, remarks)
     remark_impedance_comments(lines.comments, option, remarks)
-    rows = read_rows(lines, remarks, decimal=decimal, max_points=max_points)
-    check_name(remarks.file, rows, remarks)
     if option.format == "MA":
         _refuse_negative_magnitude(rows, remarks)
     return option, rows
@@ -193,7 +196,7 @@ def _reference_of_ports(option: Option, ports: int, remarks: Remarks) -> tuple[f
             "correct the numbers behind R on the option line",
             option.line,
         )
-    elif option.parameter == "Z" and len(set(found)) > 1:
+    elif option.parameter == "Z" and option.normalized and len(set(found)) > 1:
         remarks.error(
             "reference-count",
             f"Z data with the references {ohms(found)} ohm; expected one reference, since it is "
@@ -249,7 +252,8 @@ def _at_50_ohm(
         if option.parameter == "S":
             s = scattering_at_50_ohm(network, reference_ohm)
         else:
-            s = scattering_of_impedance(network * reference_ohm[0])
+            unit_ohm = reference_ohm[0] if option.normalized else 1.0
+            s = scattering_of_impedance(network * unit_ohm)
     except np.linalg.LinAlgError:
         s = np.full_like(network, np.nan)
     if not np.isfinite(s).all():
@@ -258,7 +262,7 @@ def _at_50_ohm(
             f"the {option.parameter} data re {ohms(reference_ohm)} ohm cannot be converted to "
             "S re 50 ohm: their impedance is without bounds or -50 ohm",
             "see whether parameter, format and reference on the option line are right",
-            option.line,
+            option.reference_line,
         )
     return s
 
@@ -274,11 +278,11 @@ def _remark_reference(
             f"the reference is {stated} ohm and one path only was measured; converting to 50 ohm "
             "needs all four S parameters",
             "sweep with a reference of 50 ohm, or both ways",
-            option.line,
+            option.reference_line,
         )
     remarks.note(
         "reference",
         f"the data are re {stated} ohm; they were converted to 50 ohm",
         "nothing to do, if the calibration was made so",
-        option.line,
+        option.reference_line,
     )
