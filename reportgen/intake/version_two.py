@@ -169,8 +169,8 @@ def _with_reference(
     if len(words) != ports:
         remarks.error(
             "reference-count",
-            f"[Reference] has {len(words)} values for [Number of Ports] {ports}; "
-            "expected one real number of ohms for each port",
+            f"found {len(words)} {'value' if len(words) == 1 else 'values'} behind [Reference]; "
+            f"expected {ports}, one real number of ohms for each port",
             "correct the numbers behind [Reference]",
             block.line,
         )
@@ -243,11 +243,10 @@ def _read_table(count: Block, data: Block, width: int, remarks: Remarks, decimal
     numbers = np.array([value for row in read for value in row.values])
     points, expected = int(count.argument), int(count.argument) * width
     if len(numbers) != expected and not remarks.rejected:
-        whole, rest = divmod(len(numbers), width)
         remarks.error(
             "number-count",
-            f"[{data.name}] holds {len(numbers)} numbers: {whole} points of {width} and {rest} "
-            f"more; expected {expected}, since [{count.name}] in line {count.line} is {points}",
+            f"[{data.name}] holds {len(numbers)} numbers; expected {expected}: {width} for each of "
+            f"{points} points, as [{count.name}] in line {count.line} says",
             "see whether the file was saved completely, or correct the keywords",
             data.line,
         )
