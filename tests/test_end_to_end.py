@@ -12,7 +12,7 @@ import sys
 from pathlib import Path
 
 import pytest
-from small_runs import contents
+from small_runs import contents, write_runs
 from write_goldens import EXAMPLE_RUNS, GOLDENS, golden_of
 
 from reportgen.model import OUTPUT_MARKER
@@ -20,6 +20,8 @@ from reportgen.model import OUTPUT_MARKER
 KEYS = sorted(path.stem for path in GOLDENS.glob("*.json"))
 OF_A_BUILD = {"report.html", "report.pdf", "results.json", "bands.csv", "curves.csv"}
 TOLERANCE, TOLERANCE_OF_DRAWN = 1e-4, 1e-3
+HERE = {"jobs": 1, "PYTHONHASHSEED": "1", "TZ": "UTC", "LC_ALL": "C"}
+ELSEWHERE = {"jobs": 2, "PYTHONHASHSEED": "2", "TZ": "Pacific/Auckland", "LC_ALL": "C.UTF-8"}
 FINDING = re.compile(r"  (error|warning|note) +\S.*|[a-z0-9-]+")
 
 
@@ -40,7 +42,7 @@ def in_a_process(
 @pytest.fixture(scope="module")
 def run(tmp_path_factory) -> tuple[subprocess.CompletedProcess, Path]:
     out = tmp_path_factory.mktemp("first") / "published"
-    return in_a_process(EXAMPLE_RUNS, out, 1, PYTHONHASHSEED="1", TZ="UTC", LC_ALL="C"), out
+    return in_a_process(EXAMPLE_RUNS, out, **HERE), out
 
 
 def test_all_published_and_nothing_said_but_findings(run) -> None:
@@ -91,15 +93,29 @@ def test_the_comparison_of_figures_sees_a_difference() -> None:
     assert len(list(differences({"a": []}, kept))) == 1
 
 
-def test_same_bytes_from_elsewhere(run, tmp_path: Path) -> None:
+def test_builds_give_the_same_bytes_from_elsewhere(run, tmp_path: Path) -> None:
     """Another folder, process, number of workers, hash seed, time zone and language."""
-    shutil.copytree(EXAMPLE_RUNS, tmp_path / "copied here")
-    out = tmp_path / "elsewhere"
-    settings = {"PYTHONHASHSEED": "2", "TZ": "Pacific/Auckland", "LC_ALL": "C.UTF-8"}
-    assert in_a_process(tmp_path / "copied here", out, 2, **settings).returncode == 0
+    runs, out = tmp_path / "copied here", tmp_path / "elsewhere"
+    for build in ("alder", "cedar", "portable/elder"):
+        shutil.copytree(EXAMPLE_RUNS / build, runs / build)
+    shutil.copy(EXAMPLE_RUNS / "runs.toml", runs)
+    assert in_a_process(runs, out, **ELSEWHERE).returncode == 0
     first, second = contents(run[1]), contents(out)
-    assert [name for name in first if first[name] != second.get(name)] == []
-    assert first.keys() == second.keys()
+    pages = [name for name in second if "/" in name]
+    assert len(pages) == 3 * len(OF_A_BUILD)
+    assert [name for name in pages if first[name] != second[name]] == []
+    rows = second["results.csv"].splitlines()
+    assert len(rows) > 100
+    assert set(rows) <= set(first["results.csv"].splitlines())
+
+
+def test_everything_is_the_same_bytes_from_elsewhere(tmp_path: Path) -> None:
+    found = []
+    for name, settings in (("here", HERE), ("elsewhere", ELSEWHERE)):
+        runs = write_runs(tmp_path / name / "runs", "alder", "birch")
+        assert in_a_process(runs, tmp_path / name / "out", **settings).returncode == 0
+        found.append(contents(tmp_path / name / "out"))
+    assert found[0] == found[1]
 
 
 @pytest.mark.parametrize("name", ["index.html", *(f"{key}/report.html" for key in KEYS)])
