@@ -73,8 +73,10 @@ def cases_of(known: KnownBuild, grade: str) -> Iterator[Case]:
 
 
 def _case(known: KnownBuild, method: MethodResult, band: MeasuredBand) -> Case:
+    """A loss without a value, where less than nothing comes out, is taken as infinite."""
     figure = band.figures.get("heat_loss_db") or band.figures["halved_pair_db"]
-    assert figure.mean is not None
+    if figure.mean is None:
+        return Case(method=method.method, error_db=np.inf, low_db=-np.inf, high_db=np.inf)
     return Case(
         method=method.method,
         error_db=figure.mean - true_loss_db(known, method, band),

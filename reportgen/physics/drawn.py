@@ -60,7 +60,7 @@ UNMEASURED_RATIO = 0.02
 STATED_STRAY_F = 0.3e-12
 """Standard deviation of a stray capacitance that the sidecar states [F]."""
 
-CLOSING_RATIO = 0.0025
+CLOSING_RATIO = 0.004
 """By what the closing of a half may be off at 10 MHz, as a standard deviation [ratio]."""
 
 _SILENT_DB = 400.0
