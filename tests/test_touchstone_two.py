@@ -221,12 +221,16 @@ MISTAKES = {
         changed(ONE, "cies] 2", "cies] 0"), "argument-value", 4, ['"0"', "whole number above 0"]),
     "count beyond reading": (
         changed(ONE, "cies] 2", "cies] 2" + "0" * 5000), "argument-value", 4, ["whole number"]),
+    "zeros beyond reading": (
+        changed(ONE, "cies] 2", "cies] " + "0" * 5000 + "2"), "argument-value", 4,
+        ["whole number"]),
     "unknown order": (
         changed(TWO, "21_12", "11_22"), "argument-value", 4, ['"11_22"', "21_12 or 12_21"]),
     "unknown format": (
         ahead("[Matrix Format] Half"), "argument-value", 5, ['"Half"', "Full or Lower or Upper"]),
     "one reference for two": (
-        ahead("[Reference] 50", TWO), "reference-count", 6, ["found 1 value ", "expected 2", "one real number"]),
+        ahead("[Reference] 50", TWO), "reference-count", 6,
+        ["found 1 value ", "expected 2", "one real number"]),
     "a reference too many": (
         ahead("[Reference] 50\n75"), "reference-count", 5, ["found 2 values", "expected 1"]),
     "complex reference": (

@@ -5,7 +5,7 @@ Of the data comes the table that version 1 has, so that all behind it is one rea
 References
 ----------
 .. [1] Touchstone File Format Specification, version 2.1, IBIS Open Forum, 26 January 2024,
-       pages 8 to 15.
+       pages 8 to 15 and 25.
 """
 
 from __future__ import annotations
@@ -24,12 +24,12 @@ from reportgen.intake.sweep_text import SweepLines
 
 Blocks = dict[str, Block]
 
-_WHOLE_NUMBER = re.compile(r"0*[1-9][0-9]{0,8}", re.ASCII)
+_WHOLE_NUMBER = re.compile(r"0{0,8}[1-9][0-9]{0,8}", re.ASCII)
 _VERSIONS = ("2.0", "2.1")
 _ORDERS = ("21_12", "12_21")
 _FORMATS = ("Full", "Lower", "Upper")
 
-# which numbers of a point make frequency, N11, N21, N12, N22; pages 9, 10 and 12 of [1]
+# which numbers of a point make frequency, N11, N21, N12, N22; pages 9 to 12 and 15 of [1]
 _ONE_PORT = (0, 1, 2)
 _TRIANGLE = (0, 1, 2, 3, 4, 3, 4, 5, 6)
 _FULL = {"21_12": (0, 1, 2, 3, 4, 5, 6, 7, 8), "12_21": (0, 1, 2, 5, 6, 3, 4, 7, 8)}
@@ -160,7 +160,7 @@ def _check_points(blocks: Blocks, remarks: Remarks, max_points: int) -> None:
 def _with_reference(
     option: Option, blocks: Blocks, ports: int, remarks: Remarks, decimal: str
 ) -> Option:
-    """The option with the references of [Reference], which prevail: page 11 of [1]_."""
+    """The option with the references of [Reference], which prevail: pages 10 to 12 of [1]_."""
     block = blocks.get("Reference")
     if block is None or not ports:
         return option
@@ -181,7 +181,7 @@ def _with_reference(
 
 
 def _check_noise(blocks: Blocks, ports: int, remarks: Remarks) -> None:
-    """Noise data and their number come together, and with two ports only: page 10 of [1]_."""
+    """Noise data and their number come together, and with two ports only: pages 10 to 12 of [1]_."""
     noise, count = blocks.get("Noise Data"), blocks.get("Number of Noise Frequencies")
     if noise is None and count is not None:
         remarks.error(

@@ -81,7 +81,7 @@ EXAMPLE_18_VERSION_1 = """# GHz S MA R 50
 18 2.7 .46 -33 .40
 """
 
-EXAMPLE_21 = EXAMPLE_18_AT_50_OHM.replace("21_12", "12_21")
+EXAMPLE_21 = EXAMPLE_18_AT_50_OHM.replace("21_12", "12_21")  # the data of 18 in the other order
 
 
 def read(content, file):
@@ -150,7 +150,7 @@ S21, S12 = [polar(3.57, 157), polar(1.30, 40)], [polar(0.04, 76), polar(0.14, 40
     [
         (EXAMPLE_18_VERSION_1, 4, S21, S12),
         (EXAMPLE_18_AT_50_OHM, 10, S21, S12),
-        (EXAMPLE_21, 10, S12, S21),  # page 10: 12_21 has N12 before N21
+        (EXAMPLE_21, 10, S12, S21),  # pages 9, 10 and 15: N12 before N21
     ],
     ids=["18, version 1", "18", "21"],
 )
@@ -179,7 +179,7 @@ def test_example_18_reference_of_each_port():
     assert_allclose(sweep.s[0], rounded, rtol=2e-5, atol=1e-5)
 
 
-# page 17 and later print networks of four ports; the keyword alone decides
+# page 17 prints a network of four ports; this made-up head of a file is enough to refuse it
 def test_four_ports_are_refused_by_name():
     content = """[Version] 2.1
 # GHz S MA R 50
@@ -188,7 +188,7 @@ def test_four_ports_are_refused_by_name():
 [Network Data]
 [End]
 """
-    was_read, findings = verdict(content, file="example15.ts")
+    was_read, findings = verdict(content, file="four.ts")
     assert not was_read
     assert [(f.code, f.line) for f in findings] == [("port-count", 3)]
     assert "[Number of Ports] is 4" in findings[0].message
