@@ -181,7 +181,7 @@ def _with_reference(
 
 
 def _check_noise(blocks: Blocks, ports: int, remarks: Remarks) -> None:
-    """Noise data and their number come together, and with two ports only: pages 10 to 12 of [1]_."""
+    """Noise data and their number come together, with two ports only: pages 10 to 12 of [1]_."""
     noise, count = blocks.get("Noise Data"), blocks.get("Number of Noise Frequencies")
     if noise is None and count is not None:
         remarks.error(
