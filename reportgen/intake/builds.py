@@ -22,6 +22,7 @@ from reportgen.intake.scan import STANDARD_LIMITS, scan_runs
 from reportgen.intake.sidecar import completed_entry, parse_bench, parse_build
 from reportgen.intake.sidecar_shape import nearest
 from reportgen.intake.sidecar_text import MAX_BYTES, shown_value
+from reportgen.intake.spot_readings import parse_spot_readings
 from reportgen.intake.touchstone import parse_touchstone
 from reportgen.model import (
     OUTPUT_MARKER,
@@ -154,9 +155,6 @@ class _Reading:
         except InputRejected as rejected:
             self.findings += rejected.findings
             return
-        if entry.setup is Setup.SPOT:
-            self.findings.append(_not_used("spot-not-read", "spot readings are", entry.file))
-            return
         try:
             measurement = self.measurement(data, entry, key)
         except InputRejected as rejected:
@@ -166,11 +164,16 @@ class _Reading:
         self.measurements.append(measurement)
         points = len(measurement.sweep.frequency_hz)
         self.inputs.append(_input(entry.file, data, points=points))
-        self.findings += check_sweep(measurement, self.runs.bands)
+        if entry.setup is not Setup.SPOT:
+            self.findings += check_sweep(measurement, self.runs.bands)
 
     def measurement(self, data: bytes, entry: SweepEntry, key: str) -> Measurement:
         """The sweep in its set-up; rejected when its ports contradict the set-up."""
         entry = completed_entry(entry, self.sheet, self.runs.bench)
+        if entry.setup is Setup.SPOT:
+            sweep, findings = parse_spot_readings(data, file=entry.file)
+            self.findings += findings
+            return Measurement(entry=entry, sweep=sweep)
         sweep, findings = parse_touchstone(
             data,
             file=entry.file,

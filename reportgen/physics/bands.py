@@ -40,6 +40,44 @@ def in_bands(curves: Curves, bands: Sequence[Band], power_w: float) -> tuple[Ban
     return tuple(_in_band(curves, band, power_w) for band in bands)
 
 
+def readings_in_bands(
+    curves: Curves, bands: Sequence[Band], power_w: float
+) -> tuple[BandResult, ...]:
+    """Figures of single readings: their mean in each band that holds one, nothing between them."""
+    return tuple(_readings_in_band(curves, band, power_w) for band in bands)
+
+
+def _readings_in_band(curves: Curves, band: Band, power_w: float) -> BandResult:
+    hz = curves.frequency_hz
+    inside = (hz >= band.from_hz) & (hz <= band.to_hz)
+    count = int(np.count_nonzero(inside))
+    if not count:
+        return NotMeasured(band=band, reason="no reading inside")
+    figures = {}
+    for quantity in QUANTITIES:
+        ratio = quantity.ratio(curves)
+        if ratio is not None:
+            values = quantity.value(ratio[inside], power_w)
+            mean = quantity.value(np.mean(ratio[inside], keepdims=True), power_w)
+            worst = int(
+                np.argmin(values) if quantity.better is Better.HIGHER else np.argmax(values)
+            )
+            figures[quantity.key] = Figure(
+                mean=_finite(mean[0]),
+                worst=_finite(values[worst]),
+                centre=None,
+                worst_at_hz=float(hz[inside][worst]),
+            )
+    return MeasuredBand(
+        band=band,
+        covered_hz=(band.from_hz, band.to_hz),
+        points=count,
+        interpolated=False,
+        figures=figures,
+        reason="one reading" if count == 1 else f"{count} readings",
+    )
+
+
 def _in_band(curves: Curves, band: Band, power_w: float) -> BandResult:
     hz = curves.frequency_hz
     low, high = max(band.from_hz, hz[0]), min(band.to_hz, hz[-1])
@@ -116,7 +154,7 @@ def _figure(
     """Mean of the ratio by frequency, its worst point, its value at the centre."""
     hz, within = frequency_hz[inside], ratio[inside]
     values = quantity.value(within, power_w)
-    worst = int(np.argmin(values) if quantity.better is Better.HIGHER else np.argmax(values))
+    worst = _worst_place(quantity, values)
     mean = np.array([mean_ratio(hz, within)])
     centre = np.interp([centre_hz], hz, within) if hz[0] <= centre_hz <= hz[-1] else None
     return Figure(
@@ -125,6 +163,10 @@ def _figure(
         centre=None if centre is None else _finite(quantity.value(centre, power_w)[0]),
         worst_at_hz=float(hz[worst]),
     )
+
+
+def _worst_place(quantity: Quantity, values: RealArray) -> int:
+    return int(np.argmin(values) if quantity.better is Better.HIGHER else np.argmax(values))
 
 
 def mean_ratio(frequency_hz: RealArray, ratio: RealArray) -> RealArray:

@@ -44,6 +44,7 @@ USED_SETUPS = (
     Setup.DIRECT,
     *CHECKS,
     Setup.LOAD_CHECK,
+    Setup.SPOT,
 )
 
 

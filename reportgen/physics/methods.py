@@ -77,7 +77,8 @@ class Plan:
     """One method on one set of sweeps.
 
     `unit` is None for a mean over `units`; `load_ohm` is the load that the figures hold for. Where
-    they hold for what was really on the high side instead, `had` is what was there.
+    they hold for what was really on the high side instead, `had` is what was there. `readings`:
+    single readings, with nothing between them.
     """
 
     method: Method
@@ -87,6 +88,7 @@ class Plan:
     sweeps: tuple[Sweep, ...]
     compute: Callable[[RealArray, Seen], Computed]
     had: LoadSweeps | None = None
+    readings: bool = False
     reason: str | None = None
     findings: tuple[Finding, ...] = ()
 

@@ -18,6 +18,7 @@ from reportgen.physics.methods import (
     halving,
 )
 from reportgen.physics.pairs import find_pairs
+from reportgen.physics.readings import halving_of_readings
 from reportgen.physics.single_units import direct_plans, load_only, series_resistor
 
 
@@ -45,7 +46,10 @@ def _possible(build: Build) -> Iterator[tuple[str, Callable[[], Plan]]]:
     for sweeps in loads:
         method = series_resistor if sweeps.series else load_only
         yield sweeps.measurements[0].sweep.file, partial(method, sweeps, sheet)
-    for plan in direct_plans(build.measurements, sheet):
+    for plan in (
+        *direct_plans(build.measurements, sheet),
+        *halving_of_readings(build.measurements, sheet),
+    ):
         yield plan.sweeps[0].file, partial(_as_it_is, plan)
 
 

@@ -17,7 +17,7 @@ from reportgen.model import (
     MethodResult,
     RealArray,
 )
-from reportgen.physics.bands import in_bands
+from reportgen.physics.bands import in_bands, readings_in_bands
 from reportgen.physics.checks import conditioned, corrected, find_checks
 from reportgen.physics.drawn import Drawn
 from reportgen.physics.grid import common_grid
@@ -75,6 +75,8 @@ def _solve(
     drawn: Drawn,
     checks: Sequence[Measurement],
 ) -> Solved:
+    if plan.readings:
+        return _solve_readings(plan, bands, power_w)
     grid = common_grid(plan.sweeps, bands)
     computed = plan.compute(grid.frequency_hz, AS_SWEPT)
     curves = curves_of(computed, grid.frequency_hz, grid.native)
@@ -92,6 +94,25 @@ def _solve(
         reason=plan.reason,
     )
     return Solved(plan=plan, result=result, spread=spread, computed=computed)
+
+
+def _solve_readings(plan: Plan, bands: Sequence[Band], power_w: float) -> Solved:
+    """Single readings: figures where there is one, and no intervals."""
+    hz = plan.sweeps[0].frequency_hz
+    computed = plan.compute(hz, AS_SWEPT)
+    curves = curves_of(computed, hz)
+    result = MethodResult(
+        method=plan.method,
+        unit=plan.unit,
+        units=plan.units,
+        load_ohm=plan.load_ohm,
+        curves=curves,
+        bands=readings_in_bands(curves, bands, power_w),
+        reason=plan.reason,
+    )
+    return Solved(
+        plan=plan, result=result, spread=Spread(seen=curves, drawn=curves), computed=computed
+    )
 
 
 def with_ribbon(curves: Curves, spread: Spread) -> Curves:
