@@ -167,14 +167,14 @@ def test_only_the_intended_warnings() -> None:
     assert runs().findings == ()
 
 
-def test_notes_come_from_one_path_sweeps_and_set_ups_to_come() -> None:
+def test_notes_come_from_one_path_sweeps() -> None:
     notes = {
         finding.code
         for result in results().values()
         for finding in result.findings
         if finding.severity is Severity.NOTE
     }
-    assert notes == {"one-path", "one-path-pair", "set-up-not-used"}
+    assert notes == {"one-path", "one-path-pair"}
 
 
 # --- how large the figures are -------------------------------------------------------------------
@@ -219,7 +219,7 @@ def test_fitted_strays_are_those_of_short_leads() -> None:
         key: fitted.value
         for key, result in results().items()
         for fitted in result.fitted
-        if fitted.value is not None
+        if fitted.value is not None and fitted.of.removeprefix("loads.").isalpha()
     }
     assert set(strays) == {"alder", "birch", "linden", "rowan", "willow"}
     assert all(2.5 < stray_pf < 5.5 for stray_pf in strays.values())
