@@ -243,8 +243,12 @@ def _assumes(build: Build, group: Sequence[Solved]) -> Iterator[str]:
     if sheet.core is not None:
         yield (
             "the stack: the core's impedance goes with the number of rings; leakage and winding "
-            "resistance stay, though a turn about a taller stack is longer"
+            "resistance stay, though a turn about a taller stack is longer: the match in the "
+            "highest bands comes out worse than said"
         )
     yield "the loads are resistances without reactance"
+    yield (
+        "the intervals hold what the sweeps leave uncertain, not how far these assumptions are off"
+    )
     if any(one.spread.shift for one in group):
         yield "what check sweeps say of the calibration is not used here"

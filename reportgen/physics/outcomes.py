@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Sequence
 from dataclasses import dataclass
+from functools import reduce
 
 import numpy as np
 
@@ -12,7 +13,6 @@ from reportgen.physics.quantities import decibel_loss, swr_of_reflection
 from reportgen.physics.rewound import (
     Capacitor,
     Making,
-    Ratios,
     Rewindable,
     Unit,
     interpolated,
@@ -42,19 +42,38 @@ class Outcome:
 
 
 @dataclass(frozen=True, kw_only=True, slots=True, eq=False)
+class _Sampled:
+    """The build at some frequencies: which lie in each band, and the weights of means over it."""
+
+    build: Rewindable
+    inside: tuple[slice, ...]
+    means: RealArray
+
+    def figures(self, making: Making, load_ohm: float) -> RealArray:
+        """Worst SWR of each band and of all, then heat loss likewise, (..., 2 bands + 2)."""
+        ratios = self.build.ratios(making, load_ohm)
+        worst = [ratios.reflection[..., one].max(axis=-1) for one in self.inside]
+        reflection = np.stack([*worst, np.max(worst, axis=0)], axis=-1)
+        efficiency = ratios.efficiency @ self.means
+        mean = efficiency.mean(axis=-1, keepdims=True)
+        loss = decibel_loss(np.concatenate([efficiency, mean], axis=-1))
+        return np.concatenate([swr_of_reflection(reflection), loss], axis=-1)
+
+
+@dataclass(frozen=True, kw_only=True, slots=True, eq=False)
 class Predictor:
     """The build on the swept points of its bands, and on the draws' few points."""
 
     sheet: BuildSheet
     bands: tuple[MeasuredBand, ...]
-    swept: Rewindable
-    few: Rewindable
-    drawn: Rewindable
+    swept: _Sampled
+    few: _Sampled
+    drawn: _Sampled
 
     @property
     def made(self) -> Making:
         """The build as it is."""
-        return self.swept.made
+        return self.swept.build.made
 
     @property
     def load_ohm(self) -> float:
@@ -64,14 +83,14 @@ class Predictor:
     def outcome(self, making: Making, load_ohm: float) -> Outcome:
         """The figures into a load; draws move them as they do on their few points."""
         value, few, drawn = (
-            self._figures(one.ratios(making, load_ohm), one.frequency_hz)
-            for one in (self.swept, self.few, self.drawn)
+            one.figures(making, load_ohm) for one in (self.swept, self.few, self.drawn)
         )
         moved = np.where(np.isfinite(value) & np.isfinite(few), value + drawn - few, drawn)
-        moved[..., : len(self.bands) + 1] = np.maximum(moved[..., : len(self.bands) + 1], 1)
+        half = len(self.bands) + 1
+        moved[..., :half] = np.maximum(moved[..., :half], 1)
         ends = np.quantile(moved, [0.025, 0.975], axis=0, method="inverted_cdf")
         intervals = [_interval(*three) for three in zip(value, *ends, strict=True)]
-        swr, loss = intervals[: len(intervals) // 2], intervals[len(intervals) // 2 :]
+        swr, loss = intervals[:half], intervals[half:]
         return Outcome(
             load_ohm=load_ohm,
             swr=swr[-1],
@@ -82,30 +101,14 @@ class Predictor:
             ),
         )
 
-    def _figures(self, ratios: Ratios, frequency_hz: RealArray) -> RealArray:
-        """Worst SWR of each band and of all, then heat loss likewise, (..., 2 bands + 2)."""
-        inside = [_inside(band, frequency_hz) for band in self.bands]
-        reflection = np.stack([ratios.reflection[..., one].max(axis=-1) for one in inside], axis=-1)
-        efficiency = ratios.efficiency @ _means(frequency_hz, inside)
-        worst = reflection.max(axis=-1, keepdims=True)
-        mean = efficiency.mean(axis=-1, keepdims=True)
-        return np.concatenate(
-            [
-                swr_of_reflection(np.concatenate([reflection, worst], axis=-1)),
-                decibel_loss(np.concatenate([efficiency, mean], axis=-1)),
-            ],
-            axis=-1,
-        )
-
     def reflected(self, making: Making, load_ohm: float) -> tuple[RealArray, RealArray]:
         """Worst SWR of all bands, and power reflected in the mean over them [ratio].
 
         (V,) each for capacitors (V, 1).
         """
-        reflection = self.swept.ratios(making, load_ohm).reflection
-        hz = self.swept.frequency_hz
-        means = _means(hz, [_inside(band, hz) for band in self.bands])
-        return swr_of_reflection(reflection.max(axis=-1)), (reflection @ means).mean(axis=-1)
+        reflection = self.swept.build.ratios(making, load_ohm).reflection
+        worst = swr_of_reflection(reflection.max(axis=-1))
+        return worst, (reflection @ self.swept.means).mean(axis=-1)
 
 
 def _interval(value: float, low: float, high: float) -> Interval:
@@ -133,20 +136,18 @@ def _means(frequency_hz: RealArray, inside: Sequence[slice]) -> RealArray:
 def predictor_of(
     group: Sequence[Solved], sheet: BuildSheet, bands: Sequence[MeasuredBand]
 ) -> Predictor | None:
-    """None where the method knows no chain or no circuit, or no band was measured."""
-    if not bands:
-        return None
+    """None where the method knows no chain or no circuit, or draws cover no band."""
     ratio = sheet.winding.turns_ratio
     curves_hz = [one.result.curves.frequency_hz for one in group]
-    hz = _in_any(bands, curves_hz[0])
+    draws_hz = [one.spread.seen.frequency_hz for one in group]
+    shared = reduce(np.intersect1d, draws_hz)
+    bands = [band for band in bands if shared[_inside(band, shared)].size > 1]
+    if not bands:
+        return None
+    hz, shared = (_in_any(bands, each) for each in (curves_hz[0], shared))
     swept = units_of(
         [one.computed for one in group], ratio, [interpolated(hz, each) for each in curves_hz]
     )
-    draws_hz = [one.spread.seen.frequency_hz for one in group]
-    shared = draws_hz[0]
-    for each in draws_hz[1:]:
-        shared = np.intersect1d(shared, each)
-    shared = _in_any(bands, shared)
     at = [kept(np.isin(each, shared)) for each in draws_hz]
     few = units_of([one.spread.without for one in group], ratio, at)
     drawn = units_of([one.spread.computed for one in group], ratio, at)
@@ -155,15 +156,20 @@ def predictor_of(
     return Predictor(
         sheet=sheet,
         bands=tuple(bands),
-        swept=_rewindable(sheet, hz, swept),
-        few=_rewindable(sheet, shared, few),
-        drawn=_rewindable(sheet, shared, drawn),
+        swept=_sampled(_rewindable(sheet, hz, swept), bands),
+        few=_sampled(_rewindable(sheet, shared, few), bands),
+        drawn=_sampled(_rewindable(sheet, shared, drawn), bands),
     )
 
 
 def _in_any(bands: Sequence[MeasuredBand], frequency_hz: RealArray) -> RealArray:
     wanted = [frequency_hz[_inside(band, frequency_hz)] for band in bands]
     return np.unique(np.concatenate(wanted))
+
+
+def _sampled(build: Rewindable, bands: Sequence[MeasuredBand]) -> _Sampled:
+    inside = tuple(_inside(band, build.frequency_hz) for band in bands)
+    return _Sampled(build=build, inside=inside, means=_means(build.frequency_hz, inside))
 
 
 def _rewindable(sheet: BuildSheet, hz: RealArray, units: tuple[Unit, ...]) -> Rewindable:
