@@ -100,7 +100,7 @@ def _no_sidecar(folder: str, names: list[str]) -> Finding:
     count = sum(map(is_sweep, names))
     sweeps = "1 sweep file" if count == 1 else f"{count} sweep files"
     meant = nearest(BUILD_FILE, [each for each in names if not is_sweep(each)])
-    start = f"write one: `reportgen sidecar` gives a start from the sweeps in {shown(folder)}"
+    start = f"write {shown(folder)}/build.toml; the README shows the shortest one"
     return Finding(
         severity=Severity.ERROR,
         code="no-sidecar",
