@@ -1,0 +1,47 @@
+"""Whether the intervals of a seeded population hold the truth, and how wide they are.
+
+The small run: few builds, few draws. `python tests/accuracy.py 200` is the large one.
+"""
+
+from __future__ import annotations
+
+import numpy as np
+import pytest
+from accuracy import BANDS, Case, cases_of, errors_db
+from simulation.bench import known_build
+
+from reportgen.model import Method
+
+METHODS = (Method.BISECTION, Method.BISECTION_LOAD)
+DRAWS = 150
+
+
+def population(builds: int, grade: str) -> dict[Method, list[Case]]:
+    """Pairs, both units with a load."""
+    found: dict[Method, list[Case]] = {method: [] for method in METHODS}
+    with pytest.MonkeyPatch.context() as patch:
+        patch.setattr("reportgen.physics.measure.DRAWS", DRAWS)
+        for name in ("find_budget", "find_advice"):
+            patch.setattr(f"reportgen.physics.measure.{name}", lambda question: ())
+        for seed in range(builds):
+            for case in cases_of(known_build(np.random.default_rng(seed), grade=grade), grade):
+                found.get(case.method, []).append(case)
+    return found
+
+
+@pytest.fixture(scope="module", params=[("bench", 12), ("handheld", 8)], ids=lambda one: one[0])
+def graded(request) -> tuple[str, int, dict[Method, list[Case]]]:
+    grade, builds = request.param
+    return grade, builds, population(builds, grade)
+
+
+@pytest.mark.parametrize("method", METHODS)
+def test_population(graded, method):
+    """Bands of a build err together, so the share held of few builds lies about 95 % loosely."""
+    grade, builds, found = graded
+    cases = found[method]
+    assert len(cases) == builds * len(BANDS)
+    assert 0.88 <= np.mean([case.held for case in cases]) <= 1.0
+    u95_limit_db, error_limit_db = {"bench": (0.05, 0.05), "handheld": (0.08, 0.10)}[grade]
+    assert 0 < np.median([case.u95_db for case in cases]) < u95_limit_db
+    assert np.percentile(np.abs(errors_db(cases)), 95) < error_limit_db
