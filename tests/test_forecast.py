@@ -20,6 +20,7 @@ from forecast_error import (
     cases_of,
     forecast_of_build,
     simulated,
+    solved_group,
 )
 from rich.console import Console
 from simulation.bench import known_build, sweep_of
@@ -457,18 +458,22 @@ def of(cases: list[Case], change: str) -> list[Case]:
 
 
 def test_capacitor_forecast_of_simulated_units(cases):
+    """Within 0.05; where the match is so bad that the sweeps do not know it that well, 4 %."""
     found = of(cases, CAPACITOR)
     assert len(found) == 10
-    assert max(abs(case.swr) for case in found) < 0.05
-    assert max(abs(case.heat_loss_db) for case in found) < 0.04
+    good = [case for case in found if case.swr_true < 4]
+    assert len(good) > 7
+    assert max(abs(case.swr) for case in good) < 0.05
+    assert max(abs(case.swr_share) for case in found) < 0.04
+    assert max(abs(case.heat_loss_db) for case in found) < 0.03
 
 
 @pytest.mark.parametrize(
     ("change", "swr_share", "loss_db"),
-    [(TURNS, 0.04, 0.12), (RATIO, 0.04, 0.05), (STACK, 0.04, 0.05), (LONGER, 0.35, 0.05)],
+    [(TURNS, 0.10, 0.08), (RATIO, 0.05, 0.05), (STACK, 0.05, 0.05), (LONGER, 0.40, 0.05)],
 )
 def test_forecast_of_simulated_windings(cases, change, swr_share, loss_db):
-    """The last leaves out what the forecast leaves out too: leakage of longer turns."""
+    """The last has what the forecast leaves out: leakage grows with the length of a turn."""
     found = of(cases, change)
     assert len(found) >= 20
     assert max(abs(case.swr_share) for case in found) < swr_share
@@ -476,7 +481,7 @@ def test_forecast_of_simulated_windings(cases, change, swr_share, loss_db):
 
 
 def test_curve_over_capacitors_is_that_of_simulated_units():
-    """Every value from half to twice the present one, over bands in which the match is good."""
+    """Every value from half to twice the present one."""
     known = known_build(np.random.default_rng(71))
     found = forecast_of_build(known.build).capacitor
     units: list[Unit] = [known.units[name] for name in "AB"]
@@ -492,7 +497,7 @@ def test_curve_over_capacitors_is_that_of_simulated_units():
 
 
 def printed(found: Forecast, locale: str = "en") -> str:
-    console = Console(width=120, record=True, file=None, quiet=False, force_terminal=False)
+    console = Console(width=120)
     with console.capture() as capture:
         print_forecast(console, found, locale)
     return capture.get()
@@ -510,9 +515,6 @@ def test_forecast_in_the_terminal():
     assert "\x1b" not in text
     for words in found.assumes:
         assert words in text
-    assert "," not in text.partition("Predicted, not measured")[0].replace("now,", "").replace(
-        "turns,", ""
-    ).replace("side,", "").replace("ratio,", "")
 
 
 def test_forecast_in_the_terminal_with_decimal_commas():
@@ -522,6 +524,15 @@ def test_forecast_in_the_terminal_with_decimal_commas():
 
 
 def test_bands_of_the_forecast_are_those_of_the_result():
+    """Nothing changed gives the published worst SWR and mean heat loss again, interval and all."""
     known = known_build(np.random.default_rng(72))
     found = forecast_of_build(known.build)
     assert [band.band for band in found.loads[0].bands] == [band.name for band in BANDS]
+    assert found.loads[2] == found.capacitor.now
+    _, bands = solved_group(known.build)
+    for one, band in zip(found.capacitor.now.bands, bands, strict=True):
+        swr, loss = band.figures["swr"], band.figures["heat_loss_db"]
+        assert one.swr.value == pytest.approx(swr.worst)
+        assert one.swr.high95 == pytest.approx(swr.worst_high95)
+        assert one.heat_loss_db.value == pytest.approx(loss.mean)
+        assert one.heat_loss_db.low95 == pytest.approx(loss.low95)
