@@ -14,8 +14,9 @@ from simulation.transformer import chain_of_unit, random_unit, twin_of
 from reportgen.model import BenchSheet, BuildResult, Calibration, Load, Measurement
 from reportgen.physics.allocations import amateur_bands
 from reportgen.physics.compare import compare
-from reportgen.physics.drawn import ALL, CLOSING_RATIO, Contribution, Drawn
+from reportgen.physics.drawn import ALL, CLOSING_RATIO, UNMEASURED_RATIO, Contribution, Drawn
 from reportgen.physics.measure import measure_build
+from reportgen.physics.pairs import find_pairs, scattering_of_pair
 from reportgen.physics.seen import AS_SWEPT
 from reportgen.physics.uncertainty import half_width
 
@@ -53,7 +54,7 @@ def inputs(seen: Drawn) -> dict[str, np.ndarray]:
         "reflection": seen.one_port(LOADED, HZ),
         "s11": pair.s11,
         "s21": pair.s21,
-        "guess of s22": one_path.s22 - seen._as_connected(ONE_PATH, HZ, 0, 0),
+        "guess of s22": 1 + one_path.s22 - one_path.s11,
         "resistance": seen.resistance_ohm("main", LOAD),
         "body": seen.body_f("main", LOAD),
         "stray": seen.stray_f("main", 4.0),
@@ -83,9 +84,17 @@ def test_each_contribution_moves_what_it_should_and_nothing_else(one, monkeypatc
     moved = {
         name
         for name, draws in found.items()
-        if np.max(np.std(draws, axis=0)) > 1e-9 * np.max(np.abs(draws) + 1e-30)
+        if np.max(np.std(draws, axis=0)) > 1e-9 * np.max(np.abs(draws))
     }
     assert moved == MOVED[one]
+
+
+def test_an_unmeasured_path_makes_the_pair_less_sure():
+    """S22 - S11 of the pair moves with its draws, and the pair's matrix keeps it."""
+    (pair,) = find_pairs([ONE_PATH])
+    only = drawn_by(frozenset({Contribution.UNMEASURED}))
+    s = scattering_of_pair(pair, [only.two_port(ONE_PATH, HZ)])
+    assert np.std(s.s22 - s.s11, axis=0) == pytest.approx(UNMEASURED_RATIO, rel=0.25)
 
 
 def test_nothing_drawn_is_what_was_swept():

@@ -116,7 +116,11 @@ class Drawn(Seen):
         s21 = self._as_connected(one, frequency_hz, 1, 0)
         forward = self._port(one, frequency_hz, 1)
         if one.sweep.one_path:
-            return one_path_corrected(s11, s21, forward, self._unmeasured(one, s11, frequency_hz))
+            guess = self._unmeasured(one, s11, frequency_hz)
+            found = one_path_corrected(s11, s21, forward, guess)
+            if one.entry.setup is not Setup.BACK_TO_BACK:
+                return found
+            return Scattering(found.s11, found.s12, found.s21, found.s11 + guess - s11)
         s22 = self._as_connected(one, frequency_hz, 1, 1)
         s12 = self._as_connected(one, frequency_hz, 0, 1)
         seen = Scattering(s11, s12, s21, s22)

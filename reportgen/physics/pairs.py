@@ -84,8 +84,8 @@ def scattering_of_pair(pair: Pair, scatterings: Sequence[Scattering]) -> Scatter
             forward.append((s.s11, s.s21))
         if not straight or not one.sweep.one_path:
             backward.append((s.s22, s.s12))
-    if not forward or not backward:
-        forward = backward = forward or backward
+    forward = forward or [(s.s11, s.s21) for s in scatterings]
+    backward = backward or [(s.s22, s.s12) for s in scatterings]
     s11, s21 = (np.mean(part, axis=0) for part in zip(*forward, strict=True))
     s22, s12 = (np.mean(part, axis=0) for part in zip(*backward, strict=True))
     return Scattering(s11, s12, s21, s22)
