@@ -140,7 +140,7 @@ def disagreement(one: Agreement, differences: Mapping[str, RealArray]) -> Findin
         Draws of the difference in each band, by frequency [dB].
     """
     by_band = np.array([np.median(draws) for draws in differences.values()])
-    rises = abs(by_band[-1]) > _RISE * max(abs(float(np.median(by_band))), 0.01)
+    rises = abs(by_band[-1]) > _RISE * max(abs(by_band[0]), 0.01)
     if not {one.method, one.against} & set(_LOADED):
         cause = "the units of the pairs may have been mixed up, or the fixture moved"
         remedy = "check the units of each sweep"
