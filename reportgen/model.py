@@ -559,6 +559,62 @@ class Judgement(StrEnum):
 
 
 @dataclass(frozen=True, kw_only=True, slots=True)
+class Interval:
+    """A value with the ends of its 95 % interval; None: not known, or infinite."""
+
+    value: float
+    low95: float | None
+    high95: float | None
+
+
+@dataclass(frozen=True, kw_only=True, slots=True)
+class HeatSplitBand:
+    """Heat at the rated power by part [W], and the core's share of it [ratio]."""
+
+    band: str
+    winding_w: float
+    core_w: float
+    capacitor_w: float
+    core_share: Interval
+
+
+@dataclass(frozen=True, kw_only=True, slots=True)
+class WindingFigures:
+    """What the circuit says of the winding, at the low side."""
+
+    leakage_h: Interval
+    magnetising_h: Interval
+    magnetising_at_hz: float
+    coupling_ratio: Interval
+
+
+@dataclass(frozen=True, kw_only=True, slots=True, eq=False)
+class Permeability:
+    """Relative permeability of the core over frequency, (F,) each.
+
+    `lossy` is the lossy part, positive; the real part means something up to `real_to_hz`.
+    """
+
+    frequency_hz: RealArray
+    real: RealArray
+    real_low95: RealArray
+    real_high95: RealArray
+    real_to_hz: float
+    lossy: RealArray
+    lossy_low95: RealArray
+    lossy_high95: RealArray
+
+
+@dataclass(frozen=True, kw_only=True, slots=True, eq=False)
+class HeatSplit:
+    """Where the heat goes."""
+
+    bands: tuple[HeatSplitBand, ...]
+    winding: WindingFigures
+    permeability: Permeability | None
+
+
+@dataclass(frozen=True, kw_only=True, slots=True)
 class LotBand:
     """Heat loss of several units of a build in one band [dB]."""
 
@@ -645,5 +701,6 @@ class BuildResult:
     budget: tuple[BudgetLine, ...] = ()
     advice: tuple[Advice, ...] = ()
     limits: tuple[LimitResult, ...] = ()
+    heat_split: HeatSplit | None = None
     lot: Lot | None = None
     repeatability: tuple[Repeatability, ...] = ()

@@ -35,13 +35,14 @@ class Spread:
     """What draws of the inputs do to the curves of a method.
 
     `seen` holds curves of (F,) without draws, `drawn` of (K, F), at the same few frequencies;
-    `computed` is all that the plan made of the draws; `shift` what check sweeps added to each
-    curve of `seen`, (F,).
+    `computed` is all that the plan made of the draws, `without` of no draws; `shift` what check
+    sweeps added to each curve of `seen`, (F,).
     """
 
     seen: Curves
     drawn: Curves
     computed: Computed = field(default_factory=Computed)
+    without: Computed = field(default_factory=Computed)
     shift: Mapping[str, RealArray] = field(default_factory=dict)
 
 
@@ -55,11 +56,12 @@ def draw_grid(from_hz: float, to_hz: float, bands: Sequence[Band]) -> RealArray:
 
 def spread_of(plan: Plan, frequency_hz: RealArray, drawn: Seen) -> Spread:
     """One plan with draws of its inputs at `frequency_hz`, within its sweeps."""
-    computed = plan.compute(frequency_hz, drawn)
+    computed, without = (plan.compute(frequency_hz, seen) for seen in (drawn, AS_SWEPT))
     return Spread(
-        seen=curves_of(plan.compute(frequency_hz, AS_SWEPT), frequency_hz),
+        seen=curves_of(without, frequency_hz),
         drawn=curves_of(computed, frequency_hz),
         computed=computed,
+        without=without,
     )
 
 
