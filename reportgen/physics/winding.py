@@ -20,7 +20,7 @@ import numpy as np
 from reportgen.model import ComplexArray, RealArray
 from reportgen.physics.bisection import Halved
 
-_SPLIT_ROUNDS = 8
+_NEWTON_STEPS = 5
 
 
 @dataclass(frozen=True, slots=True)
@@ -137,15 +137,22 @@ def arms_seen(halved: Halved, arms: Arms) -> Arms:
     -----
     Lead, capacitor, high-side capacitance and the share of the series arm behind the core stay the
     circuit's. With z the whole series arm and y the core, Zshort = z1 + z2/(1 + y z2) and
-    Zopen = z1 + 1/(y + yh/(1 + z2 yh)); a few rounds settle both.
+    Zopen = z1 + 1/(y + yh/(1 + z2 yh)): Newton's steps in z, y following from Zopen. Plain rounds
+    run away near the resonance of the high side's capacitance with the leakage behind the core.
     """
     seen_open = 1 / (1 / (halved.z_open_ohm - arms.lead_ohm) - arms.capacitor_s)
     seen_short = 1 / (1 / (halved.z_short_ohm - arms.lead_ohm) - arms.capacitor_s)
     z = seen_short
-    for _ in range(_SPLIT_ROUNDS):
+    for _ in range(_NEWTON_STEPS):
         behind = arms.share * z
-        y = 1 / (seen_open - z + behind) - arms.high_s / (1 + behind * arms.high_s)
-        z = seen_short + y * behind**2 / (1 + y * behind)
+        high = arms.high_s / (1 + behind * arms.high_s)
+        gap = 1 / (seen_open - z + behind)
+        below = 1 + behind * (gap - high)
+        slope_y = gap**2 * (1 - arms.share) + arms.share * high**2
+        slope = 1 - arms.share + (arms.share - behind**2 * slope_y) / below**2
+        z = z - (z - behind + behind / below - seen_short) / slope
+    behind = arms.share * z
+    y = 1 / (seen_open - z + behind) - arms.high_s / (1 + behind * arms.high_s)
     return replace(arms, series_ohm=z, shunt_s=y)
 
 
