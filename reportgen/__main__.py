@@ -12,7 +12,13 @@ from pathlib import Path
 from typing import TYPE_CHECKING
 
 from reportgen import __version__
-from reportgen.errors import InputRejected, OutputError, ReportError, UsageError
+from reportgen.errors import (
+    InputRejected,
+    NotMeasurable,
+    OutputError,
+    ReportError,
+    UsageError,
+)
 
 if TYPE_CHECKING:
     from rich.console import Console
@@ -69,6 +75,7 @@ def _parser() -> argparse.ArgumentParser:
     _add_publish(commands)
     _add_inspect(commands)
     _add_table(commands)
+    _add_forecast(commands)
     return parser
 
 
@@ -118,6 +125,13 @@ def _add_jobs(command: argparse.ArgumentParser) -> None:
         default=os.cpu_count() or 1,
         help="builds worked on at the same time (default: one for each core)",
     )
+
+
+def _add_forecast(commands: argparse._SubParsersAction[argparse.ArgumentParser]) -> None:
+    text = "say what to wind next: other capacitors, turns, stacks and loads for one build"
+    forecast = commands.add_parser("forecast", help=text, description=text)
+    forecast.add_argument("build", metavar="BUILD", type=Path, help="a build folder")
+    forecast.set_defaults(command=_forecast)
 
 
 def _jobs(text: str) -> int:
@@ -170,8 +184,23 @@ def _table(options: argparse.Namespace) -> int:
     from reportgen.pages.terminal import print_bands
     from reportgen.pipeline import measure_folder
 
-    result, runs = measure_folder(options.build)
-    print_bands(_console(), result, runs.bench)
+    measured, runs = measure_folder(options.build)
+    print_bands(_console(), measured.result, runs.bench)
+    return DONE
+
+
+def _forecast(options: argparse.Namespace) -> int:
+    from reportgen.pages.forecast_terminal import print_forecast
+    from reportgen.pipeline import measure_folder
+
+    measured, runs = measure_folder(options.build)
+    forecast = measured.forecast()
+    if forecast is None:
+        raise NotMeasurable(
+            "the sweeps do not tell the winding apart, so nothing can be forecast; sweep two "
+            "units back to back, or one with its high side open and shorted"
+        )
+    print_forecast(_console(), forecast, runs.bench.locale)
     return DONE
 
 

@@ -30,7 +30,7 @@ from reportgen.output.manifest import (
     read_earlier,
 )
 from reportgen.output.placing import open_output, place_file, remove_files
-from reportgen.physics.measure import measure_build
+from reportgen.physics.measure import Measured, measure
 
 Announce = Callable[[str, int, int], None]
 
@@ -92,7 +92,7 @@ def inspect(path: Path, jobs: int, announce: Announce) -> Outcome:
     return _make_all(Task(runs=open_runs(path)), jobs, announce)
 
 
-def measure_folder(path: Path) -> tuple[BuildResult, Runs]:
+def measure_folder(path: Path) -> tuple[Measured, Runs]:
     """One build folder, computed.
 
     Raises
@@ -103,7 +103,7 @@ def measure_folder(path: Path) -> tuple[BuildResult, Runs]:
         Nothing can be computed from it.
     """
     runs, folder = _find_build(path)
-    return measure_build(read_build(runs, folder), runs.bench, runs.bands), runs
+    return measure(read_build(runs, folder), runs.bench, runs.bands), runs
 
 
 # --- what is asked for -----------------------------------------------------------------------

@@ -208,14 +208,6 @@ def check_sweep(setup: Setup, file: str) -> Measurement:
     return Measurement(entry=SweepEntry(file=file, setup=setup), sweep=sweep_of(file, HZ, gamma))
 
 
-def test_sweep_from_which_no_figure_is_taken_is_noted(units, sheet):
-    check = check_sweep(Setup.ANTENNA, "check.s1p")
-    result = measure(build_of(sheet, [pair(units, "AB"), check]))
-    (found,) = (one for one in result.findings if one.code == "set-up-not-used")
-    assert (found.severity, found.file) == ("note", "check.s1p")
-    assert found.message == "antenna sweeps are read and checked; no figure is taken from them"
-
-
 def test_nothing_that_a_method_can_use(sheet):
     build = build_of(sheet, [check_sweep(Setup.LOAD_CHECK, "check.s1p")])
     with pytest.raises(NotMeasurable) as raised:

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Sequence
+from dataclasses import dataclass
 from typing import TypedDict
 
 import numpy as np
@@ -18,16 +19,16 @@ from reportgen.model import (
     Finding,
     Fitted,
     Limits,
+    MeasuredBand,
     MethodResult,
-    Setup,
-    Severity,
 )
 from reportgen.physics.agree import find_agreements
 from reportgen.physics.bandwidths import find_bandwidths
 from reportgen.physics.budget import Question, find_advice, find_budget
-from reportgen.physics.checks import CHECKS, check_findings
+from reportgen.physics.checks import check_findings
 from reportgen.physics.choose import chosen_of, rank
 from reportgen.physics.drawn import Drawn
+from reportgen.physics.forecast import Forecast, forecast_of
 from reportgen.physics.judge import judge
 from reportgen.physics.loads import find_load_sweeps
 from reportgen.physics.lots import find_repeatability, lot_of
@@ -35,22 +36,28 @@ from reportgen.physics.methods import NOT_DETERMINED_PF
 from reportgen.physics.solve import Solved, bands_with_loss, loss_draws_db, solve_all
 from reportgen.physics.uncertainty import DRAWS, half_width
 
-USED_SETUPS = (
-    Setup.BACK_TO_BACK,
-    Setup.LOAD,
-    Setup.OPEN,
-    Setup.SHORT,
-    Setup.SERIES_RESISTOR,
-    Setup.DIRECT,
-    *CHECKS,
-    Setup.LOAD_CHECK,
-    Setup.SPOT,
-)
+
+@dataclass(frozen=True, slots=True, eq=False)
+class Measured:
+    """A build's result, and the method behind it, once for each pair or unit."""
+
+    result: BuildResult
+    group: tuple[Solved, ...]
+
+    def forecast(self) -> Forecast | None:
+        """What to wind next; None where the result's method does not know the winding."""
+        bands = [band for band in self.result.chosen.bands if isinstance(band, MeasuredBand)]
+        return forecast_of(self.group, self.result.build, bands) if bands else None
+
+
+def measure_build(build: Build, bench: BenchSheet, known: Sequence[Band]) -> BuildResult:
+    """Everything that a build's sweeps say; see `measure`."""
+    return measure(build, bench, known).result
 
 
 @np.errstate(divide="ignore", invalid="ignore", over="ignore")
-def measure_build(build: Build, bench: BenchSheet, known: Sequence[Band]) -> BuildResult:
-    """Everything that a build's sweeps say.
+def measure(build: Build, bench: BenchSheet, known: Sequence[Band]) -> Measured:
+    """Everything that a build's sweeps say, and what it rests on.
 
     Parameters
     ----------
@@ -77,7 +84,7 @@ def measure_build(build: Build, bench: BenchSheet, known: Sequence[Band]) -> Bui
     agreements, doubts = find_agreements(solved, drawn)
     checked = check_findings(build.measurements, drawn)
     methods = tuple(one.result for one in solved)
-    return BuildResult(
+    result = BuildResult(
         build=build,
         power_w=power_w,
         chosen=chosen,
@@ -85,7 +92,7 @@ def measure_build(build: Build, bench: BenchSheet, known: Sequence[Band]) -> Bui
         methods=methods,
         bandwidths=find_bandwidths(chosen.curves, bench.limits.get("all", Limits())),
         fitted=_fitted(build, solved),
-        findings=_unique((*build.findings, *findings, *doubts, *checked, *_unused(build))),
+        findings=_unique((*build.findings, *findings, *doubts, *checked)),
         loss_draws_db=loss_draws_db(chosen, spread),
         agreements=agreements,
         limits=judge(chosen.bands, bench),
@@ -93,6 +100,7 @@ def measure_build(build: Build, bench: BenchSheet, known: Sequence[Band]) -> Bui
         repeatability=find_repeatability(build.measurements),
         **_budget_and_advice(build, bench, group, chosen),
     )
+    return Measured(result, tuple(group))
 
 
 def _touched(build: Build, known: Sequence[Band]) -> tuple[Band, ...]:
@@ -167,22 +175,6 @@ def _fitted_stray(name: str, stray_f: float, spread_f: float, one: Solved) -> Fi
     drawn = one.spread.computed.strays.get(name)
     u95 = None if drawn is None else half_width(drawn.stray_f) * 1e12
     return Fitted(quantity="stray_pf", of=of, value=stray_f * 1e12, u95=u95)
-
-
-def _unused(build: Build) -> tuple[Finding, ...]:
-    """Sweeps of set-ups from which no figure is taken."""
-    return tuple(
-        Finding(
-            severity=Severity.NOTE,
-            code="set-up-not-used",
-            file=one.sweep.file,
-            message=f"{one.entry.setup.value} sweeps are read and checked; no figure is taken "
-            "from them",
-            remedy="nothing to do",
-        )
-        for one in build.measurements
-        if one.entry.setup not in USED_SETUPS
-    )
 
 
 def _unique(findings: Sequence[Finding]) -> tuple[Finding, ...]:
