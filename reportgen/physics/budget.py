@@ -30,6 +30,7 @@ from reportgen.physics.network import (
     Scattering,
     input_impedance_ohm,
     reflection_of_impedance,
+    resistor_ohm,
     scattering_of_chain,
 )
 from reportgen.physics.plans import find_plans
@@ -40,6 +41,9 @@ BUDGET_DRAWS = 100
 """Draws of each contribution by itself: its u95, 1.96 deviations, is then known to 7 %."""
 
 COVERAGE_FACTOR = 1.96
+
+USUAL_STRAY_F = 4e-12
+"""Across a load on short leads; one that had none would promise too much [F]."""
 
 _SMALLEST_SHARE = 0.1
 _WORTH_A_SWEEP = 0.8
@@ -165,7 +169,8 @@ class _Maker:
     def load(self, unit: str) -> Measurement:
         load_ohm = self.build.sheet.nominal_load_ohm
         load = Load(resistance_ohm=load_ohm, tolerance_percent=0.5)
-        gamma = reflection_of_impedance(input_impedance_ohm(self.chain, load_ohm))
+        had_ohm = resistor_ohm(load_ohm, USUAL_STRAY_F, self.frequency_hz)
+        gamma = reflection_of_impedance(input_impedance_ohm(self.chain, had_ohm))
         return self._one_port(unit, Setup.LOAD, gamma, load)
 
     def terminations(self, unit: str) -> Iterator[Measurement]:
