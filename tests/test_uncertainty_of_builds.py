@@ -16,7 +16,7 @@ METHODS = (Method.BISECTION, Method.BISECTION_LOAD)
 DRAWS = 150
 
 
-def population(builds: int, grade: str) -> dict[Method, list[Case]]:
+def population(builds: int, grade: str, *, one_path: bool) -> dict[Method, list[Case]]:
     """Pairs, both units with a load."""
     found: dict[Method, list[Case]] = {method: [] for method in METHODS}
     with pytest.MonkeyPatch.context() as patch:
@@ -24,24 +24,26 @@ def population(builds: int, grade: str) -> dict[Method, list[Case]]:
         for name in ("find_budget", "find_advice"):
             patch.setattr(f"reportgen.physics.measure.{name}", lambda question: ())
         for seed in range(builds):
-            for case in cases_of(known_build(np.random.default_rng(seed), grade=grade), grade):
+            rng = np.random.default_rng(seed)
+            for case in cases_of(known_build(rng, grade=grade, one_path=one_path), grade):
                 found.get(case.method, []).append(case)
     return found
 
 
-@pytest.fixture(scope="module", params=[("bench", 12), ("handheld", 8)], ids=lambda one: one[0])
-def graded(request) -> tuple[str, int, dict[Method, list[Case]]]:
-    grade, builds = request.param
-    return grade, builds, population(builds, grade)
+CONDITIONS = {
+    "bench": ("bench", False, 12, 0.05, 0.05),
+    "handheld": ("handheld", False, 8, 0.08, 0.10),
+    "handheld, one path": ("handheld", True, 8, 0.08, 0.10),
+}
+"""Grade, one path or both, builds, and what median u95 and 95 % of the errors keep to [dB]."""
 
 
-@pytest.mark.parametrize("method", METHODS)
-def test_population(graded, method):
+@pytest.mark.parametrize("condition", CONDITIONS.values(), ids=CONDITIONS)
+def test_population(condition):
     """Bands of a build err together, so the share held of few builds lies about 95 % loosely."""
-    grade, builds, found = graded
-    cases = found[method]
-    assert len(cases) == builds * len(BANDS)
-    assert 0.88 <= np.mean([case.held for case in cases]) <= 1.0
-    u95_limit_db, error_limit_db = {"bench": (0.05, 0.05), "handheld": (0.08, 0.10)}[grade]
-    assert 0 < np.median([case.u95_db for case in cases]) < u95_limit_db
-    assert np.percentile(np.abs(errors_db(cases)), 95) < error_limit_db
+    grade, one_path, builds, u95_limit_db, error_limit_db = condition
+    for cases in population(builds, grade, one_path=one_path).values():
+        assert len(cases) == builds * len(BANDS)
+        assert 0.88 <= np.mean([case.held for case in cases]) <= 1.0
+        assert 0 < np.median([case.u95_db for case in cases]) < u95_limit_db
+        assert np.percentile(np.abs(errors_db(cases)), 95) < error_limit_db
