@@ -5,6 +5,7 @@ from dataclasses import replace
 from html.parser import HTMLParser
 
 import result_samples as samples
+from sure_samples import sure
 
 from reportgen.pages.index import render_index_html
 from reportgen.pages.report import render_report_html
@@ -47,6 +48,7 @@ BASELINE = samples.full(1.2, "Birch", "birch")
 CASES = {
     "full": (samples.full(), BASELINE, False),
     "judged": (samples.full(u95=0.03), BASELINE, True),
+    "sure": (sure(), BASELINE, True),
     "load only": (samples.load_only(), BASELINE, False),
     "partial": (samples.partial(), None, False),
     "hostile": (samples.hostile(), None, False),

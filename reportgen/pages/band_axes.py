@@ -3,17 +3,20 @@
 from __future__ import annotations
 
 from collections.abc import Sequence
+from dataclasses import replace
 
 from matplotlib.axes import Axes
 from matplotlib.figure import Figure
 
 from reportgen.pages.canvas import (
+    RIBBON_STRENGTH,
     Size,
     label_style,
     name_in_chart,
     new_figure,
     size_of,
     text_style,
+    text_width,
 )
 from reportgen.pages.look import LIGHT
 
@@ -21,9 +24,11 @@ from reportgen.pages.look import LIGHT
 def band_figure(size: Size, names: Sequence[str], head_lines: int) -> tuple[Figure, Axes]:
     """Axes with one row for each band, the first at the top, and room for lines above."""
     top, bottom = size.line * head_lines + 4, 2.0 * size.letters
+    labels = [name_in_chart(name) for name in names]
+    widest = max(text_width(label, size) for label in labels)
+    size = replace(size, left=max(size.left, widest + 8))
     figure, axes = new_figure(size, size.row * len(names) + top + bottom, top, bottom)
     axes.set_ylim(len(names) - 0.5, -0.5)
-    labels = [name_in_chart(name) for name in names]
     axes.set_yticks(range(len(names)), labels, minor=False, **text_style(size))
     return figure, axes
 
@@ -64,6 +69,20 @@ def add_stems(
             zorder=3,
             clip_on=False,
         )
+
+
+def add_intervals(
+    axes: Axes, ends: Sequence[tuple[float | None, float | None]], colour: str
+) -> None:
+    """The 95 % interval of each row as a broad, light line behind the dot."""
+    known = [
+        (row, low, high)
+        for row, (low, high) in enumerate(ends)
+        if low is not None and high is not None
+    ]
+    if known:
+        rows, lows, highs = zip(*known, strict=True)
+        axes.hlines(rows, lows, highs, color=colour, alpha=RIBBON_STRENGTH, linewidth=7, zorder=1.5)
 
 
 def add_figures(axes: Axes, labels: Sequence[str]) -> None:

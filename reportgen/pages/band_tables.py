@@ -1,29 +1,25 @@
-"""Tables with a line for each band: the figures of a result, and its baseline beside it."""
+"""The table of figures: every reported quantity in every band, mean and worst."""
 
 from __future__ import annotations
 
-from collections.abc import Callable, Mapping, Sequence
-from math import isnan
+from collections.abc import Callable, Iterator, Mapping, Sequence
 
 from reportgen.model import (
-    BandComparison,
     BandResult,
     BenchSheet,
     BuildResult,
-    Comparison,
     Figure,
     MeasuredBand,
     MethodResult,
     NotMeasured,
 )
-from reportgen.pages.display import (
-    NOT_MEASURED,
-    interval,
-    megahertz_range,
-    number,
-    percent_of,
-    plus_minus,
-    quantity_number,
+from reportgen.pages.display import NOT_MEASURED, megahertz_range
+from reportgen.pages.intervals import (
+    half_width,
+    mean_text,
+    mean_with_interval,
+    worst_text,
+    worst_with_interval,
 )
 from reportgen.pages.sentences import counted, listed
 from reportgen.pages.summary import figure_of, limits_by_quantity, means, measured_bands
@@ -35,50 +31,24 @@ _EFFICIENCY = (
     " Efficiency is power into the load over power entering the low side; heat loss is the same "
     "in decibels."
 )
-_LOOKS = {"mean": "", "worst": "soft", "95 %": "soft range"}
-_INTERVALS = " 95 % is the interval that holds the mean with that confidence."
-
-
-def figure_text(
-    quantity: Quantity, figure: Figure | None, *, limits: Sequence[float] = (), locale: str = "en"
-) -> str:
-    """A band's mean, to the place that its interval allows."""
-    value = None if figure is None else figure.mean
-    return _value_text(quantity, figure, value, limits, locale)
-
-
-def _value_text(
-    quantity: Quantity,
-    figure: Figure | None,
-    value: float | None,
-    limits: Sequence[float],
-    locale: str,
-) -> str:
-    if figure is None or value is None or isnan(value):
-        return NOT_MEASURED
-    return quantity_number(quantity, value, u95=half_width(figure), limits=limits, locale=locale)
-
-
-def half_width(figure: Figure) -> float | None:
-    """Half of the 95 % interval; None where it is not known."""
-    if figure.low95 is None or figure.high95 is None:
-        return None
-    return (figure.high95 - figure.low95) / 2
-
-
-# --- the figures of a result ---------------------------------------------------------------------
+_INTERVALS = " After \u00b1 stands half of the 95\u00a0% interval; all digits follow it."
+_WITH_INTERVAL = ("efficiency_ratio", "heat_loss_db", "return_loss_db")
 
 
 def band_table(result: BuildResult, bench: BenchSheet) -> Table | None:
-    """Every reported quantity in every band: mean, worst and, where it is known, the interval."""
+    """Every reported quantity in every band: mean and worst, with intervals where it is known."""
     shown = measured_quantities(result.chosen)
     if not shown:
         return None
+    sure = _intervals_known(result.chosen)
     table = Table(
         caption=_caption(result.chosen),
         corner="Band",
         sub="Value",
-        columns=tuple(Column(label=one.label, unit=one.unit) for one in shown),
+        columns=tuple(
+            Column(label=one.label, unit=one.unit, wide=sure and one.key in _WITH_INTERVAL)
+            for one in shown
+        ),
         groups=tuple(
             _band_rows(band, shown, result.power_w, bench) for band in result.chosen.bands
         ),
@@ -87,10 +57,14 @@ def band_table(result: BuildResult, bench: BenchSheet) -> Table | None:
 
 
 def _caption(method: MethodResult) -> str:
-    found = [figure for band in measured_bands(method) for figure in band.figures.values()]
-    known = any(half_width(figure) is not None for figure in found)
     lossy = bool(means(method, "efficiency_ratio"))
-    return _CAPTION + (_EFFICIENCY if lossy else "") + (_INTERVALS if known else "")
+    sure = _intervals_known(method)
+    return _CAPTION + (_EFFICIENCY if lossy else "") + (_INTERVALS if sure else "")
+
+
+def _intervals_known(method: MethodResult) -> bool:
+    found = [figure for band in measured_bands(method) for figure in band.figures.values()]
+    return any(half_width(figure.low95, figure.high95) is not None for figure in found)
 
 
 def measured_quantities(method: MethodResult) -> tuple[Quantity, ...]:
@@ -114,7 +88,7 @@ def _band_rows(
         words = f"{NOT_MEASURED}: {band.reason}"
         return (Row(head=band.band.name, words=words, words_columns=len(shown) + 1),)
     limits = limits_by_quantity(bench, band.band.name, power_w)
-    lines = _lines(band, shown, limits, bench.locale)
+    lines = list(_cells(band, shown, limits, bench.locale))
     note = band_note(band, bench.locale)
     rows = len(lines) + bool(note)
     found = [
@@ -126,46 +100,22 @@ def _band_rows(
     return tuple(found)
 
 
-def _lines(
+def _cells(
     band: MeasuredBand, shown: Sequence[Quantity], limits: Mapping[str, float], locale: str
-) -> list[tuple[str, tuple[Cell, ...]]]:
-    writers: dict[str, Callable[..., str]] = {"mean": figure_text, "worst": _worst_text}
-    if any(half_width(figure) is not None for figure in band.figures.values()):
-        writers["95 %"] = _interval_text
-    return [
-        (
-            sub,
-            figures(
-                [
-                    write(
-                        quantity,
-                        band.figures.get(quantity.key),
-                        limits=[limits[quantity.key]] if quantity.key in limits else [],
-                        locale=locale,
-                    )
-                    for quantity in shown
-                ],
-                _LOOKS[sub],
-            ),
-        )
-        for sub, write in writers.items()
-    ]
+) -> Iterator[tuple[str, tuple[Cell, ...]]]:
+    for sub, look in (("mean", ""), ("worst", "soft")):
+        texts = []
+        for quantity in shown:
+            write = _writer(sub, quantity)
+            own = [limits[quantity.key]] if quantity.key in limits else []
+            texts.append(write(quantity, band.figures.get(quantity.key), limits=own, locale=locale))
+        yield sub, figures(texts, look)
 
 
-def _worst_text(
-    quantity: Quantity, figure: Figure | None, *, limits: Sequence[float], locale: str
-) -> str:
-    value = None if figure is None else figure.worst
-    return _value_text(quantity, figure, value, limits, locale)
-
-
-def _interval_text(quantity: Quantity, figure: Figure | None, *, locale: str, **_: object) -> str:
-    if figure is None or figure.low95 is None or figure.high95 is None:
-        return "not known"
-    low, high = figure.low95, figure.high95
-    if quantity.percent:
-        low, high = percent_of(low), percent_of(high)
-    return interval(low, high, quantity.decimals, locale=locale)
+def _writer(sub: str, quantity: Quantity) -> Callable[..., str]:
+    if quantity.key in _WITH_INTERVAL:
+        return mean_with_interval if sub == "mean" else worst_with_interval
+    return mean_text if sub == "mean" else worst_text
 
 
 def band_note(band: MeasuredBand, locale: str) -> str:
@@ -193,58 +143,13 @@ def missing_quantities(result: BuildResult) -> str:
     return f"Not measured: {listed(missing)}{reason}."
 
 
-# --- against the baseline ------------------------------------------------------------------------
-
-
-def comparison_table(
-    result: BuildResult, comparison: Comparison | None, baseline: BuildResult | None, locale: str
-) -> Table | None:
-    """Heat loss of both builds by band, the difference and its verdict; None: no band compares."""
-    if comparison is None or all(band.heat_loss_db is None for band in comparison.bands):
-        return None
-    judged = any(band.verdict and band.heat_loss_db is not None for band in comparison.bands)
-    sides = {"This build": result.chosen} | (
-        {} if baseline is None else {comparison.name: baseline.chosen}
-    )
-    columns = [Column(label=name, unit="dB") for name in sides]
-    columns += [Column(label="Difference", unit="dB"), Column(label="Difference", unit="W")]
-    columns += [Column(label="Verdict", words=True)] if judged else []
-    table = Table(
-        caption="Mean heat loss in each band; a negative difference is less.",
-        corner="Band",
-        columns=tuple(columns),
-        groups=tuple(
-            (_comparison_row(band, list(sides.values()), len(columns), judged, locale),)
-            for band in comparison.bands
-        ),
-    )
-    return with_points_aligned(table, locale)
-
-
-def _comparison_row(
-    band: BandComparison, sides: Sequence[MethodResult], columns: int, judged: bool, locale: str
-) -> Row:
-    if band.heat_loss_db is None:
-        words = ": ".join(
-            part for part in (band.verdict.value if band.verdict else "", band.reason or "") if part
-        )
-        return Row(head=band.band, words=words or "not comparable", words_columns=columns)
-    cells = [Cell(text=heat_loss_text(side, band.band, locale)) for side in sides]
-    cells += [Cell(text=_difference_db(band.heat_loss_db, band.heat_loss_u95_db, locale))]
-    cells += [Cell(text=number(band.heat_w, 1, locale=locale, signed=True))]
-    if judged:
-        cells.append(Cell(text=band.verdict.value if band.verdict else "not judged", look="words"))
-    return Row(head=band.band, cells=tuple(cells))
-
-
-def _difference_db(difference: float, u95: float | None, locale: str) -> str:
-    if u95 is None:
-        return number(difference, 2, locale=locale, signed=True)
-    return plus_minus(difference, u95, 2, locale=locale)
-
-
-def heat_loss_text(method: MethodResult, band: str, locale: str, key: str = "heat_loss_db") -> str:
-    """A quantity's mean in one band of a method's result, or that it was not measured."""
+def heat_loss_text(
+    method: MethodResult,
+    band: str,
+    locale: str,
+    write: Callable[..., str] = mean_text,
+) -> str:
+    """Mean heat loss in one band of a method's result, or that it was not measured."""
     found = next((one for one in measured_bands(method) if one.band.name == band), None)
-    figure = None if found is None else figure_of(found, key)
-    return figure_text(BY_KEY[key], figure, locale=locale)
+    figure = None if found is None else figure_of(found, "heat_loss_db")
+    return write(BY_KEY["heat_loss_db"], figure, locale=locale)

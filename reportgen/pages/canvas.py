@@ -62,7 +62,7 @@ class Size:
 
 WIDE = Size(
     width=520,
-    height=186,
+    height=172,
     left=34,
     right=34,
     letters=8.6,
@@ -144,6 +144,18 @@ class Sample:
     width: float = 1.1
     marker: str = ""
     fill: str = "none"
+    strength: float = 1.0
+
+
+RIBBON_STRENGTH = 0.22
+"""How much of its colour an interval shows: light enough for all lines to stand out."""
+
+
+def interval_sample(colour: str) -> Sample:
+    """How an interval stands in the key."""
+    return Sample(
+        text="95\u00a0% interval", colour=colour, dash="-", width=6, strength=RIBBON_STRENGTH
+    )
 
 
 def add_key(figure: Figure, size: Size, samples: list[Sample], *, from_left: float) -> None:
@@ -162,9 +174,14 @@ def add_key(figure: Figure, size: Size, samples: list[Sample], *, from_left: flo
 def _add_sample(figure: Figure, at: tuple[float, float], size: Size, sample: Sample) -> None:
     x, y = at
     line, dot = [x, x + 18 / size.width], [x + 9 / size.width]
-    common: dict[str, Any] = {"color": sample.colour, "transform": figure.transFigure}
+    common: dict[str, Any] = {
+        "color": sample.colour,
+        "alpha": sample.strength if sample.strength < 1 else None,
+        "transform": figure.transFigure,
+    }
     if sample.dash != "none":
         drawn = Line2D(line, [y, y], linestyle=sample.dash, linewidth=sample.width, **common)
+        drawn.set_solid_capstyle("butt")
         figure.add_artist(drawn)
     if sample.marker:
         mark = Line2D(dot, [y], linestyle="none", marker=sample.marker, markersize=5, **common)

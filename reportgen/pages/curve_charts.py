@@ -9,14 +9,24 @@ import numpy as np
 from matplotlib.axes import Axes
 
 from reportgen.model import Band, BuildResult, Curves, RealArray
-from reportgen.pages import sentences
-from reportgen.pages.canvas import NARROW, WIDE, Chart, Sample, Size, add_key, svg_text
+from reportgen.pages import chart_words
+from reportgen.pages.canvas import (
+    NARROW,
+    WIDE,
+    Chart,
+    Sample,
+    Size,
+    add_key,
+    interval_sample,
+    svg_text,
+)
 from reportgen.pages.display import decimal_sign
 from reportgen.pages.frequency_axes import (
     DASHES,
     add_baseline,
     add_curve,
     add_limits,
+    add_ribbon,
     add_second_scale,
     frequency_figure,
     set_value_axis,
@@ -58,7 +68,9 @@ def draw_efficiency(
         return None
     span = _span(result, bands)
     other = None if baseline is None else _percent_curve(baseline)
-    low, high = _percent_range([one for one in (curve, other) if one is not None], span)
+    ribbon = _percent_ribbon(result.chosen.curves)
+    sides = () if ribbon is None else ((ribbon[0], ribbon[1]), (ribbon[0], ribbon[2]))
+    low, high = _percent_range([one for one in (curve, other, *sides) if one is not None], span)
 
     def scales(axes: Axes, size: Size) -> None:
         ticks = _regular_ticks(low, high, size)
@@ -71,10 +83,14 @@ def draw_efficiency(
 
     lines = {name: 100 * value for name, value in (limits or {}).items()}
     drawings = [
-        _draw_curves(size, span, (curve, other), LIGHT.heat, scales, _EFFICIENCY_SCALES, lines)
+        _draw_curves(
+            size, span, (curve, other), LIGHT.heat, scales, _EFFICIENCY_SCALES, lines, ribbon
+        )
         for size in (WIDE, NARROW)
     ]
-    title, alt = sentences.efficiency_chart(result, baseline, locale)
+    title, alt = chart_words.efficiency_chart(
+        result, baseline, locale, with_ribbon=ribbon is not None
+    )
     return Chart(name="efficiency", title=title, alt=alt, svg=drawings[0], narrow_svg=drawings[1])
 
 
@@ -108,11 +124,12 @@ def draw_match(
         _draw_curves(size, span, (curve, other), LIGHT.match, scales, _MATCH_SCALES, lines)
         for size in (WIDE, NARROW)
     ]
-    title, alt = sentences.match_chart(result, baseline, locale)
+    title, alt = chart_words.match_chart(result, baseline, locale)
     return Chart(name="match", title=title, alt=alt, svg=drawings[0], narrow_svg=drawings[1])
 
 
 _Curve = tuple[RealArray, RealArray]
+_Ribbon = tuple[RealArray, RealArray, RealArray]
 
 
 def _draw_curves(
@@ -123,6 +140,7 @@ def _draw_curves(
     scales: Callable[[Axes, Size], None],
     titles: tuple[str, str],
     limits: Mapping[str, float],
+    ribbon: _Ribbon | None = None,
 ) -> str:
     figure, axes = frequency_figure(size, span.from_hz, span.to_hz, span.bands)
     scales(axes, size)
@@ -133,12 +151,15 @@ def _draw_curves(
         if band.name in limits
     ]
     own, other = curves
-    # The ribbon of a curve's 95 % interval, once curves carry one, belongs here: behind all lines.
+    if ribbon is not None:
+        add_ribbon(axes, *_thinned_ribbon(ribbon, span), colour)
     add_limits(axes, segments)
     if other is not None:
         add_baseline(axes, *thinned(*_within(other, span)))
     add_curve(axes, *thinned(*_within(own, span)), colour)
     samples = [Sample(text="this build", colour=colour, dash="-", width=1.7)]
+    if ribbon is not None:
+        samples.append(interval_sample(colour))
     if other is not None:
         samples.append(Sample(text="baseline", colour=LIGHT.baseline, dash=DASHES))
     if segments:
@@ -158,6 +179,21 @@ def _return_loss_curve(result: BuildResult) -> _Curve | None:
         return None
     loss_db = BY_KEY["return_loss_db"].value(np.maximum(ratio, 1e-30), 1.0)
     return result.chosen.curves.frequency_hz / 1e6, np.asarray(loss_db)
+
+
+def _percent_ribbon(curves: Curves) -> _Ribbon | None:
+    low, high = curves.efficiency_low95, curves.efficiency_high95
+    if low is None or high is None:
+        return None
+    return curves.frequency_hz / 1e6, 100 * low, 100 * high
+
+
+def _thinned_ribbon(ribbon: _Ribbon, span: _Span, points: int = 60) -> _Ribbon:
+    """A ribbon of few points: its ends are known at few frequencies, and straight between."""
+    mhz, low, high = ribbon
+    inside = np.flatnonzero((mhz >= span.from_hz / 1e6) & (mhz <= span.to_hz / 1e6))
+    kept = inside[np.unique(np.linspace(0, len(inside) - 1, points).astype(int))]
+    return mhz[kept], low[kept], high[kept]
 
 
 def _single(curves: Curves, ratio: RealArray | None) -> RealArray | None:

@@ -22,6 +22,7 @@ DASH = "\u2013"
 MINUS = "\u2212"
 INFINITE = "∞"
 NOT_MEASURED = "not measured"
+PLUS_MINUS = "\u00a0\u00b1\u00a0"
 
 _EXACT = Context(prec=800)
 _FIGURE_SPACE = "\u2007"
@@ -125,7 +126,7 @@ def plus_minus(
     """A difference with its 95 % half-width, both to the same place: `+0.651 \u00b1 0.045`."""
     figure = number(value, decimals, u95=u95, locale=locale, signed=signed)
     width = number(u95, decimals, u95=u95, locale=locale)
-    return f"{figure}\u00a0\u00b1\u00a0{width}"
+    return f"{figure}{PLUS_MINUS}{width}"
 
 
 def entered(value: float, *, locale: str = "en") -> str:
@@ -144,6 +145,17 @@ def interval(low: float, high: float, decimals: int, *, locale: str = "en") -> s
         else number(end, decimals)
         for end, way in ((low, ROUND_FLOOR), (high, ROUND_CEILING))
     )
+
+
+def one_sided(low: float | None, high: float | None, decimals: int, *, locale: str = "en") -> str:
+    """The one finite end of an interval, rounded away from the figure: `over 27.6`."""
+    word, end, way = (
+        ("over", low, ROUND_FLOOR) if low is not None else ("below", high, ROUND_CEILING)
+    )
+    if end is None or not math.isfinite(end):
+        return DASH
+    rounded = _decimal(end).quantize(_step(decimals), way, _EXACT)
+    return f"{word}\u00a0{_written(rounded, locale, False)}"
 
 
 def _plain_number(
@@ -210,8 +222,23 @@ def decimal_sign(locale: str) -> str:
 
 
 def aligned(texts: Sequence[str], locale: str = "en") -> tuple[str, ...]:
-    """Texts of one column, padded so that right-aligned tabular figures meet at the point."""
+    """Texts of one column, padded so that right-aligned tabular figures meet at the point.
+
+    Figures with an uncertainty meet at the sign between both.
+    """
     sign = decimal_sign(locale)
+    parts = [text.partition(PLUS_MINUS) for text in texts]
+    figures = _padded([figure for figure, between, _ in parts if between], sign)
+    widths = iter(_padded([width for _, between, width in parts if between], sign))
+    joined = iter(f"{figure}{PLUS_MINUS}{next(widths)}" for figure in figures)
+    whole = [
+        next(joined) if between else text
+        for text, (_, between, _) in zip(texts, parts, strict=True)
+    ]
+    return tuple(whole) if figures else _padded(whole, sign)
+
+
+def _padded(texts: Sequence[str], sign: str) -> tuple[str, ...]:
     longest = max((_fraction_length(text, sign) for text in texts), default=0)
     return tuple(
         text + _padding(_fraction_length(text, sign), longest) if _ends_in_digit(text) else text

@@ -14,6 +14,7 @@ from matplotlib.ticker import NullLocator
 from reportgen.model import Band, RealArray
 from reportgen.pages.canvas import (
     NARROW,
+    RIBBON_STRENGTH,
     Size,
     label_style,
     name_in_chart,
@@ -180,6 +181,15 @@ def title_scales(figure: Figure, size: Size, left: str, right: str) -> None:
 def add_curve(axes: Axes, frequency_mhz: RealArray, value: RealArray, colour: str) -> None:
     """This build's curve."""
     axes.plot(frequency_mhz, value, color=colour, linewidth=1.7, zorder=3)
+
+
+def add_ribbon(
+    axes: Axes, frequency_mhz: RealArray, low: RealArray, high: RealArray, colour: str
+) -> None:
+    """The 95 % interval around a curve, behind all lines."""
+    axes.fill_between(
+        frequency_mhz, low, high, color=colour, alpha=RIBBON_STRENGTH, linewidth=0, zorder=1
+    )
 
 
 def add_baseline(axes: Axes, frequency_mhz: RealArray, value: RealArray) -> None:

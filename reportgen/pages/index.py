@@ -3,19 +3,30 @@
 from __future__ import annotations
 
 from collections.abc import Sequence
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 
 from reportgen.model import BenchSheet, BuildResult, Comparison, FailedBuild, Finding, Verdict
 from reportgen.pages import sentences
 from reportgen.pages.band_tables import heat_loss_text
-from reportgen.pages.display import DASH, NOT_MEASURED, quantity_number
+from reportgen.pages.display import DASH, NOT_MEASURED, aligned
 from reportgen.pages.html import page_style
+from reportgen.pages.intervals import plain_text, with_interval
+from reportgen.pages.limits import limits_short
 from reportgen.pages.look import TINTS
 from reportgen.pages.particulars import FindingText, finding_texts
-from reportgen.pages.summary import is_simulated, mean_over_bands, means, worst_of, worsts
+from reportgen.pages.summary import (
+    interval_over_bands,
+    is_simulated,
+    mean_over_bands,
+    means,
+    worst_of,
+    worsts,
+)
 from reportgen.pages.tables import Cell, Column, Row, Table, with_points_aligned
 from reportgen.pages.templates import render
 from reportgen.physics.quantities import BY_KEY
+
+_FIGURES = ("efficiency", "heat_loss", "swr")
 
 Ranked = tuple[BuildResult, Comparison | None]
 
@@ -32,6 +43,7 @@ class Line:
     efficiency: str
     heat_loss: str
     difference: str
+    limits: str
     swr: str
     simulated: bool
     baseline: bool
@@ -143,9 +155,14 @@ def _lead(
 def _lines(
     ranked: Sequence[Ranked], shared: Sequence[str], baseline_key: str | None, locale: str
 ) -> tuple[Line, ...]:
-    return tuple(
+    lines = [
         _line(place, result, comparison, shared, baseline_key, locale)
         for place, (result, comparison) in enumerate(ranked, start=1)
+    ]
+    columns = [aligned([getattr(line, name) for line in lines], locale) for name in _FIGURES]
+    return tuple(
+        replace(line, **dict(zip(_FIGURES, texts, strict=True)))
+        for line, texts in zip(lines, zip(*columns, strict=True), strict=True)
     )
 
 
@@ -171,17 +188,26 @@ def _line(
         report=f"{key}/report.html",
         pdf=f"{key}/report.pdf",
         summary=sheet.summary,
-        efficiency=_figure("efficiency_ratio", efficiency, locale),
-        heat_loss=_figure("heat_loss_db", loss, locale),
+        efficiency=_figure(result, "efficiency_ratio", efficiency, names, locale),
+        heat_loss=_figure(result, "heat_loss_db", loss, names, locale),
         difference=_against(comparison, is_baseline=key == baseline_key),
-        swr=_figure("swr", None if swr is None else swr.value, locale),
+        limits=limits_short(result.limits),
+        swr=NOT_MEASURED if swr is None else plain_text("swr", swr, locale),
         simulated=is_simulated(result),
         baseline=key == baseline_key,
     )
 
 
-def _figure(key: str, value: float | None, locale: str) -> str:
-    return NOT_MEASURED if value is None else quantity_number(BY_KEY[key], value, locale=locale)
+def _figure(
+    result: BuildResult,
+    key: str,
+    value: float | None,
+    names: Sequence[str] | None,
+    locale: str,
+) -> str:
+    """A mean over bands and its interval."""
+    low, high = interval_over_bands(result, key, names)
+    return with_interval(BY_KEY[key], value, low, high, locale=locale)
 
 
 def _against(comparison: Comparison | None, *, is_baseline: bool) -> str:

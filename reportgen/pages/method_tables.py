@@ -1,37 +1,56 @@
-"""Tables with a line for each band, side by side: all methods of a build, all of its units."""
+"""What all methods of a build say side by side, and all of its units."""
 
 from __future__ import annotations
 
-from collections.abc import Sequence
+from collections.abc import Iterator, Sequence
 
-from reportgen.model import BandResult, BuildResult, Method, MethodResult
+from reportgen.model import Agreement, BandResult, BuildResult, Figure, Method, MethodResult
 from reportgen.pages.band_tables import heat_loss_text
-from reportgen.pages.display import NOT_MEASURED, quantity_number
+from reportgen.pages.display import DASH, plus_minus
+from reportgen.pages.intervals import (
+    half_width,
+    mean_text,
+    mean_with_interval,
+    width_text,
+    worst_text,
+)
+from reportgen.pages.sentences import listed
 from reportgen.pages.summary import figure_of, measured_bands
 from reportgen.pages.tables import Column, Row, Table, figures, with_points_aligned
 from reportgen.pages.wording import METHOD_NAMES, ohms
 from reportgen.physics.quantities import BY_KEY
 
+_CAPTION = (
+    "Mean heat loss in each band, dB, and half of its 95\u00a0% interval. A method is held against "
+    "the best one for the same units, from the same draws."
+)
+_HALVING = (
+    "common practice, and not the loss of a unit: the mismatch between the two units is in it"
+)
+
 
 def methods_table(result: BuildResult, locale: str) -> Table | None:
     """Heat loss by every method that the sweeps allow; None where none gives any."""
-    shown = [
-        method
-        for method in result.methods
-        if any(figure_of(band, method_key(method)) for band in measured_bands(method))
-    ]
-    if not shown:
+    shown = [method for method in result.methods if _figures_by_band(method)]
+    found = {name for method in shown for name in _figures_by_band(method)}
+    names = [band.band.name for band in result.chosen.bands if band.band.name in found]
+    if not shown or not names:
         return None
     table = Table(
-        caption="Mean heat loss in each band. Half the through loss of a pair is the figure "
-        "commonly published; the mismatch between the two units is in it.",
-        corner="Band",
-        columns=tuple(_method_column(method, result, locale) for method in shown),
-        groups=tuple(
-            (_methods_row(band.band.name, shown, locale),) for band in result.chosen.bands
-        ),
+        caption=_CAPTION,
+        corner="Method",
+        sub="Value",
+        columns=tuple(Column(label=name) for name in names),
+        groups=tuple(_method_rows(method, names, result, locale) for method in shown),
+        long_heads=True,
     )
     return with_points_aligned(table, locale)
+
+
+def _figures_by_band(method: MethodResult) -> dict[str, Figure]:
+    key = method_key(method)
+    pairs = ((band.band.name, figure_of(band, key)) for band in measured_bands(method))
+    return {name: figure for name, figure in pairs if figure is not None}
 
 
 def method_key(method: MethodResult) -> str:
@@ -39,49 +58,124 @@ def method_key(method: MethodResult) -> str:
     return "halved_pair_db" if method.method is Method.HALVING else "heat_loss_db"
 
 
-def _method_column(method: MethodResult, result: BuildResult, locale: str) -> Column:
-    label = METHOD_NAMES[method.method]
-    label += f", unit {method.unit}" if method.unit is not None else ""
+def _method_rows(
+    method: MethodResult, names: Sequence[str], result: BuildResult, locale: str
+) -> tuple[Row, ...]:
+    found = _figures_by_band(method)
+    lines = [("mean", [_mean(method, found.get(name), locale) for name in names])]
+    widths = [_width(method, found.get(name), locale) for name in names]
+    if any(width != DASH for width in widths):
+        lines.append(("\u00b1", widths))
+    head = f"{METHOD_NAMES[method.method]}, {units_of(method)}"
+    rows = [
+        Row(
+            head=None if index else head,
+            head_rows=len(lines) + 1,
+            sub=sub,
+            cells=figures(texts, "soft" if index else ""),
+        )
+        for index, (sub, texts) in enumerate(lines)
+    ]
+    words = "; ".join(_remarks(method, result, locale))
+    rows.append(Row(head=None, words=words, words_columns=len(names) + 1))
+    return tuple(rows)
+
+
+def units_of(method: MethodResult) -> str:
+    """Whose figures they are: one unit's, or a mean."""
+    if method.unit is not None:
+        return f"unit {method.unit}"
+    return f"mean of {listed(method.units)}" if len(method.units) > 1 else f"unit {method.units[0]}"
+
+
+def _mean(method: MethodResult, figure: Figure | None, locale: str) -> str:
+    return DASH if figure is None else mean_text(BY_KEY[method_key(method)], figure, locale=locale)
+
+
+def _width(method: MethodResult, figure: Figure | None, locale: str) -> str:
+    u95 = None if figure is None else half_width(figure.low95, figure.high95)
+    return DASH if u95 is None else width_text(BY_KEY[method_key(method)], u95, locale)
+
+
+def _remarks(method: MethodResult, result: BuildResult, locale: str) -> Iterator[str]:
     if method.method is Method.HALVING:
-        return Column(label=f"{label}, common practice", unit="dB")
-    chosen = (result.chosen.method, result.chosen.unit) == (method.method, method.unit)
-    label += " (published)" if chosen else ""
-    return Column(label=label, unit=f"dB into {ohms(method.load_ohm, locale)}")
+        yield _HALVING
+        return
+    if method.method is result.chosen.method:
+        yield _choice(result)
+    yield f"into {ohms(round(method.load_ohm), locale)}"
+    for one in result.agreements:
+        if (one.method, one.unit) == (method.method, method.unit):
+            yield agreement_words(one, locale)
 
 
-def _methods_row(band: str, shown: Sequence[MethodResult], locale: str) -> Row:
-    texts = [heat_loss_text(method, band, locale, method_key(method)) for method in shown]
-    return Row(head=band, cells=figures(texts))
+def _choice(result: BuildResult) -> str:
+    """Why the published method is that."""
+    rivals = [
+        method
+        for method in result.methods
+        if method.method not in (Method.HALVING, result.chosen.method)
+    ]
+    bands = [len(_figures_by_band(method)) for method in rivals if _figures_by_band(method)]
+    if not bands:
+        return "published"
+    if min(bands) < len(_figures_by_band(result.chosen)):
+        return "published: loss in most bands, and then the smallest interval"
+    return "published: the smallest interval"
 
 
-_UNIT_QUANTITIES = ("heat_loss_db", "swr")
+def agreement_words(one: Agreement, locale: str) -> str:
+    """Whether a method says the same as the best one, and where it differs most."""
+    other = METHOD_NAMES[one.against].lower()
+    if one.agrees is None:
+        return f"not comparable with {other}: {one.reason}" if one.reason else "not comparable"
+    text = f"{'agrees' if one.agrees else 'disagrees'} with {other}"
+    if one.difference_db is None or one.u95_db is None:
+        return text
+    difference = plus_minus(one.difference_db, one.u95_db, 2, locale=locale)
+    return f"{text}, differing most on {one.band}: {difference}\u00a0dB"
+
+
+# --- units ---------------------------------------------------------------------------------------
 
 
 def units_table(result: BuildResult, locale: str) -> Table | None:
     """Mean heat loss and worst SWR of each unit; None where fewer than two were told apart."""
     if len(result.units) < 2:
         return None
+    lossy = [unit for unit in result.units if _figures_by_band(unit)]
     columns = [
-        Column(label=f"{unit.unit}: {BY_KEY[key].label}", unit=BY_KEY[key].unit or "worst")
+        column
         for unit in result.units
-        for key in _UNIT_QUANTITIES
+        for column in (
+            *([Column(label=f"{unit.unit}: Heat loss", unit="dB", wide=True)] * (unit in lossy)),
+            Column(label=f"{unit.unit}: SWR", unit="worst"),
+        )
     ]
     table = Table(
-        caption="Mean heat loss and worst SWR in each band.",
+        caption="Mean heat loss and worst SWR in each band." + _lacking(result.units, lossy),
         corner="Band",
         columns=tuple(columns),
-        groups=tuple((_units_row(band, result, locale),) for band in result.chosen.bands),
+        groups=tuple(
+            (_units_row(band, result.units, lossy, locale),) for band in result.chosen.bands
+        ),
     )
     return with_points_aligned(table, locale)
 
 
-def _units_row(band: BandResult, result: BuildResult, locale: str) -> Row:
+def _lacking(units: Sequence[MethodResult], lossy: Sequence[MethodResult]) -> str:
+    names = [str(unit.unit) for unit in units if unit not in lossy]
+    return f" Of {listed(names)} alone only the match was measured." if names else ""
+
+
+def _units_row(
+    band: BandResult, units: Sequence[MethodResult], lossy: Sequence[MethodResult], locale: str
+) -> Row:
     texts = []
-    for unit in result.units:
+    for unit in units:
         found = next((one for one in measured_bands(unit) if one.band == band.band), None)
         swr = None if found is None else found.figures.get("swr")
-        worst = None if swr is None else swr.worst
-        texts.append(heat_loss_text(unit, band.band.name, locale))
-        text = quantity_number(BY_KEY["swr"], worst, locale=locale)
-        texts.append(NOT_MEASURED if worst is None else text)
+        if unit in lossy:
+            texts.append(heat_loss_text(unit, band.band.name, locale, mean_with_interval))
+        texts.append(worst_text(BY_KEY["swr"], swr, locale=locale))
     return Row(head=band.band.name, cells=figures(texts))

@@ -7,11 +7,13 @@ from functools import lru_cache
 
 from markupsafe import Markup
 
-from reportgen.model import BenchSheet, BuildResult, Comparison
+from reportgen.model import BenchSheet, BuildResult, Comparison, Method
 from reportgen.pages import sentences
-from reportgen.pages.band_tables import band_table, comparison_table, missing_quantities
+from reportgen.pages.band_tables import band_table, missing_quantities
 from reportgen.pages.charts import Chart, draw_charts
+from reportgen.pages.comparison import comparison_sentence, comparison_table
 from reportgen.pages.html import inline_svg, page_style
+from reportgen.pages.limits import limits_table, limits_words
 from reportgen.pages.method_tables import methods_table, units_table
 from reportgen.pages.particulars import (
     FindingText,
@@ -28,6 +30,12 @@ from reportgen.pages.plain_text import text_lines
 from reportgen.pages.summary import is_simulated, limits_by_quantity
 from reportgen.pages.tables import Table
 from reportgen.pages.templates import render
+from reportgen.pages.uncertainty import (
+    advice_sentences,
+    assumption_sentences,
+    budget_sentence,
+    budget_table,
+)
 from reportgen.pages.wording import METHOD_NAMES, METHOD_WORDS, fitted_sentence, ohms
 
 
@@ -52,6 +60,8 @@ class ReportPage:
     summary: str
     simulated: bool
     verdict: str
+    limits_verdict: str
+    limits_causes: str
     coverage: str
     key_figures: tuple[sentences.KeyFigure, ...]
     bands: Table | None
@@ -60,12 +70,17 @@ class ReportPage:
     comparison: Table | None
     comparison_words: str
     is_baseline: bool
+    limits: Table | None
     method_name: str
     method_words: str
     setups: Table | None
     fitted: tuple[str, ...]
     methods: Table | None
     reasons: tuple[str, ...]
+    budget_words: str
+    budget: Table | None
+    advice: tuple[str, ...]
+    assumptions: tuple[str, ...]
     bandwidths: Table | None
     units: Table | None
     findings: tuple[FindingText, ...]
@@ -135,6 +150,7 @@ def _page(
     program_version: str,
 ) -> ReportPage:
     sheet, locale = result.build.sheet, bench.locale
+    limits_verdict, limits_causes = limits_words(result.limits)
     return ReportPage(
         name=sheet.name,
         publisher=bench.publisher,
@@ -142,20 +158,27 @@ def _page(
         summary=sheet.summary,
         simulated=is_simulated(result),
         verdict=sentences.verdict(result, locale),
+        limits_verdict=limits_verdict,
+        limits_causes=limits_causes,
         coverage=sentences.coverage_sentence(result),
         key_figures=sentences.key_figures(result, locale),
         bands=band_table(result, bench),
         missing=missing_quantities(result),
         pictures=pictures,
         comparison=comparison_table(result, comparison, baseline, locale),
-        comparison_words=sentences.comparison_sentence(comparison),
+        comparison_words=comparison_sentence(comparison),
         is_baseline=bench.baseline == result.build.key,
+        limits=limits_table(result.limits, locale),
         method_name=METHOD_NAMES[result.chosen.method],
         method_words=_method_words(result, locale),
         setups=setups_table(result.build, bench),
         fitted=tuple(fitted_sentence(one, locale) for one in result.fitted),
         methods=methods_table(result, locale),
         reasons=_reasons(result),
+        budget_words=budget_sentence(result.budget, locale),
+        budget=budget_table(result, locale),
+        advice=advice_sentences(result.advice, locale),
+        assumptions=assumption_sentences(result, bench) if result.budget else (),
         bandwidths=bandwidth_table(result.bandwidths, locale),
         units=units_table(result, locale),
         findings=finding_texts(result.findings),
@@ -174,12 +197,13 @@ def _method_words(result: BuildResult, locale: str) -> str:
 
 
 def _reasons(result: BuildResult) -> tuple[str, ...]:
-    """Why a method that was tried gives no loss."""
-    return tuple(
-        f"{METHOD_NAMES[method.method]}: {method.reason}"
+    """Why a method that was tried gives no loss; what holds for several units stands once."""
+    found = (
+        f"{METHOD_NAMES[method.method]}: {method.reason}."
         for method in result.methods
-        if method.reason is not None
+        if method.reason is not None and method.method is not Method.HALVING
     )
+    return tuple(dict.fromkeys(found))
 
 
 # --- charts, drawn once for both pages -----------------------------------------------------------

@@ -14,11 +14,12 @@ from reportgen.model import (
     BuildResult,
     Curves,
     Figure,
-    Limits,
     MeasuredBand,
     MethodResult,
 )
+from reportgen.physics.judge import limits_of_band
 from reportgen.physics.quantities import BY_KEY, QUANTITIES, Better
+from reportgen.physics.uncertainty import interval
 
 
 @dataclass(frozen=True, kw_only=True, slots=True)
@@ -28,6 +29,8 @@ class BandValue:
     band: Band
     value: float
     at_hz: float | None = None
+    low95: float | None = None
+    high95: float | None = None
 
 
 def measured_bands(method: MethodResult) -> tuple[MeasuredBand, ...]:
@@ -50,7 +53,7 @@ def means(method: MethodResult, key: str) -> tuple[BandValue, ...]:
     """Means over each band, in the order of the bands."""
     pairs = ((band, figure_of(band, key)) for band in measured_bands(method))
     return tuple(
-        BandValue(band=band.band, value=figure.mean)
+        BandValue(band=band.band, value=figure.mean, low95=figure.low95, high95=figure.high95)
         for band, figure in pairs
         if figure is not None and figure.mean is not None
     )
@@ -60,7 +63,13 @@ def worsts(method: MethodResult, key: str) -> tuple[BandValue, ...]:
     """Worst values within each band, in the order of the bands; infinite ones are kept."""
     pairs = ((band, band.figures.get(key)) for band in measured_bands(method))
     return tuple(
-        BandValue(band=band.band, value=figure.worst, at_hz=figure.worst_at_hz)
+        BandValue(
+            band=band.band,
+            value=figure.worst,
+            at_hz=figure.worst_at_hz,
+            low95=figure.worst_low95,
+            high95=figure.worst_high95,
+        )
         for band, figure in pairs
         if figure is not None and figure.worst is not None and figure.worst == figure.worst
     )
@@ -103,11 +112,24 @@ def mean_over_bands(
     return value if isfinite(value) else None
 
 
+def interval_over_bands(
+    result: BuildResult, key: str, names: Iterable[str] | None = None
+) -> tuple[float | None, float | None]:
+    """Ends of the 95 % interval of what `mean_over_bands` gives for the result."""
+    draws = result.loss_draws_db
+    known = [one.band.name for one in means(result.chosen, "efficiency_ratio")]
+    wanted = known if names is None else list(names)
+    if not wanted or any(name not in draws for name in wanted):
+        return None, None
+    ratio = np.mean([10 ** (-draws[name] / 10) for name in wanted], axis=0)
+    return interval(np.asarray(BY_KEY[key].value(ratio, result.power_w)))
+
+
 def limits_by_quantity(bench: BenchSheet, band: str, power_w: float) -> dict[str, float]:
     """What the workshop's limits of one band mean for every reported quantity."""
-    limits = _limits_of(bench, band)
-    efficiency = None if limits.efficiency_percent is None else limits.efficiency_percent / 100
-    reflection = None if limits.swr is None else ((limits.swr - 1) / (limits.swr + 1)) ** 2
+    limits = dict(limits_of_band(bench, band))
+    efficiency, swr = limits.get("efficiency_ratio"), limits.get("swr")
+    reflection = None if swr is None else ((swr - 1) / (swr + 1)) ** 2
     curves = Curves(
         frequency_hz=np.array([nan]),
         native=np.array([False]),
@@ -120,19 +142,7 @@ def limits_by_quantity(bench: BenchSheet, band: str, power_w: float) -> dict[str
         for key, ratio in ratios.items()
         if ratio is not None
     }
-    if limits.swr is not None:
-        found["swr"] = limits.swr
-    return {key: value for key, value in found.items() if isfinite(value)}
-
-
-def _limits_of(bench: BenchSheet, band: str) -> Limits:
-    own, common = bench.limits.get(band, Limits()), bench.limits.get("all", Limits())
-    return Limits(
-        swr=common.swr if own.swr is None else own.swr,
-        efficiency_percent=(
-            common.efficiency_percent if own.efficiency_percent is None else own.efficiency_percent
-        ),
-    )
+    return {key: value for key, value in (found | limits).items() if isfinite(value)}
 
 
 def is_simulated(result: BuildResult) -> bool:

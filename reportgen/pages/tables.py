@@ -33,28 +33,43 @@ class Row:
 
 @dataclass(frozen=True, kw_only=True, slots=True)
 class Column:
-    """A column's head, and the unit that stands under it; words stand left, figures right."""
+    """A column's head, and the unit that stands under it; words stand left, figures right.
+
+    `wide`: its figures stand beside their intervals.
+    """
 
     label: str
     unit: str = ""
     words: bool = False
+    wide: bool = False
+
+    @property
+    def look(self) -> str:
+        """A class of the style sheet."""
+        return "words" if self.words else "figure wide" if self.wide else "figure"
 
 
 @dataclass(frozen=True, kw_only=True, slots=True)
 class Table:
-    """A table; the rows of one group stay together on a page."""
+    """A table; the rows of one group stay together on a page.
+
+    `long_heads`: its rows begin with a few words, not with a band's name.
+    """
 
     caption: str
     corner: str
     columns: tuple[Column, ...]
     groups: tuple[tuple[Row, ...], ...]
     sub: str | None = None
+    long_heads: bool = False
 
     @property
     def kind(self) -> str:
-        """How it is set: words, a full width of figures, or a few columns of them."""
+        """How it is set: words, figures after words, many columns of figures or a few."""
         if all(column.words for column in self.columns):
             return "words"
+        if self.long_heads:
+            return "heads"
         return "figures" if len(self.columns) > _FEW_COLUMNS else "few"
 
 

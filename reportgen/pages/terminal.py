@@ -10,8 +10,10 @@ from rich.text import Text
 from reportgen.model import BenchSheet, BuildResult, FailedBuild, Finding, Severity
 from reportgen.pages import sentences
 from reportgen.pages.band_tables import band_table
+from reportgen.pages.limits import limits_words
 from reportgen.pages.plain_text import clean_text
 from reportgen.pages.tables import Row, Table
+from reportgen.pages.uncertainty import advice_sentences
 from reportgen.pages.wording import METHOD_NAMES
 
 _STYLES = {Severity.ERROR: "bold red", Severity.WARNING: "yellow", Severity.NOTE: "dim"}
@@ -54,14 +56,19 @@ def print_failed(console: Console, failed: Sequence[FailedBuild]) -> None:
 
 
 def print_bands(console: Console, result: BuildResult, bench: BenchSheet) -> None:
-    """The verdict and the band table of one build."""
+    """The verdict, the limits, the band table and the advice of one build."""
     sheet = result.build.sheet
     console.print(Text(clean_text(sheet.name), style="bold"))
     console.print(Text(clean_text(sentences.verdict(result, bench.locale))), soft_wrap=True)
+    opening, causes = limits_words(result.limits)
+    if opening:
+        console.print(Text(clean_text(f"{opening} {causes}".rstrip())), soft_wrap=True)
     table = band_table(result, bench)
     if table is not None:
         for block in _blocks(table, console.width):
             console.print(Text("\n".join(block)), soft_wrap=True)
+    for sentence in advice_sentences(result.advice, bench.locale):
+        console.print(Text(clean_text(sentence), style="dim"), soft_wrap=True)
     console.print(Text(f"method: {METHOD_NAMES[result.chosen.method]}", style="dim"))
 
 

@@ -52,11 +52,12 @@ METHOD_WORDS = {
     ),
     Method.SERIES_RESISTOR: (
         "The high side was joined to the second port of the analyzer through a known resistor; "
-        "loss follows from what arrives there and what the low side reflects."
+        "loss follows from what arrives there and what the low side reflects. The figures hold "
+        "for the load that it really had, the stray capacitance across the resistor included."
     ),
     Method.DIRECT: (
         "Both sides were connected to the analyzer as they are. At a high impedance ratio small "
-        "errors of the analyzer weigh heavily."
+        "errors of the analyzer weigh heavily, as the interval shows."
     ),
     Method.LOAD_ONLY: (
         "The low side was swept with a known resistor on the high side. That gives the match; "
@@ -71,9 +72,9 @@ SETUP_NAMES = {
     Setup.SHORT: "high side shorted",
     Setup.SERIES_RESISTOR: "through a series resistor",
     Setup.DIRECT: "both sides on the analyzer",
-    Setup.LOAD_CHECK: "bare resistor",
-    Setup.RESISTOR_CHECK: "bare series resistor",
-    Setup.THRU_CHECK: "fixture without a unit",
+    Setup.LOAD_CHECK: "check: the bare resistor",
+    Setup.RESISTOR_CHECK: "check: the bare series resistor",
+    Setup.THRU_CHECK: "check: the fixture without a unit",
     Setup.ANTENNA: "antenna",
     Setup.SPOT: "readings back to back",
 }
@@ -98,8 +99,8 @@ def criterion_words(criterion: str, locale: str) -> str:
 def fitted_sentence(fitted: Fitted, locale: str) -> str:
     """What the data named, or why they could not."""
     name, unit = _FITTED.get(fitted.quantity, (fitted.quantity, ""))
-    place = fitted.of.replace("loads.", "load ", 1)
-    subject = f"{name} at {place}"
+    place, _, where = fitted.of.replace("loads.", "load ", 1).partition(", ")
+    subject = f"{name} at {place}" + (f" {where}" if where else "")
     if fitted.value is None:
         reason = f": {fitted.reason}" if fitted.reason else ""
         return f"{subject}: not determined{reason}."
