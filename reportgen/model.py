@@ -580,7 +580,7 @@ class HeatSplitBand:
 
 @dataclass(frozen=True, kw_only=True, slots=True)
 class WindingFigures:
-    """What the circuit says of the winding, at the low side."""
+    """What the circuit says of the winding, at the low side; the lead counts as leakage."""
 
     leakage_h: Interval
     magnetising_h: Interval

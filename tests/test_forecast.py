@@ -69,7 +69,7 @@ LOW_BAND = Band(name="low", from_hz=3.5e6, to_hz=4e6)
 HIGH_BAND = Band(name="high", from_hz=7e6, to_hz=7.5e6)
 WINDING = Winding(low_turns=2, high_turns=8)
 NOTHING = np.zeros(HZ.size, dtype=complex)
-IDEAL = Arms(NOTHING, NOTHING, NOTHING, NOTHING, NOTHING, np.full(1, 0.25))
+IDEAL = Arms(NOTHING, NOTHING, NOTHING, NOTHING, NOTHING, np.full(1, 0.25), NOTHING.real)
 
 
 def chain_of(arms: Arms, turns_ratio: float) -> Chain:
@@ -95,6 +95,7 @@ def solved_of(arms: Arms, winding: Winding = WINDING, chain: Chain | None = None
                 (arms.lead_ohm, arms.capacitor_s, arms.series_ohm, arms.shunt_s, arms.high_s), ones
             ),
             np.full((DRAWS, 1), 0.25),
+            np.ones((DRAWS, 1)) * arms.wire_ohm,
         ),
     )
     return solved(Computed(chain=chain, arms=arms), drawn)

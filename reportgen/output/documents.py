@@ -7,6 +7,8 @@ import math
 from dataclasses import asdict
 from typing import Any
 
+import numpy as np
+
 from reportgen.model import (
     BandComparison,
     BandResult,
@@ -16,8 +18,10 @@ from reportgen.model import (
     Figure,
     Finding,
     Fitted,
+    HeatSplit,
     MeasuredBand,
     MethodResult,
+    RealArray,
 )
 from reportgen.physics.judge import overall
 from reportgen.physics.quantities import QUANTITIES
@@ -58,7 +62,7 @@ def results_document(
         "limits_overall": overall(result.limits),
         "lot": None if result.lot is None else asdict(result.lot),
         "repeatability": [asdict(one) for one in result.repeatability],
-        "heat_split": None,
+        "heat_split": None if result.heat_split is None else _heat_split(result.heat_split),
         "stress": None,
         "thermal": None,
         "forecast": None,
@@ -68,6 +72,21 @@ def results_document(
             {"file": one.file, "sha256": one.sha256, "points": one.points} for one in build.inputs
         ],
     }
+
+
+def _heat_split(split: HeatSplit) -> Document:
+    core = split.permeability
+    return {
+        "bands": [asdict(band) for band in split.bands],
+        "winding": asdict(split.winding),
+        "permeability": None
+        if core is None
+        else {name: _listed(getattr(core, name)) for name in core.__dataclass_fields__},
+    }
+
+
+def _listed(value: RealArray | float) -> Any:
+    return value.tolist() if isinstance(value, np.ndarray) else value
 
 
 def _method(method: MethodResult) -> Document:

@@ -29,6 +29,7 @@ from reportgen.physics.checks import check_findings
 from reportgen.physics.choose import chosen_of, rank
 from reportgen.physics.drawn import Drawn
 from reportgen.physics.forecast import Forecast, forecast_of
+from reportgen.physics.heat_split import heat_split_of
 from reportgen.physics.judge import judge
 from reportgen.physics.loads import find_load_sweeps
 from reportgen.physics.lots import find_repeatability, lot_of
@@ -96,6 +97,7 @@ def measure(build: Build, bench: BenchSheet, known: Sequence[Band]) -> Measured:
         loss_draws_db=loss_draws_db(chosen, spread),
         agreements=agreements,
         limits=judge(chosen.bands, bench),
+        heat_split=heat_split_of(group, build.sheet, power_w),
         lot=lot_of(units),
         repeatability=find_repeatability(build.measurements),
         **_budget_and_advice(build, bench, group, chosen),

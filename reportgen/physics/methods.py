@@ -112,7 +112,8 @@ class ClosedHalf:
         capacitor_s = low_capacitor_s(frame, frequency_hz)
         series_ohm, shunt_s = section_arms(halved, capacitor_s)
         nothing = np.zeros_like(series_ohm)
-        return Arms(nothing, capacitor_s, series_ohm, shunt_s, nothing, np.zeros(1))
+        wire_ohm = series_ohm.real
+        return Arms(nothing, capacitor_s, series_ohm, shunt_s, nothing, np.zeros(1), wire_ohm)
 
     def expected_ratio(self, arms: Arms, frequency_hz: RealArray, seen: Seen) -> ComplexArray:
         """Voltage ratio A of the unit, high side open, without any load sweep [ratio]."""

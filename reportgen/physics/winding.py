@@ -77,8 +77,9 @@ class Frame:
 class Arms:
     """The circuit's parts at each frequency, referred to the low side; (..., F) complex.
 
-    `lead_ohm`, `capacitor_s`, `series_ohm` (whole), `shunt_s` (core), `high_s`, and `share`, the
-    part of the series arm that lies behind the core, (..., 1) [ratio].
+    `lead_ohm`, `capacitor_s`, `series_ohm` (whole), `shunt_s` (core), `high_s`; `share`, the part
+    of the series arm that lies behind the core, (..., 1) [ratio]; `wire_ohm`, the resistance of the
+    series arm by the circuit, which follows it better than single points do.
     """
 
     lead_ohm: ComplexArray
@@ -87,6 +88,7 @@ class Arms:
     shunt_s: ComplexArray
     high_s: ComplexArray
     share: RealArray
+    wire_ohm: RealArray
 
 
 def arms_of(parameters: RealArray, frame: Frame, frequency_hz: RealArray) -> Arms:
@@ -101,13 +103,15 @@ def arms_of(parameters: RealArray, frame: Frame, frequency_hz: RealArray) -> Arm
     dispersion = wall / (1 - (f / wall_hz) ** 2 + jf / wall_hz * np.exp(p[DAMPING]))
     dispersion = dispersion + (1 - wall) / (1 + jf / spin_hz) ** p[EXPONENT]
     high_f = 1e-12 * p[HIGH_PF] + frame.high_capacitor_f
+    wire_ohm = np.exp(p[WIRE]) * np.sqrt(f / 1e6)
     return Arms(
         np.asarray(jw * 1e-9 * p[LEAD_NH]),
         low_capacitor_s(frame, f) * (1 + frame.low_capacitor_spread * p[CAPACITOR]),
-        jw * frame.leakage_h * np.exp(p[LEAKAGE]) + np.exp(p[WIRE]) * np.sqrt(f / 1e6),
+        np.asarray(jw * frame.leakage_h * np.exp(p[LEAKAGE]) + wire_ohm),
         np.asarray(1 / (jw * frame.magnetising_h * np.exp(p[MAGNETISING]) * dispersion)),
         np.asarray(jw * high_f * frame.turns_ratio**2),
         p[SHARE],
+        wire_ohm,
     )
 
 
