@@ -164,26 +164,29 @@ def add_key(figure: Figure, size: Size, samples: list[Sample], *, from_left: flo
         return
     height = figure.get_figheight() * POINTS_PER_INCH
     y, x = height - size.line / 2, from_left
+    line, gap = (18.0, 14.0) if size.head_lines == 1 else (12.0, 10.0)
     for sample in samples:
-        _add_sample(figure, (x / size.width, y / height), size, sample)
+        _add_sample(figure, (x / size.width, y / height), line / size.width, sample)
+        x += line + 4
         style = text_style(size)
-        figure.text((x + 22) / size.width, y / height, sample.text, va="center_baseline", **style)
-        x += 22 + text_width(sample.text, size) + 14
+        figure.text(x / size.width, y / height, sample.text, va="center_baseline", **style)
+        x += text_width(sample.text, size) + gap
 
 
-def _add_sample(figure: Figure, at: tuple[float, float], size: Size, sample: Sample) -> None:
+def _add_sample(figure: Figure, at: tuple[float, float], width: float, sample: Sample) -> None:
     x, y = at
-    line, dot = [x, x + 18 / size.width], [x + 9 / size.width]
     common: dict[str, Any] = {
         "color": sample.colour,
         "alpha": sample.strength if sample.strength < 1 else None,
         "transform": figure.transFigure,
     }
     if sample.dash != "none":
+        line = [x, x + width]
         drawn = Line2D(line, [y, y], linestyle=sample.dash, linewidth=sample.width, **common)
         drawn.set_solid_capstyle("butt")
         figure.add_artist(drawn)
     if sample.marker:
+        dot = [x + width / 2]
         mark = Line2D(dot, [y], linestyle="none", marker=sample.marker, markersize=5, **common)
         mark.set_markerfacecolor(sample.fill)
         figure.add_artist(mark)

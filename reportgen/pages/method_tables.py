@@ -16,7 +16,7 @@ from reportgen.pages.intervals import (
 )
 from reportgen.pages.sentences import listed
 from reportgen.pages.summary import figure_of, measured_bands
-from reportgen.pages.tables import Column, Row, Table, figures, with_points_aligned
+from reportgen.pages.tables import Column, Row, Table, band_column, figures, with_points_aligned
 from reportgen.pages.wording import METHOD_NAMES, ohms
 from reportgen.physics.quantities import BY_KEY
 
@@ -40,7 +40,7 @@ def methods_table(result: BuildResult, locale: str) -> Table | None:
         caption=_CAPTION,
         corner="Method",
         sub="Value",
-        columns=tuple(Column(label=name) for name in names),
+        columns=tuple(band_column(name) for name in names),
         groups=tuple(_method_rows(method, names, result, locale) for method in shown),
         long_heads=True,
     )
@@ -111,6 +111,8 @@ def _remarks(method: MethodResult, result: BuildResult, locale: str) -> Iterator
 
 def _choice(result: BuildResult) -> str:
     """Why the published method is that."""
+    same = [method for method in result.methods if method.method is result.chosen.method]
+    published = "published" if len(same) == 1 else "published, as a mean"
     rivals = [
         method
         for method in result.methods
@@ -118,10 +120,10 @@ def _choice(result: BuildResult) -> str:
     ]
     bands = [len(_figures_by_band(method)) for method in rivals if _figures_by_band(method)]
     if not bands:
-        return "published"
+        return published
     if min(bands) < len(_figures_by_band(result.chosen)):
-        return "published: loss in most bands, and then the smallest interval"
-    return "published: the smallest interval"
+        return f"{published}: loss in most bands, and then the smallest interval"
+    return f"{published}: the smallest interval"
 
 
 def agreement_words(one: Agreement, locale: str) -> str:

@@ -106,7 +106,8 @@ def _verdict_without_loss(result: BuildResult, locale: str) -> str:
 def _band_span(values: Sequence[BandValue]) -> str:
     if len(values) == 1:
         return values[0].band.name
-    return f"{len(values)} bands from {values[0].band.name} to {values[-1].band.name}"
+    first, last = (one.band.name.replace(" ", "\u00a0") for one in (values[0], values[-1]))
+    return f"{len(values)} bands from {first} to {last}"
 
 
 @dataclass(frozen=True, kw_only=True, slots=True)

@@ -8,6 +8,7 @@ from dataclasses import dataclass, replace
 from reportgen.pages.display import aligned
 
 _FEW_COLUMNS = 6
+_SHORT_NAME = 6
 
 
 @dataclass(frozen=True, kw_only=True, slots=True)
@@ -71,6 +72,11 @@ class Table:
         if self.long_heads:
             return "heads"
         return "figures" if len(self.columns) > _FEW_COLUMNS else "few"
+
+
+def band_column(name: str) -> Column:
+    """A column of one band: a short name stays on one line."""
+    return Column(label=name if len(name) > _SHORT_NAME else name.replace(" ", "\u00a0"))
 
 
 def figures(texts: Sequence[str], look: str = "") -> tuple[Cell, ...]:

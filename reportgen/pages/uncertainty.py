@@ -9,7 +9,15 @@ from reportgen.pages.display import DASH, number
 from reportgen.pages.intervals import half_width
 from reportgen.pages.sentences import listed
 from reportgen.pages.summary import figure_of, measured_bands
-from reportgen.pages.tables import Cell, Column, Row, Table, figures, with_points_aligned
+from reportgen.pages.tables import (
+    Cell,
+    Column,
+    Row,
+    Table,
+    band_column,
+    figures,
+    with_points_aligned,
+)
 from reportgen.physics.checks import find_checks
 from reportgen.physics.residuals import Limits
 from reportgen.physics.uncertainty import DRAWS
@@ -28,14 +36,15 @@ def budget_sentence(budget: Sequence[BudgetLine], locale: str) -> str:
     if not budget:
         return ""
     first = budget[0]
-    opening = f"{first.contribution.capitalize()} makes the figures most uncertain over all bands"
     line, band = max(
         ((line, band) for line in budget for band in line.u95_db),
         key=lambda pair: pair[0].u95_db[pair[1]],
     )
-    most = number(line.u95_db[band], _PLACES, locale=locale)
-    what = "it" if line is first else line.contribution
-    return f"{opening}; the largest single part is {what} on {band}, \u00b1\u00a0{most}\u00a0dB."
+    opening = f"{first.contribution.capitalize()} makes the figures most uncertain over all bands"
+    most = f"\u00b1\u00a0{number(line.u95_db[band], _PLACES, locale=locale)}\u00a0dB"
+    if line is first:
+        return f"{opening}, at most {most} on {band}."
+    return f"{opening}; the largest single part is {line.contribution} on {band}, {most}."
 
 
 def advice_sentences(advice: Sequence[Advice], locale: str) -> tuple[str, ...]:
@@ -66,7 +75,7 @@ def budget_table(result: BuildResult, locale: str) -> Table | None:
     table = Table(
         caption=_CAPTION + (_CHECKED if checked else _SQUARES),
         corner="Contribution",
-        columns=tuple(Column(label=name) for name in names),
+        columns=tuple(band_column(name) for name in names),
         groups=(tuple(rows), (Row(head="all together", cells=_together(result, names, locale)),)),
         long_heads=True,
     )

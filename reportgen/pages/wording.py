@@ -81,17 +81,18 @@ SETUP_NAMES = {
 
 CAPITAL_OHM = "\u03a9"
 _RELATIONS = {"<=": "at most", ">=": "at least", "<": "below", ">": "above"}
-_CRITERION = re.compile(r"(\w+) (<=|>=|<|>) ([0-9.e+-]+)")
+_CRITERION = re.compile(r"(\w+) (<=|>=|<|>) ([0-9.e+-]+)( %)?")
 _FITTED = {"stray_pf": ("Stray capacitance", "pF")}
 
 
 def criterion_words(criterion: str, locale: str) -> str:
     """A criterion as a person says it: `SWR at most 2`, `Efficiency at least 85 %`."""
     found = _CRITERION.fullmatch(criterion)
-    quantity = BY_KEY.get(found[1]) if found else None
+    quantity = (BY_KEY.get(found[1]) or BY_KEY.get(f"{found[1]}_ratio")) if found else None
     if found is None or quantity is None:
         return criterion
-    value = percent_of(float(found[3])) if quantity.percent else float(found[3])
+    value = float(found[3])
+    value = percent_of(value) if quantity.percent and not found[4] else value
     text = entered(value, locale=locale)
     return f"{quantity.label} {_RELATIONS[found[2]]} {with_unit(text, quantity.unit)}"
 

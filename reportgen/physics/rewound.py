@@ -173,7 +173,7 @@ def units_of(
             take(arms.shunt_s),
             take(arms.high_s),
             arms.share,
-            take(arms.wire_ohm + 0j).real,
+            take(arms.wire_ohm.astype(np.complex128)).real,
         )
         elements = (take(part) for part in (chain.a, chain.b, chain.c, chain.d))
         units.append(taken_apart(Chain(*elements), chosen, turns_ratio))
