@@ -11,7 +11,6 @@ from reportgen.pages.sentences import listed
 from reportgen.pages.summary import figure_of, measured_bands
 from reportgen.pages.tables import (
     Cell,
-    Column,
     Row,
     Table,
     band_column,
