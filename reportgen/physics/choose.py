@@ -23,30 +23,52 @@ PREFERENCE = (
     Method.LOAD_ONLY,
     Method.HALVING,
 )
-"""Which method is the result where their intervals are equal."""
+"""Which method is the result where their intervals are as good as equal."""
+
+AS_GOOD_AS_EQUAL = 1.05
+"""Intervals within so much of each other are equal: draws alone make such a difference."""
+
+WORTH_FEWER_UNITS = 2.0
+"""A method that speaks of fewer units is the result only when so many times surer."""
 
 
 def chosen_of(
     solved: Sequence[Solved], bands: Sequence[Band], power_w: float
 ) -> tuple[list[Solved], MethodResult, Spread]:
-    """The method with loss in most bands and then the smallest interval; several: their mean."""
+    """The result: loss in most bands, of most units, and then the smallest interval.
+
+    A method that gives several units or pairs counts as their mean.
+    """
     groups: dict[Method, list[Solved]] = {}
     for one in solved:
         groups.setdefault(one.plan.method, []).append(one)
     means = [(group, *_mean_of(group, bands, power_w)) for group in groups.values()]
-    return min(means, key=lambda mean: rank(mean[1]))
+    most_bands = max(len(bands_with_loss(result.bands)) for _, result, _ in means)
+    field = [mean for mean in means if len(bands_with_loss(mean[1].bands)) == most_bands]
+    most_units = max(len(result.units) for _, result, _ in field)
+    complete = [mean for mean in field if len(mean[1].units) == most_units]
+    surest = min(width_db(result) for _, result, _ in field)
+    if WORTH_FEWER_UNITS * surest >= min(width_db(result) for _, result, _ in complete):
+        field, surest = complete, min(width_db(result) for _, result, _ in complete)
+    near = [mean for mean in field if width_db(mean[1]) <= AS_GOOD_AS_EQUAL * surest]
+    return min(near or field, key=lambda mean: PREFERENCE.index(mean[1].method))
 
 
 def rank(result: MethodResult) -> tuple[int, float, int]:
     """Least is best: bands with loss, mean width of their intervals, preference."""
-    losses = [band.figures["heat_loss_db"] for band in bands_with_loss(result.bands)]
+    count = len(bands_with_loss(result.bands))
+    return -count, round(width_db(result), 4), PREFERENCE.index(result.method)
+
+
+def width_db(result: MethodResult) -> float:
+    """Mean width of the intervals of heat loss over the bands; inf where it is not known [dB]."""
+    figures = [band.figures["heat_loss_db"] for band in bands_with_loss(result.bands)]
     widths = [
         figure.high95 - figure.low95
-        for figure in losses
+        for figure in figures
         if figure.high95 is not None and figure.low95 is not None
     ]
-    width = float(np.mean(widths)) if widths else float("inf")
-    return -len(losses), round(width, 4), PREFERENCE.index(result.method)
+    return float(np.mean(widths)) if widths else float("inf")
 
 
 def _mean_of(

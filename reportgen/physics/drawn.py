@@ -91,7 +91,7 @@ class Drawn(Seen):
     ) -> None:
         self.calibrations, self.owner, self.draws = calibrations, owner, draws
         self.contributions = contributions
-        self._circuits: dict[int, Circuit] = {}
+        self._circuits: dict[int, tuple[Circuit, Circuit]] = {}
         self._sweeps: dict[tuple[str, bytes], Scattering] = {}
         self._ports: dict[tuple[object, ...], PortResiduals] = {}
 
@@ -261,8 +261,8 @@ class Drawn(Seen):
             expected = rng.normal(size=(self.draws, SPREAD.size))
             expected = self._if(Contribution.CLOSING, 1.0) * expected
             drawn, _ = view(circuit.points_hz, self)
-            self._circuits[id(circuit)] = refitted(circuit, drawn, expected)
-        return self._circuits[id(circuit)]
+            self._circuits[id(circuit)] = (circuit, refitted(circuit, drawn, expected))
+        return self._circuits[id(circuit)][1]
 
     def closing_ratio(self, circuit: Circuit, frequency_hz: RealArray) -> ComplexArray:
         """Draws of a factor by which the closing is off."""

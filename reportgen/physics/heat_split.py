@@ -79,22 +79,24 @@ def heat_split_of(group: Sequence[Solved], sheet: BuildSheet, power_w: float) ->
     Parameters
     ----------
     group : sequence of Solved
-        The result's method, once for each pair or unit.
+        The result's method, once for each pair or unit; those swept over another range than the
+        first are left out.
     sheet : BuildSheet
         Turns, load, core.
     power_w : float
         Power that enters the low side [W].
     """
+    first = group[0]
+    hz = first.spread.seen.frequency_hz
+    group = [one for one in group if np.array_equal(one.spread.seen.frequency_hz, hz)]
     seen = [one.spread.without.arms for one in group]
     drawn = [one.spread.computed.arms for one in group]
-    first = group[0]
     if any(arms is None for arms in (*seen, *drawn)):
         return None
     load_ohm = sheet.nominal_load_ohm / sheet.winding.turns_ratio**2
     parts = _mean_parts([dissipated(arms, load_ohm) for arms in seen if arms is not None])
     draws = _mean_parts([dissipated(arms, load_ohm) for arms in drawn if arms is not None])
     bands = [band for band in first.result.bands if isinstance(band, MeasuredBand)]
-    hz = first.spread.seen.frequency_hz
     return HeatSplit(
         bands=tuple(_in_band(first, band, parts, draws, power_w) for band in bands),
         winding=_winding_figures([a for a in seen if a], [a for a in drawn if a], hz),

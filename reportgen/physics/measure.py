@@ -180,4 +180,9 @@ def _fitted_stray(name: str, stray_f: float, spread_f: float, one: Solved) -> Fi
 
 
 def _unique(findings: Sequence[Finding]) -> tuple[Finding, ...]:
-    return tuple(dict.fromkeys(findings))
+    """Each finding once; of those about one key of the sidecar, the first method's."""
+    found: dict[object, Finding] = {}
+    for one in findings:
+        same = (one.code, one.key) if (one.key or "").startswith("loads.") else one
+        found.setdefault(same, one)
+    return tuple(found.values())
