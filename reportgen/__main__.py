@@ -30,6 +30,7 @@ DONE, REJECTED, WRONG_CALL = 0, 1, 2
 
 def main(arguments: Sequence[str] | None = None) -> int:
     """Run one command; returns its exit status."""
+    _leave_cores_to_builds()
     for stream in (sys.stdout, sys.stderr):
         if isinstance(stream, TextIOWrapper):
             stream.reconfigure(errors="backslashreplace")
@@ -48,6 +49,12 @@ def main(arguments: Sequence[str] | None = None) -> int:
         return REJECTED
     except KeyboardInterrupt:
         return _tell(OutputError("interrupted; what was published before still stands"), REJECTED)
+
+
+def _leave_cores_to_builds() -> None:
+    """One thread for linear algebra: builds run beside each other, and bytes stay the same."""
+    for name in ("OPENBLAS_NUM_THREADS", "OMP_NUM_THREADS", "MKL_NUM_THREADS"):
+        os.environ.setdefault(name, "1")
 
 
 def _tell(error: ReportError, status: int) -> int:
