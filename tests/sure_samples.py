@@ -14,8 +14,11 @@ from reportgen.model import (
     Fitted,
     Judgement,
     LimitResult,
+    Lot,
+    LotBand,
     MeasuredBand,
     Method,
+    Repeatability,
     Setup,
 )
 
@@ -50,6 +53,8 @@ def sure() -> BuildResult:
         budget=_budget(),
         advice=_advice(),
         limits=_limits(),
+        lot=_lot(),
+        repeatability=(Repeatability(file="pair-again.s2p", of="pair-ab.s2p", rms_ratio=0.00051),),
     )
 
 
@@ -98,6 +103,18 @@ def _budget() -> tuple[BudgetLine, ...]:
 def _advice() -> tuple[Advice, ...]:
     words = "a load sweep of unit A and of unit B"
     return (Advice(sweep=words, band="40 m", u95_db=0.0912, u95_then_db=0.0308),)
+
+
+def _lot() -> Lot:
+    near = {"least_db": 0.601, "greatest_db": 0.612, "worst_unit": "B"}
+    far = {"least_db": 0.584, "greatest_db": 0.672, "worst_unit": "C"}
+    return Lot(
+        units=("A", "B", "C"),
+        bands=(
+            LotBand(band="160 m", standard_deviation_db=0.04, **far),
+            LotBand(band="40 m", standard_deviation_db=0.01, **near),
+        ),
+    )
 
 
 def _limits() -> tuple[LimitResult, ...]:

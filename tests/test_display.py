@@ -15,6 +15,7 @@ from reportgen.pages.display import (
     interval,
     megahertz_range,
     number,
+    one_sided,
     plus_minus,
     quantity_number,
 )
@@ -141,6 +142,22 @@ def test_what_is_not_known_is_a_dash():
 def test_comma_where_the_language_has_one():
     assert number(3.14159, 2, locale="de") == "3,14"
     assert number(3.14159, 2, locale="en-GB") == "3.14"
+
+
+def test_figures_with_an_uncertainty_meet_at_their_points_and_signs() -> None:
+    texts = aligned(["12.25\u00a0\u00b1\u00a00.58", "9.3\u00a0\u00b1\u00a01.1", "not measured"])
+    assert texts == (
+        "12.25\u00a0\u00b1\u00a00.58",
+        "9.3\u2007\u00a0\u00b1\u00a01.1\u2007",
+        "not measured",
+    )
+
+
+def test_a_one_sided_interval_never_shrinks() -> None:
+    assert one_sided(27.68, None, 1) == "over\u00a027.6"
+    assert one_sided(None, 0.031, 2) == "below\u00a00.04"
+    assert one_sided(27.68, None, 1, locale="de") == "over\u00a027,6"
+    assert one_sided(None, None, 1) == DASH
 
 
 def test_points_of_a_column_meet():

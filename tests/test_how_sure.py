@@ -1,6 +1,7 @@
 """What the pages say of how sure the figures are."""
 
 import re
+from dataclasses import replace
 
 import pytest
 import result_samples as samples
@@ -13,7 +14,7 @@ from reportgen.pages.charts import draw_charts
 from reportgen.pages.comparison import comparison_sentence
 from reportgen.pages.intervals import with_interval
 from reportgen.pages.limits import limits_words
-from reportgen.pages.method_tables import agreement_words
+from reportgen.pages.method_tables import agreement_sentence, agreement_words
 from reportgen.pages.terminal import print_bands
 from reportgen.physics.quantities import BY_KEY
 
@@ -116,6 +117,21 @@ def test_methods_stand_side_by_side_with_their_agreement(text):
     assert "common practice, and not the loss of a unit" in text
 
 
+def test_it_is_said_first_whether_methods_agree(text):
+    expected = "Bisection does not agree with the best method for the same units."
+    assert text.index(expected) < text.index("Halved pair, mean of A and B")
+    agreeing = replace(sure().agreements[0], agrees=True)
+    assert agreement_sentence((agreeing,)) == (
+        "The methods that can be compared agree within their uncertainty."
+    )
+    assert agreement_sentence((replace(agreeing, agrees=None),)) == ""
+
+
+def test_units_that_lie_apart_are_named(text):
+    expected = "The 3 units lie most apart on 160 m: 0.58 to 0.67 dB of heat loss, most in"
+    assert expected in text
+
+
 def test_methods_that_cannot_be_compared_say_why():
     one = Agreement(
         method=Method.SERIES_RESISTOR,
@@ -151,11 +167,14 @@ def test_assumptions_are_said_as_such(text):
     assert "assumed by its grade, and not measured: handheld grade for evening" in text
     assert "stated by the workshop: evening (load match)" in text
     assert "Check sweeps of known parts condition the draws" in text
+    assert (
+        "pair-again.s2p was taken as pair-ab.s2p was: their S-parameters differ by 0.0005" in text
+    )
     assert "No allowance is made for one unit standing for others" in text
     assert "Stray capacitance at load main: 3.13 ± 0.34 pF" in text
 
 
-def test_without_a_budget_nothing_is_said_of_it():
+def test_without_intervals_nothing_is_said_of_them():
     assert "How sure it is" not in Page(report("full")).text
 
 

@@ -40,7 +40,7 @@ def band_table(result: BuildResult, bench: BenchSheet) -> Table | None:
     shown = measured_quantities(result.chosen)
     if not shown:
         return None
-    sure = _intervals_known(result.chosen)
+    sure = intervals_known(result.chosen)
     table = Table(
         caption=_caption(result.chosen),
         corner="Band",
@@ -58,11 +58,12 @@ def band_table(result: BuildResult, bench: BenchSheet) -> Table | None:
 
 def _caption(method: MethodResult) -> str:
     lossy = bool(means(method, "efficiency_ratio"))
-    sure = _intervals_known(method)
+    sure = intervals_known(method)
     return _CAPTION + (_EFFICIENCY if lossy else "") + (_INTERVALS if sure else "")
 
 
-def _intervals_known(method: MethodResult) -> bool:
+def intervals_known(method: MethodResult) -> bool:
+    """True where at least one figure has its interval."""
     found = [figure for band in measured_bands(method) for figure in band.figures.values()]
     return any(half_width(figure.low95, figure.high95) is not None for figure in found)
 

@@ -8,7 +8,7 @@ from dataclasses import dataclass, replace
 from reportgen.model import BenchSheet, BuildResult, Comparison, FailedBuild, Finding, Verdict
 from reportgen.pages import sentences
 from reportgen.pages.band_tables import heat_loss_text
-from reportgen.pages.display import DASH, NOT_MEASURED, aligned
+from reportgen.pages.display import DASH, NOT_MEASURED, aligned, with_unit
 from reportgen.pages.html import page_style
 from reportgen.pages.intervals import plain_text, with_interval
 from reportgen.pages.limits import limits_short
@@ -27,7 +27,6 @@ from reportgen.pages.templates import render
 from reportgen.physics.quantities import BY_KEY
 
 _FIGURES = ("efficiency", "heat_loss", "swr")
-
 Ranked = tuple[BuildResult, Comparison | None]
 
 
@@ -148,7 +147,8 @@ def _lead(
     efficiency = None if first is None else _efficiency(first, shared)
     if first is None or efficiency is None:
         return f"{published}{rejected}."
-    figure = sentences.spoken("efficiency_ratio", efficiency, locale)
+    text = _figure(first, "efficiency_ratio", efficiency, shared or None, locale)
+    figure = with_unit(text, "%")
     return f"{published}{rejected}; the most efficient is {first.build.sheet.name}, {figure}."
 
 

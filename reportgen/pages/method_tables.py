@@ -4,9 +4,9 @@ from __future__ import annotations
 
 from collections.abc import Iterator, Sequence
 
-from reportgen.model import Agreement, BandResult, BuildResult, Figure, Method, MethodResult
+from reportgen.model import Agreement, BandResult, BuildResult, Figure, Lot, Method, MethodResult
 from reportgen.pages.band_tables import heat_loss_text
-from reportgen.pages.display import DASH, plus_minus
+from reportgen.pages.display import DASH, number, plus_minus
 from reportgen.pages.intervals import (
     half_width,
     mean_text,
@@ -126,6 +126,21 @@ def _choice(result: BuildResult) -> str:
     return f"{published}: the smallest interval"
 
 
+def agreement_sentence(agreements: Sequence[Agreement]) -> str:
+    """Whether the methods that can be compared say the same; empty where none can."""
+    judged = [one for one in agreements if one.agrees is not None]
+    differing = [one for one in judged if not one.agrees]
+    if not judged:
+        return ""
+    if not differing:
+        return "The methods that can be compared agree within their uncertainty."
+    names = [
+        METHOD_NAMES[one.method] + (f" of unit {one.unit}" if one.unit else "") for one in differing
+    ]
+    verb = "does" if len(names) == 1 else "do"
+    return f"{listed(names)} {verb} not agree with the best method for the same units."
+
+
 def agreement_words(one: Agreement, locale: str) -> str:
     """Whether a method says the same as the best one, and where it differs most."""
     other = METHOD_NAMES[one.against].lower()
@@ -181,3 +196,15 @@ def _units_row(
             texts.append(heat_loss_text(unit, band.band.name, locale, mean_with_interval))
         texts.append(worst_text(BY_KEY["swr"], swr, locale=locale))
     return Row(head=band.band.name, cells=figures(texts))
+
+
+def lot_sentence(lot: Lot | None, locale: str) -> str:
+    """How far the units of a build lie apart, where they do most."""
+    if lot is None or not lot.bands:
+        return ""
+    most = max(lot.bands, key=lambda band: band.greatest_db - band.least_db)
+    ends = (number(loss, 2, locale=locale) for loss in (most.least_db, most.greatest_db))
+    return (
+        f"The {len(lot.units)} units lie most apart on {most.band}: {' to '.join(ends)}\u00a0dB "
+        f"of heat loss, most in unit {most.worst_unit}."
+    )

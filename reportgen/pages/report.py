@@ -14,7 +14,12 @@ from reportgen.pages.charts import Chart, draw_charts
 from reportgen.pages.comparison import comparison_sentence, comparison_table
 from reportgen.pages.html import inline_svg, page_style
 from reportgen.pages.limits import limits_table, limits_words
-from reportgen.pages.method_tables import methods_table, units_table
+from reportgen.pages.method_tables import (
+    agreement_sentence,
+    lot_sentence,
+    methods_table,
+    units_table,
+)
 from reportgen.pages.particulars import (
     FindingText,
     bandwidth_table,
@@ -76,6 +81,7 @@ class ReportPage:
     setups: Table | None
     fitted: tuple[str, ...]
     methods: Table | None
+    methods_words: str
     reasons: tuple[str, ...]
     budget_words: str
     budget: Table | None
@@ -83,6 +89,7 @@ class ReportPage:
     assumptions: tuple[str, ...]
     bandwidths: Table | None
     units: Table | None
+    lot_words: str
     findings: tuple[FindingText, ...]
     facts: tuple[tuple[str, str], ...]
     notes: tuple[str, ...]
@@ -174,13 +181,15 @@ def _page(
         setups=setups_table(result.build, bench),
         fitted=tuple(fitted_sentence(one, locale) for one in result.fitted),
         methods=methods_table(result, locale),
+        methods_words=agreement_sentence(result.agreements),
         reasons=_reasons(result),
         budget_words=budget_sentence(result.budget, locale),
         budget=budget_table(result, locale),
         advice=advice_sentences(result.advice, locale),
-        assumptions=assumption_sentences(result, bench) if result.budget else (),
+        assumptions=assumption_sentences(result, bench),
         bandwidths=bandwidth_table(result.bandwidths, locale),
         units=units_table(result, locale),
+        lot_words=lot_sentence(result.lot, locale),
         findings=finding_texts(result.findings),
         facts=build_facts(result, locale),
         notes=text_lines(sheet.notes),

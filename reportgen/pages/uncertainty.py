@@ -4,7 +4,8 @@ from __future__ import annotations
 
 from collections.abc import Sequence
 
-from reportgen.model import Advice, BenchSheet, BudgetLine, BuildResult, Calibration
+from reportgen.model import Advice, BenchSheet, BudgetLine, BuildResult, Calibration, Repeatability
+from reportgen.pages.band_tables import intervals_known
 from reportgen.pages.display import DASH, number
 from reportgen.pages.intervals import half_width
 from reportgen.pages.sentences import listed
@@ -108,7 +109,9 @@ _STATED = tuple(name for name in Limits.__dataclass_fields__ if hasattr(Calibrat
 
 
 def assumption_sentences(result: BuildResult, bench: BenchSheet) -> tuple[str, ...]:
-    """How the intervals came about, and what is not in them."""
+    """How the intervals came about, and what is not in them; empty where there are none."""
+    if not intervals_known(result.chosen):
+        return ()
     sentences = [
         f"The 95\u00a0% intervals come from {DRAWS} draws of all that is not known exactly (JCGM "
         "101): what the calibration left uncorrected, noise and drift, the load resistor, and "
@@ -120,11 +123,17 @@ def assumption_sentences(result: BuildResult, bench: BenchSheet) -> tuple[str, .
             "Check sweeps of known parts condition the draws: those that agree with what was swept "
             "count more."
         )
+    sentences += [_repeat_sentence(one, bench.locale) for one in result.repeatability]
     sentences.append(
         "No allowance is made for one unit standing for others of its kind, nor for what changes "
         "with power and heat."
     )
     return tuple(sentences)
+
+
+def _repeat_sentence(one: Repeatability, locale: str) -> str:
+    rms = number(one.rms_ratio, 4, locale=locale)
+    return f"{one.file} was taken as {one.of} was: their S-parameters differ by {rms} (rms)."
 
 
 def _residuals_sentence(result: BuildResult, bench: BenchSheet) -> str:
