@@ -6,6 +6,7 @@ of one unit or mean of units. Coverage is the share of cases whose 95 % interval
 
 from __future__ import annotations
 
+import os
 import sys
 from collections.abc import Iterator
 from concurrent.futures import ProcessPoolExecutor
@@ -13,16 +14,18 @@ from dataclasses import dataclass
 from functools import partial
 from pathlib import Path
 
-import numpy as np
-
+os.environ.setdefault("OPENBLAS_NUM_THREADS", "1")
 sys.path.insert(0, str(Path(__file__).parent))
 
+import numpy as np
 from simulation.bench import KnownBuild, bench_sheet, known_build
 
 from reportgen.model import MeasuredBand, Method, MethodResult
 from reportgen.physics.allocations import amateur_bands
 from reportgen.physics.bands import mean_ratio
-from reportgen.physics.measure import measure_build
+from reportgen.physics.drawn import Drawn
+from reportgen.physics.solve import solve_all
+from reportgen.physics.uncertainty import DRAWS
 
 CONDITIONS = {
     "bench": {"grade": "bench"},
@@ -63,10 +66,12 @@ class Case:
         return (self.high_db - self.low_db) / 2
 
 
+@np.errstate(divide="ignore", invalid="ignore")
 def cases_of(known: KnownBuild, grade: str) -> Iterator[Case]:
     """Every band of every method of a build."""
-    result = measure_build(known.build, bench_sheet(grade), BANDS)
-    for method in result.methods:
+    drawn = Drawn(bench_sheet(grade).calibrations, known.build.key, DRAWS)
+    solved, _ = solve_all(known.build, BANDS, 100.0, drawn)
+    for method in (one.result for one in solved):
         for band in method.bands:
             if method.method in LABELS and isinstance(band, MeasuredBand):
                 yield _case(known, method, band)
