@@ -13,8 +13,8 @@ from reportgen.model import Agreement, BandComparison, Comparison, Judgement, Me
 from reportgen.pages.charts import draw_charts
 from reportgen.pages.comparison import comparison_sentence
 from reportgen.pages.intervals import with_interval
-from reportgen.pages.limits import limits_words
-from reportgen.pages.method_tables import agreement_sentence, agreement_words
+from reportgen.pages.limits import limits_short, limits_words
+from reportgen.pages.method_tables import agreement_sentence, agreement_words, units_sentences
 from reportgen.pages.terminal import print_bands
 from reportgen.physics.quantities import BY_KEY
 
@@ -132,6 +132,13 @@ def test_units_that_lie_apart_are_named(text):
     assert expected in text
 
 
+def test_units_whose_match_alone_is_known_are_named():
+    alone = samples.load_only().chosen
+    result = replace(sure(), units=(alone, replace(alone, unit="B")))
+    expected = "Of A and B alone only the match was measured, with the bench resistor as it is"
+    assert units_sentences(result, "en")[1].startswith(expected)
+
+
 def test_methods_that_cannot_be_compared_say_why():
     one = Agreement(
         method=Method.SERIES_RESISTOR,
@@ -195,8 +202,21 @@ def test_the_build_passes_only_without_a_doubt():
         "Limits undecided.",
         "Efficiency on 40 m is too close to the limit to tell.",
     )
+    assert limits_words((judged[Judgement.PASS], judged[Judgement.NOT_MEASURED])) == (
+        "Keeps to the limits that could be judged.",
+        "Not measured: Efficiency on 10 m.",
+    )
     assert limits_words((judged[Judgement.PASS],)) == ("Keeps to all limits.", "")
     assert limits_words((judged[Judgement.NOT_MEASURED],)) == ("", "")
+
+
+def test_a_cell_says_when_only_a_part_was_judged():
+    judged = {one.judgement: one for one in sure().limits}
+    lacking = judged[Judgement.NOT_MEASURED]
+    assert limits_short((judged[Judgement.PASS], lacking)) == "pass in part"
+    assert limits_short((judged[Judgement.FAIL], lacking)) == "fail"
+    assert limits_short((lacking,)) == "not judged"
+    assert limits_short(()) == "no limits"
 
 
 # --- index and terminal --------------------------------------------------------------------------

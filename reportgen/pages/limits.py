@@ -28,17 +28,22 @@ def limits_words(limits: Sequence[LimitResult]) -> tuple[str, str]:
     judgement = overall(limits)
     if judgement is None:
         return "", ""
-    opening = f"{_OPENING[judgement]}."
-    deciding = [one for one in limits if one.judgement is judgement]
+    lacking = _causes(limits, Judgement.NOT_MEASURED)
     if judgement is Judgement.PASS:
-        lacking = any(one.judgement is Judgement.NOT_MEASURED for one in limits)
-        return opening, "What was not measured is not judged." if lacking else ""
-    causes = [
-        _cause(key, limits, [one.band for one in deciding if one.quantity == key])
-        for key in dict.fromkeys(one.quantity for one in deciding)
-    ]
+        if lacking:
+            return "Keeps to the limits that could be judged.", f"Not measured: {lacking}."
+        return f"{_OPENING[judgement]}.", ""
     tail = " is too close to the limit to tell" if judgement is Judgement.UNDECIDED else ""
-    return opening, f"{'; '.join(causes)}{tail}."
+    return f"{_OPENING[judgement]}.", f"{_causes(limits, judgement)}{tail}."
+
+
+def _causes(limits: Sequence[LimitResult], judgement: Judgement) -> str:
+    """Quantities and bands that were judged so."""
+    found = [one for one in limits if one.judgement is judgement]
+    return "; ".join(
+        _cause(key, limits, [one.band for one in found if one.quantity == key])
+        for key in dict.fromkeys(one.quantity for one in found)
+    )
 
 
 def _cause(key: str, limits: Sequence[LimitResult], bands: Sequence[str]) -> str:
@@ -50,7 +55,10 @@ def _cause(key: str, limits: Sequence[LimitResult], bands: Sequence[str]) -> str
 def limits_short(limits: Sequence[LimitResult]) -> str:
     """The build's verdict in a word or two, for a cell."""
     judgement = overall(limits)
-    return "no limits" if judgement is None else judgement.value
+    if judgement is None:
+        return "not judged" if limits else "no limits"
+    lacking = any(one.judgement is Judgement.NOT_MEASURED for one in limits)
+    return "pass in part" if judgement is Judgement.PASS and lacking else judgement.value
 
 
 def limits_table(limits: Sequence[LimitResult], locale: str) -> Table | None:

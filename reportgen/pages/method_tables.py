@@ -170,7 +170,9 @@ def units_table(result: BuildResult, locale: str) -> Table | None:
         )
     ]
     table = Table(
-        caption="Mean heat loss and worst SWR in each band." + _lacking(result.units, lossy),
+        caption="Mean heat loss and worst SWR in each band."
+        if lossy
+        else "Worst SWR in each band.",
         corner="Band",
         columns=tuple(columns),
         groups=tuple(
@@ -178,11 +180,6 @@ def units_table(result: BuildResult, locale: str) -> Table | None:
         ),
     )
     return with_points_aligned(table, locale)
-
-
-def _lacking(units: Sequence[MethodResult], lossy: Sequence[MethodResult]) -> str:
-    names = [str(unit.unit) for unit in units if unit not in lossy]
-    return f" Of {listed(names)} alone only the match was measured." if names else ""
 
 
 def _units_row(
@@ -196,6 +193,22 @@ def _units_row(
             texts.append(heat_loss_text(unit, band.band.name, locale, mean_with_interval))
         texts.append(worst_text(BY_KEY["swr"], swr, locale=locale))
     return Row(head=band.band.name, cells=figures(texts))
+
+
+def units_sentences(result: BuildResult, locale: str) -> tuple[str, ...]:
+    """How far the units lie apart, and of which of them the match alone is known."""
+    found = (lot_sentence(result.lot, locale), _lacking_sentence(result))
+    return tuple(sentence for sentence in found if sentence)
+
+
+def _lacking_sentence(result: BuildResult) -> str:
+    names = [unit.unit for unit in result.units if unit.method is Method.LOAD_ONLY and unit.unit]
+    if not names:
+        return ""
+    return (
+        f"Of {listed(names)} alone only the match was measured, with the bench resistor as it is: "
+        "its stray capacitance is in the SWR."
+    )
 
 
 def lot_sentence(lot: Lot | None, locale: str) -> str:

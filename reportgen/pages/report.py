@@ -16,8 +16,8 @@ from reportgen.pages.html import inline_svg, page_style
 from reportgen.pages.limits import limits_table, limits_words
 from reportgen.pages.method_tables import (
     agreement_sentence,
-    lot_sentence,
     methods_table,
+    units_sentences,
     units_table,
 )
 from reportgen.pages.particulars import (
@@ -89,7 +89,7 @@ class ReportPage:
     assumptions: tuple[str, ...]
     bandwidths: Table | None
     units: Table | None
-    lot_words: str
+    units_words: tuple[str, ...]
     findings: tuple[FindingText, ...]
     facts: tuple[tuple[str, str], ...]
     notes: tuple[str, ...]
@@ -189,7 +189,7 @@ def _page(
         assumptions=assumption_sentences(result, bench),
         bandwidths=bandwidth_table(result.bandwidths, locale),
         units=units_table(result, locale),
-        lot_words=lot_sentence(result.lot, locale),
+        units_words=units_sentences(result, locale),
         findings=finding_texts(result.findings),
         facts=build_facts(result, locale),
         notes=text_lines(sheet.notes),
