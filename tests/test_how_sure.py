@@ -7,14 +7,19 @@ import pytest
 import result_samples as samples
 from page_reader import BASELINE, Page, index, report
 from rich.console import Console
-from sure_samples import BENCH, sure
+from sure_samples import BENCH, NAMES, sure
 
 from reportgen.model import Agreement, BandComparison, Comparison, Judgement, Method, Verdict
 from reportgen.pages.charts import draw_charts
 from reportgen.pages.comparison import comparison_sentence
 from reportgen.pages.intervals import with_interval
 from reportgen.pages.limits import limits_short, limits_words
-from reportgen.pages.method_tables import agreement_sentence, agreement_words, units_sentences
+from reportgen.pages.method_tables import (
+    agreement_sentence,
+    agreement_words,
+    units_sentences,
+    units_table,
+)
 from reportgen.pages.terminal import print_bands
 from reportgen.physics.quantities import BY_KEY
 
@@ -130,6 +135,22 @@ def test_it_is_said_first_whether_methods_agree(text):
 def test_units_that_lie_apart_are_named(text):
     expected = "The 3 units lie most apart on 160 m: 0.58 to 0.67 dB of heat loss, most in"
     assert expected in text
+
+
+def test_units_stand_side_by_side_band_by_band():
+    table = units_table(sure(), "en")
+    assert [column.label for column in table.columns] == [
+        name.replace(" ", "\u00a0") for name in NAMES
+    ]
+    heads = [(row.head, row.sub) for group in table.groups for row in group]
+    assert heads == [
+        ("unit A", "loss"),
+        (None, "\u00b1"),
+        (None, "SWR"),
+        ("unit B", "loss"),
+        (None, "\u00b1"),
+        (None, "SWR"),
+    ]
 
 
 def test_units_whose_match_alone_is_known_are_named():

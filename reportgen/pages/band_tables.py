@@ -144,13 +144,8 @@ def missing_quantities(result: BuildResult) -> str:
     return f"Not measured: {listed(missing)}{reason}."
 
 
-def heat_loss_text(
-    method: MethodResult,
-    band: str,
-    locale: str,
-    write: Callable[..., str] = mean_text,
-) -> str:
+def heat_loss_text(method: MethodResult, band: str, locale: str) -> str:
     """Mean heat loss in one band of a method's result, or that it was not measured."""
     found = next((one for one in measured_bands(method) if one.band.name == band), None)
     figure = None if found is None else figure_of(found, "heat_loss_db")
-    return write(BY_KEY["heat_loss_db"], figure, locale=locale)
+    return mean_text(BY_KEY["heat_loss_db"], figure, locale=locale)

@@ -95,11 +95,12 @@ def _font() -> FontProperties:
 def name_in_chart(name: str) -> str:
     """A band's name as a chart can draw it; empty where the font lacks a letter."""
     short = name if len(name) <= 14 else name[:13] + "\u2026"
-    return short if all(ord(letter) in _drawable() for letter in short) else ""
+    return short if all(ord(letter) in drawable() for letter in short) else ""
 
 
 @cache
-def _drawable() -> frozenset[int]:
+def drawable() -> frozenset[int]:
+    """Code points of the letters that the font has."""
     return frozenset(FT2Font(font_path("Regular")).get_charmap())
 
 

@@ -4,19 +4,17 @@ from __future__ import annotations
 
 from collections.abc import Iterator, Sequence
 
-from reportgen.model import Agreement, BandResult, BuildResult, Figure, Lot, Method, MethodResult
-from reportgen.pages.band_tables import heat_loss_text
+from reportgen.model import Agreement, BuildResult, Figure, Lot, Method, MethodResult
 from reportgen.pages.display import DASH, number, plus_minus
 from reportgen.pages.intervals import (
     half_width,
     mean_text,
-    mean_with_interval,
     width_text,
     worst_text,
 )
 from reportgen.pages.sentences import listed
 from reportgen.pages.summary import figure_of, measured_bands
-from reportgen.pages.tables import Column, Row, Table, band_column, figures, with_points_aligned
+from reportgen.pages.tables import Row, Table, band_column, figures, with_points_aligned
 from reportgen.pages.wording import METHOD_NAMES, ohms
 from reportgen.physics.quantities import BY_KEY
 
@@ -158,41 +156,47 @@ def agreement_words(one: Agreement, locale: str) -> str:
 
 def units_table(result: BuildResult, locale: str) -> Table | None:
     """Mean heat loss and worst SWR of each unit; None where fewer than two were told apart."""
-    if len(result.units) < 2:
+    names = [band.band.name for band in measured_bands(result.chosen)]
+    if len(result.units) < 2 or not names:
         return None
-    lossy = [unit for unit in result.units if _figures_by_band(unit)]
-    columns = [
-        column
-        for unit in result.units
-        for column in (
-            *([Column(label=f"{unit.unit}: Heat loss", unit="dB", wide=True)] * (unit in lossy)),
-            Column(label=f"{unit.unit}: SWR", unit="worst"),
-        )
-    ]
+    lossy = any(_figures_by_band(unit) for unit in result.units)
+    loss = "Mean heat loss, dB, and half of its 95\u00a0% interval; worst SWR" if lossy else ""
     table = Table(
-        caption="Mean heat loss and worst SWR in each band."
-        if lossy
-        else "Worst SWR in each band.",
-        corner="Band",
-        columns=tuple(columns),
-        groups=tuple(
-            (_units_row(band, result.units, lossy, locale),) for band in result.chosen.bands
-        ),
+        caption=f"{loss or 'Worst SWR'} in each band.",
+        corner="Unit",
+        sub="Value",
+        columns=tuple(band_column(name) for name in names),
+        groups=tuple(_unit_rows(unit, names, locale) for unit in result.units),
+        long_heads=True,
     )
     return with_points_aligned(table, locale)
 
 
-def _units_row(
-    band: BandResult, units: Sequence[MethodResult], lossy: Sequence[MethodResult], locale: str
-) -> Row:
-    texts = []
-    for unit in units:
-        found = next((one for one in measured_bands(unit) if one.band == band.band), None)
-        swr = None if found is None else found.figures.get("swr")
-        if unit in lossy:
-            texts.append(heat_loss_text(unit, band.band.name, locale, mean_with_interval))
-        texts.append(worst_text(BY_KEY["swr"], swr, locale=locale))
-    return Row(head=band.band.name, cells=figures(texts))
+def _unit_rows(unit: MethodResult, names: Sequence[str], locale: str) -> tuple[Row, ...]:
+    found = _figures_by_band(unit)
+    ratios = {band.band.name: band.figures.get("swr") for band in measured_bands(unit)}
+    lines = (
+        []
+        if not found
+        else [
+            ("loss", [_mean(unit, found.get(name), locale) for name in names]),
+            ("\u00b1", [_width(unit, found.get(name), locale) for name in names]),
+        ]
+    )
+    lines.append(("SWR", [_worst_swr(ratios.get(name), locale) for name in names]))
+    return tuple(
+        Row(
+            head=None if index else units_of(unit),
+            head_rows=len(lines),
+            sub=sub,
+            cells=figures(texts, "soft" if sub == "\u00b1" else ""),
+        )
+        for index, (sub, texts) in enumerate(lines)
+    )
+
+
+def _worst_swr(figure: Figure | None, locale: str) -> str:
+    return DASH if figure is None else worst_text(BY_KEY["swr"], figure, locale=locale)
 
 
 def units_sentences(result: BuildResult, locale: str) -> tuple[str, ...]:

@@ -11,6 +11,7 @@ from functools import cache
 from typing import TYPE_CHECKING, Any
 
 from reportgen.errors import OutputError
+from reportgen.pages.canvas import drawable
 from reportgen.pages.html import font_face
 from reportgen.pages.look import FACES, LIGHT, font_bytes, style_variables
 from reportgen.pages.templates import read_style
@@ -20,6 +21,8 @@ if TYPE_CHECKING:
     from weasyprint.text.fonts import FontConfiguration
 
 ASSET = "asset:"
+_NO_LETTER = ".notdef glyph"
+_FIRST_BEYOND_ASCII = 128
 _LIBRARIES = "libpango-1.0-0 libpangoft2-1.0-0 libharfbuzz-subset0"
 
 
@@ -41,6 +44,26 @@ def write_pdf(page: str, pictures: Mapping[str, str], paper: str) -> bytes:
         The page asks for anything else than these pictures, or could not be set without a
         complaint.
     """
+    pdf, complaints = _set_page(page, pictures, paper)
+    if any(_NO_LETTER in complaint for complaint in complaints):
+        pdf, complaints = _set_page(_with_letters_there_are(page), pictures, paper)
+    if complaints:
+        raise OutputError(f"the page could not be set: {complaints[0]}")
+    return pdf
+
+
+def _with_letters_there_are(page: str) -> str:
+    """The page with letters that the font lacks shown by their code points, `[U+6F22]`."""
+    return "".join(
+        letter
+        if ord(letter) < _FIRST_BEYOND_ASCII or ord(letter) in drawable()
+        else f"[U+{ord(letter):04X}]"
+        for letter in page
+    )
+
+
+def _set_page(page: str, pictures: Mapping[str, str], paper: str) -> tuple[bytes, list[str]]:
+    """The PDF, and what the renderer complains of."""
     weasyprint = _weasyprint()
     assets = {name: (svg.encode(), "image/svg+xml") for name, svg in pictures.items()}
     fetcher = _fetcher_class()(assets)
@@ -52,9 +75,7 @@ def write_pdf(page: str, pictures: Mapping[str, str], paper: str) -> bytes:
         )
     if fetcher.refused:
         raise OutputError(f"the page asks for {fetcher.refused[0]!r}, which is not part of it")
-    if complaints:
-        raise OutputError(f"the page could not be set: {complaints[0]}")
-    return bytes(pdf)
+    return bytes(pdf), complaints
 
 
 @cache
