@@ -136,7 +136,7 @@ def _not_drawn(error: OutputError) -> Finding:
         code="not-drawn",
         file="build.toml",
         message=str(error),
-        remedy="where it names a character, write it in Latin, Greek or Cyrillic letters",
+        remedy="please report it with this folder; the other builds are not touched",
     )
 
 

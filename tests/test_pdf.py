@@ -3,6 +3,7 @@
 import io
 import logging
 import re
+import shutil
 import subprocess
 import sys
 from dataclasses import replace
@@ -214,6 +215,17 @@ def test_a_complaint_of_the_renderer_is_an_error():
     page = PAGE.format('<p style="colour: red">x</p>')
     with pytest.raises(OutputError, match="could not be set"):
         write_pdf(page, {}, "A4")
+
+
+def test_letters_that_the_font_lacks_are_shown_by_their_code_points(tmp_path):
+    (tmp_path / "x.pdf").write_bytes(write_pdf(PAGE.format("<p>\u00c5lder \u6f22</p>"), {}, "A4"))
+    with pikepdf.open(tmp_path / "x.pdf") as pdf:
+        assert len(pdf.pages) == 1
+    if (pdftotext := shutil.which("pdftotext")) is not None:
+        text = subprocess.run([pdftotext, tmp_path / "x.pdf", "-"], capture_output=True, check=True)
+        found = text.stdout.decode()
+        assert "\u00c5lder" in found
+        assert "[U+6F22]" in found or "\u6f22" in found  # some machines have a font for it
 
 
 def test_missing_system_libraries_are_named(monkeypatch):
