@@ -139,8 +139,8 @@ def _figures(cases: list[Case]) -> str:
     u95 = np.median([case.u95_db for case in cases])
     held = 100 * np.mean([case.held for case in cases])
     return (
-        f"{np.percentile(abs(errors), 95):.3f} dB | {abs(errors).max():.3f} dB "
-        f"| {errors.mean():+.3f} dB | {u95:.3f} dB | {held:.1f} % | {len(cases)}"
+        f"{np.percentile(abs(errors), 95, method='inverted_cdf'):.3f} dB "
+        f"| {abs(errors).max():.3f} dB | {errors[np.isfinite(errors)].mean():+.3f} dB | {u95:.3f} dB | {held:.1f} % | {len(cases)}"
     )
 
 

@@ -8,6 +8,7 @@ from functools import cache, partial
 from reportgen.errors import NotMeasurable
 from reportgen.model import Build, BuildSheet, Finding, Severity
 from reportgen.physics.halves import Half, find_halves
+from reportgen.physics.known_loads import known_load_plans
 from reportgen.physics.loads import LoadSweeps, find_load_sweeps
 from reportgen.physics.methods import (
     ClosedHalf,
@@ -49,6 +50,7 @@ def _possible(build: Build) -> Iterator[tuple[str, Callable[[], Plan]]]:
     for plan in (
         *direct_plans(build.measurements, sheet),
         *halving_of_readings(build.measurements, sheet),
+        *known_load_plans(build.measurements, loads, sheet),
     ):
         yield plan.sweeps[0].file, partial(_as_it_is, plan)
 
