@@ -615,6 +615,45 @@ class HeatSplit:
 
 
 @dataclass(frozen=True, kw_only=True, slots=True)
+class StressBand:
+    """Stress in one band at the rated power; None: not asked for, or not known.
+
+    `heat_w` is the upper end of the heat's interval; `surface_rise_k` the range of two published
+    formulas for a bare surface in free air [K]. Volts and amperes in rms.
+    """
+
+    band: str
+    peak_flux_t: float | None
+    capacitor_v: float | None
+    capacitor_a: float | None
+    heat_w: float | None
+    surface_rise_k: tuple[float, float] | None
+
+
+@dataclass(frozen=True, kw_only=True, slots=True)
+class FirstLimit:
+    """The limit that is met first, and the power at which it is [W]; `band` None: in all."""
+
+    what: str
+    band: str | None
+    power_w: float
+
+
+@dataclass(frozen=True, kw_only=True, slots=True)
+class Stress:
+    """Largest volts and amperes (rms) at the rated power for the load SWR of the rating."""
+
+    power_w: float
+    load_swr: float
+    low_side_v: float
+    low_side_a: float
+    high_side_v: float
+    high_side_a: float
+    bands: tuple[StressBand, ...]
+    first_limit: FirstLimit | None
+
+
+@dataclass(frozen=True, kw_only=True, slots=True)
 class LotBand:
     """Heat loss of several units of a build in one band [dB]."""
 
@@ -702,5 +741,6 @@ class BuildResult:
     advice: tuple[Advice, ...] = ()
     limits: tuple[LimitResult, ...] = ()
     heat_split: HeatSplit | None = None
+    stress: Stress | None = None
     lot: Lot | None = None
     repeatability: tuple[Repeatability, ...] = ()

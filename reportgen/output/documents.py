@@ -63,7 +63,7 @@ def results_document(
         "lot": None if result.lot is None else asdict(result.lot),
         "repeatability": [asdict(one) for one in result.repeatability],
         "heat_split": None if result.heat_split is None else _heat_split(result.heat_split),
-        "stress": None,
+        "stress": None if result.stress is None else asdict(result.stress),
         "thermal": None,
         "forecast": None,
         "baseline": None if comparison is None else _comparison(comparison),

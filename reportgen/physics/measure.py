@@ -12,6 +12,7 @@ from reportgen.errors import NotMeasurable
 from reportgen.model import (
     Advice,
     Band,
+    BandResult,
     BenchSheet,
     BudgetLine,
     Build,
@@ -35,6 +36,7 @@ from reportgen.physics.loads import find_load_sweeps
 from reportgen.physics.lots import find_repeatability, lot_of
 from reportgen.physics.methods import NOT_DETERMINED_PF
 from reportgen.physics.solve import Solved, bands_with_loss, loss_draws_db, solve_all
+from reportgen.physics.stress import stress_of
 from reportgen.physics.uncertainty import DRAWS, half_width
 
 
@@ -47,7 +49,7 @@ class Measured:
 
     def forecast(self) -> Forecast | None:
         """What to wind next; None where the result's method does not know the winding."""
-        bands = [band for band in self.result.chosen.bands if isinstance(band, MeasuredBand)]
+        bands = measured_bands(self.result.chosen.bands)
         return forecast_of(self.group, self.result.build, bands) if bands else None
 
 
@@ -97,12 +99,18 @@ def measure(build: Build, bench: BenchSheet, known: Sequence[Band]) -> Measured:
         loss_draws_db=loss_draws_db(chosen, spread),
         agreements=agreements,
         limits=judge(chosen.bands, bench),
+        stress=stress_of(build.sheet, measured_bands(chosen.bands), power_w),
         heat_split=heat_split_of(group, build.sheet, power_w),
         lot=lot_of(units),
         repeatability=find_repeatability(build.measurements),
         **_budget_and_advice(build, bench, group, chosen),
     )
     return Measured(result, tuple(group))
+
+
+def measured_bands(bands: Sequence[BandResult]) -> list[MeasuredBand]:
+    """Those that have figures."""
+    return [band for band in bands if isinstance(band, MeasuredBand)]
 
 
 def _touched(build: Build, known: Sequence[Band]) -> tuple[Band, ...]:
