@@ -12,6 +12,7 @@ from __future__ import annotations
 
 from collections.abc import Mapping, Sequence
 from dataclasses import dataclass, field, replace
+from typing import Any
 
 import numpy as np
 from numpy.typing import NDArray
@@ -24,6 +25,9 @@ from reportgen.physics.seen import AS_SWEPT, Seen
 
 DRAWS = 1000
 """Number of draws."""
+
+RATIOS = ("efficiency_ratio", "reflection_ratio", "halved_pair_ratio")
+"""What the curves of a method hold."""
 
 _BETWEEN_BANDS = 16
 _POINTS_IN_BAND = 3
@@ -57,12 +61,23 @@ def draw_grid(from_hz: float, to_hz: float, bands: Sequence[Band]) -> RealArray:
 def spread_of(plan: Plan, frequency_hz: RealArray, drawn: Seen) -> Spread:
     """One plan with draws of its inputs at `frequency_hz`, within its sweeps."""
     computed, without = (plan.compute(frequency_hz, seen) for seen in (drawn, AS_SWEPT))
+    seen = curves_of(without, frequency_hz)
     return Spread(
-        seen=curves_of(without, frequency_hz),
-        drawn=curves_of(computed, frequency_hz),
+        seen=seen,
+        drawn=_with_values(curves_of(computed, frequency_hz), seen),
         computed=computed,
         without=without,
     )
+
+
+def _with_values(drawn: Curves, seen: Curves) -> Curves:
+    """Draws without the few that a resonance left without a value: they count as what was seen."""
+    parts: dict[str, Any] = {}
+    for name in RATIOS:
+        ratio = getattr(drawn, name)
+        if ratio is not None:
+            parts[name] = np.where(np.isnan(ratio), getattr(seen, name), ratio)
+    return replace(drawn, **parts)
 
 
 def curves_of(
@@ -169,14 +184,20 @@ def _worst(quantity: Quantity, values: RealArray) -> RealArray:
 
 def interval(draws: RealArray) -> tuple[float | None, float | None]:
     """Ends of the probabilistically symmetric 95 % interval [1]_; None: infinite."""
-    ends = np.quantile(draws, [_LOW, _HIGH], method="inverted_cdf")
+    ends = np.quantile(_known(draws), [_LOW, _HIGH], method="inverted_cdf")
     low, high = (float(end) if np.isfinite(end) else None for end in ends)
     return low, high
 
 
+def _known(draws: RealArray) -> RealArray:
+    """Draws that have a value; all of them where most have none."""
+    known = draws[~np.isnan(draws)]
+    return known if known.size > draws.size / 2 else draws
+
+
 def half_width(draws: RealArray) -> float:
     """Half of the 95 % interval of draws."""
-    low, high = np.quantile(draws, [_LOW, _HIGH], method="inverted_cdf")
+    low, high = np.quantile(_known(draws), [_LOW, _HIGH], method="inverted_cdf")
     return float(high - low) / 2
 
 
@@ -219,9 +240,6 @@ def _at(curves: Curves, kept: NDArray[np.bool_]) -> Curves:
         for name in RATIOS
     }
     return Curves(frequency_hz=curves.frequency_hz[kept], native=curves.native[kept], **parts)
-
-
-RATIOS = ("efficiency_ratio", "reflection_ratio", "halved_pair_ratio")
 
 
 def mean_curves(parts: Sequence[Curves]) -> Curves:
