@@ -17,6 +17,7 @@ from reportgen.physics.warm_up import ThermalLog, WarmUp, fit_warm_up
 _LONG_ENOUGH = 2.0  # time constants
 _GAP = 0.2  # time constants
 _OFF_CURVE = 0.05  # of the rise
+_WARM_START = 0.15  # of the rise
 _PARTS = 12
 _PLAUSIBLE_S = (20.0, 6 * 3600.0)
 
@@ -142,9 +143,15 @@ def _faults(log: ThermalLog, fit: WarmUp) -> Iterator[Finding]:
     if not _PLAUSIBLE_S[0] < tau_s < _PLAUSIBLE_S[1]:
         text = f"a time constant of {tau_s:.3g} s is unlikely of a ring core"
         yield _finding(log, Severity.WARNING, "log-time-unit", text, "is time_s in seconds?")
-    parts = [part.mean() for part in np.array_split(fit.residual_k, _PARTS)]
+    if abs(fit.start_k) > _WARM_START * rise_k:
+        text = f"at the first row the core is {fit.start_k:+.1f} K off its surroundings"
+        yield _finding(
+            log, Severity.NOTE, "log-warm-start", text,
+            "start cold, and see that both thermometers then read the same",
+        )  # fmt: skip
+    parts = [part.mean() for part in np.array_split(fit.residual_k, 2 * _PARTS)]
     off_k = float(np.max(np.abs(parts)))
-    if off_k > max(_OFF_CURVE * rise_k, 0.5):
+    if off_k > max(_OFF_CURVE * rise_k, 1.0):
         text = f"the log is up to {off_k:.1f} K off the curve of one time constant"
         yield _finding(
             log, Severity.WARNING, "log-off-curve", text,

@@ -27,6 +27,7 @@ _MOST_ROWS = 1000  # longer logs are averaged in blocks
 _GRID_POINTS = 2000  # on which the surroundings are followed
 _SOFTNESS = 2.0  # standard deviations beyond which a row loses weight
 _TRIED = 25
+_LEAST_RISE_K = 2.0
 _WINDOW = 3  # autocorrelation times that are summed up
 
 
@@ -100,8 +101,8 @@ def fit_warm_up(log: ThermalLog) -> WarmUp:
         x_scale=(max(abs(first[0]), 1.0), 1.0, 0.1),
     ).x  # fmt: skip
     residual = core_c - curve(found)
-    if found[0] <= 0:
-        raise NotMeasurable("the core does not get warmer than its surroundings")
+    if found[0] < _LEAST_RISE_K:
+        raise NotMeasurable(f"the core gets only {found[0]:.1f} K warmer than its surroundings")
     half = _half_widths(curve, found, residual, _SOFTNESS * scale)
     return WarmUp(
         rise_k=_log_interval(found[0], half[0] / found[0]),
