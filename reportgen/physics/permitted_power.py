@@ -13,7 +13,7 @@ References
 
 from __future__ import annotations
 
-from collections.abc import Mapping
+from collections.abc import Mapping, Sequence
 from dataclasses import dataclass
 
 import numpy as np
@@ -69,7 +69,7 @@ def duty_table(own: Mapping[str, float]) -> dict[str, float]:
 
 def permitted_power(
     fit: ThermalFit,
-    bands: tuple[MeasuredBand, ...],
+    bands: Sequence[MeasuredBand],
     *,
     limit_c: float,
     ambient_max_c: float,
@@ -82,7 +82,7 @@ def permitted_power(
     ----------
     fit : ThermalFit
         From a log of this build, in its enclosure.
-    bands : tuple of MeasuredBand
+    bands : sequence of MeasuredBand
         The heat taken is that of the band's least efficiency, the lower end of its interval.
     limit_c, ambient_max_c : float
         Lowest limit of core, wire and box, and the hottest surroundings named [C].
