@@ -144,7 +144,7 @@ def test_methods_that_give_the_results() -> None:
         "cedar": Method.BISECTION,
         "hazel": Method.BISECTION,
         "linden": Method.BISECTION_LOAD,
-        "rowan": Method.TERMINATIONS,
+        "rowan": Method.BISECTION_LOAD,
         "willow": Method.BISECTION_LOAD,
         "portable-elder": Method.LOAD_ONLY,
     }

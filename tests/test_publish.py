@@ -58,12 +58,28 @@ def test_a_fault_of_the_program_is_that_builds_alone(tmp_path: Path, monkeypatch
     assert (tmp_path / "out" / "birch" / "report.html").is_file()
 
 
-def test_a_letter_that_no_font_has_is_that_builds_alone(tmp_path: Path) -> None:
+def test_a_letter_that_no_font_has_fails_no_build(tmp_path: Path) -> None:
     runs = write_runs(tmp_path / "runs", "alder")
     write_build(runs / "birch", "\N{CJK UNIFIED IDEOGRAPH-6E2C}")
     outcome = publish_here(runs, tmp_path / "out")
+    assert outcome.failed == ()
+    assert (tmp_path / "out" / "birch" / "report.pdf").read_bytes().startswith(b"%PDF-")
+
+
+def test_a_page_that_cannot_be_set_is_that_builds_alone(
+    tmp_path: Path, monkeypatch: pytest.MonkeyPatch
+) -> None:
+    def failing(page: str, *_: object) -> bytes:
+        if "Birch" in page:
+            raise OutputError("the page could not be set: no room")
+        return b"%PDF-"
+
+    monkeypatch.setattr("reportgen.pages.report.write_pdf", failing)
+    runs = write_runs(tmp_path / "runs", "alder")
+    write_build(runs / "birch", "Birch")
+    outcome = publish_here(runs, tmp_path / "out")
     assert [one.key for one in outcome.failed] == ["birch"]
-    assert "U+6E2C" in outcome.failed[0].findings[-1].message
+    assert "no room" in outcome.failed[0].findings[-1].message
     assert (tmp_path / "out" / "alder" / "report.html").is_file()
 
 
