@@ -18,7 +18,8 @@ from reportgen.model import BuildResult, Comparison, FailedBuild, Finding, Sever
 from reportgen.output.manifest import BuildRecord, OutputFile, output_file
 from reportgen.output.placing import place_build
 from reportgen.physics.compare import compare
-from reportgen.physics.measure import measure_build
+from reportgen.physics.forecast import Forecast
+from reportgen.physics.measure import Measured, measure
 
 
 @dataclass(frozen=True, kw_only=True, slots=True, eq=False)
@@ -47,7 +48,7 @@ class Made:
 def make_build(task: Task, folder: BuildFolder) -> Made | FailedBuild:
     """One build from its folder to its pages; any failure is that build's alone."""
     try:
-        return _made(task, folder, _measured(task, folder))
+        return _made(task, folder)
     except InputRejected as rejected:
         return FailedBuild(key=folder.key, folder=folder.folder, findings=rejected.findings)
     except OutputError:
@@ -57,28 +58,40 @@ def make_build(task: Task, folder: BuildFolder) -> Made | FailedBuild:
         return FailedBuild(key=folder.key, folder=folder.folder, findings=(fault,))
 
 
-def _measured(task: Task, folder: BuildFolder) -> BuildResult:
-    if task.baseline is not None and task.baseline.build.key == folder.key:
-        return task.baseline
+def _measured(task: Task, folder: BuildFolder) -> Measured:
     build = read_build(task.runs, folder)
     try:
-        return measure_build(build, task.runs.bench, task.runs.bands)
+        return measure(build, task.runs.bench, task.runs.bands)
     except NotMeasurable as error:
         raise InputRejected((*build.findings, _not_measurable(error))) from error
 
 
-def _made(task: Task, folder: BuildFolder, result: BuildResult) -> Made:
+def _made(task: Task, folder: BuildFolder) -> Made:
+    written = task.out is not None and (not task.only or folder.key in task.only)
     baseline = task.baseline
     if baseline is not None and baseline.build.key == folder.key:
+        if not written:
+            return Made(result=baseline, comparison=None)
         baseline = None
-    comparison = None if baseline is None else compare(result, baseline)
-    made = Made(result=result, comparison=comparison)
-    if task.out is None or (task.only and folder.key not in task.only):
-        return made
+    measured = _measured(task, folder)
+    comparison = None if baseline is None else compare(measured.result, baseline)
+    made = Made(result=measured.result, comparison=comparison)
+    return _placed(task, folder, made, baseline, measured.forecast()) if written else made
+
+
+def _placed(
+    task: Task,
+    folder: BuildFolder,
+    made: Made,
+    baseline: BuildResult | None,
+    forecast: Forecast | None,
+) -> Made:
+    """The same, everything that is published of it written."""
+    assert task.out is not None
     try:
-        files = _files(task, made, baseline)
+        files = _files(task, made, baseline, forecast)
     except OutputError as error:
-        raise InputRejected((*result.findings, _not_drawn(error))) from error
+        raise InputRejected((*made.result.findings, _not_drawn(error))) from error
     place_build(task.out, folder.key, files, _names_of(task.earlier.get(folder.key)))
     outputs = tuple(output_file(f"{folder.key}/{name}", data) for name, data in files.items())
     return replace(made, outputs=outputs)
@@ -89,7 +102,9 @@ def _names_of(record: BuildRecord | None) -> set[str]:
     return set() if record is None else {one.file.rpartition("/")[2] for one in record.outputs}
 
 
-def _files(task: Task, made: Made, baseline: BuildResult | None) -> dict[str, bytes]:
+def _files(
+    task: Task, made: Made, baseline: BuildResult | None, forecast: Forecast | None
+) -> dict[str, bytes]:
     """Contents of everything that is published of one build."""
     from reportgen.output.csv_tables import bands_csv, curves_csv
     from reportgen.output.documents import json_bytes, results_document
@@ -103,6 +118,7 @@ def _files(task: Task, made: Made, baseline: BuildResult | None) -> dict[str, by
         baseline=baseline,
         bench=task.runs.bench,
         program_version=__version__,
+        forecast=forecast,
     )
     pdf = render_report_pdf(
         result,
@@ -110,6 +126,7 @@ def _files(task: Task, made: Made, baseline: BuildResult | None) -> dict[str, by
         baseline=baseline,
         bench=task.runs.bench,
         program_version=__version__,
+        forecast=forecast,
     )
     return {
         "report.html": html.encode("utf-8"),

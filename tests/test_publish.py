@@ -42,14 +42,14 @@ def test_a_failed_build_keeps_its_pages_and_is_named(tmp_path: Path) -> None:
 
 
 def test_a_fault_of_the_program_is_that_builds_alone(tmp_path: Path, monkeypatch) -> None:
-    real = one_build.measure_build
+    real = one_build.measure
 
     def faulty(build, *arguments):
         if build.key == "alder":
             raise RuntimeError("unforeseen")
         return real(build, *arguments)
 
-    monkeypatch.setattr(one_build, "measure_build", faulty)
+    monkeypatch.setattr(one_build, "measure", faulty)
     runs = write_runs(tmp_path / "runs", "alder", "birch")
     outcome = publish_here(runs, tmp_path / "out")
     (failed,) = outcome.failed

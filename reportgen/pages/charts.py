@@ -1,4 +1,4 @@
-"""Charts of one build: efficiency and match over frequency, heat by band.
+"""Charts of one build: efficiency and match over frequency, heat by band, permeability.
 
 Each is drawn twice from the same numbers: wide for pages and paper, narrow for a phone.
 """
@@ -11,8 +11,16 @@ from reportgen.model import Band, BuildResult
 from reportgen.pages.canvas import Chart
 from reportgen.pages.curve_charts import draw_efficiency, draw_match
 from reportgen.pages.heat_chart import draw_heat
+from reportgen.pages.permeability_chart import draw_permeability
 
-__all__ = ["Chart", "draw_charts", "draw_efficiency", "draw_heat", "draw_match"]
+__all__ = [
+    "Chart",
+    "draw_charts",
+    "draw_efficiency",
+    "draw_heat",
+    "draw_match",
+    "draw_permeability",
+]
 
 
 def draw_charts(
@@ -24,7 +32,7 @@ def draw_charts(
     efficiency_limits: Mapping[str, float],
     locale: str = "en",
 ) -> dict[str, Chart]:
-    """All charts that the result allows, by name: `efficiency`, `match`, `heat`.
+    """All charts that the result allows, by name: `efficiency`, `match`, `heat`, `permeability`.
 
     The limits [ratio] are those of the bands that have one; the baseline is drawn where it is
     given.
@@ -33,5 +41,6 @@ def draw_charts(
         draw_efficiency(result, baseline, bands, limits=efficiency_limits, locale=locale),
         draw_match(result, baseline, bands, limits=swr_limits, locale=locale),
         draw_heat(result, baseline, locale=locale),
+        draw_permeability(result, bands, locale=locale),
     )
     return {chart.name: chart for chart in drawn if chart is not None}

@@ -73,7 +73,7 @@ def draw_efficiency(
     low, high = _percent_range([one for one in (curve, other, *sides) if one is not None], span)
 
     def scales(axes: Axes, size: Size) -> None:
-        ticks = _regular_ticks(low, high, size)
+        ticks = regular_ticks(low, high, size)
         set_value_axis(axes, (low, high), ticks, [f"{tick:.0f}" for tick in ticks])
         losses = [loss for loss in _LOSS_TICKS_DB if low <= 100 * 10 ** (-loss / 10) <= high]
         places = [100 * 10 ** (-loss / 10) for loss in losses]
@@ -111,7 +111,7 @@ def draw_match(
     top = _return_loss_top([one for one in (curve, other) if one is not None], span)
 
     def scales(axes: Axes, size: Size) -> None:
-        ticks = _regular_ticks(0.0, top, size)
+        ticks = regular_ticks(0.0, top, size)
         set_value_axis(axes, (0.0, top), ticks, [f"{tick:.0f}" for tick in ticks])
         ratios = [swr for swr in _SWR_TICKS if _return_loss_of(swr) <= top]
         places = [_return_loss_of(swr) for swr in ratios]
@@ -266,10 +266,11 @@ def _return_loss_of(swr: float) -> float:
     return float(-20 * np.log10((swr - 1) / (swr + 1)))
 
 
-def _regular_ticks(low: float, high: float, size: Size) -> list[float]:
-    gap = next(
-        (gap for gap in _PER_CENT_GAPS if (high - low) / gap <= size.value_ticks), high - low
-    )
+def regular_ticks(
+    low: float, high: float, size: Size, gaps: Sequence[float] = _PER_CENT_GAPS
+) -> list[float]:
+    """Ticks with the least of the gaps that leaves room for their labels."""
+    gap = next((gap for gap in gaps if (high - low) / gap <= size.value_ticks), high - low)
     first = gap * np.ceil(low / gap)
     return [float(tick) for tick in np.arange(first, high + gap / 2, gap)]
 

@@ -3,9 +3,9 @@
 from __future__ import annotations
 
 from collections.abc import Sequence
-from math import isnan
+from math import isfinite, isnan
 
-from reportgen.model import Figure
+from reportgen.model import Figure, Interval
 from reportgen.pages.display import (
     NOT_MEASURED,
     PLUS_MINUS,
@@ -13,6 +13,7 @@ from reportgen.pages.display import (
     number,
     one_sided,
     percent_of,
+    plus_minus,
     quantity_number,
     with_unit,
 )
@@ -104,6 +105,18 @@ def with_interval(
     u95 = (high - low) / 2
     figure = _figure_text(quantity, value, u95, limits, locale)
     return f"{figure}{PLUS_MINUS}{width_text(quantity, u95, locale)}"
+
+
+def scaled_with_interval(found: Interval, factor: float, decimals: int, locale: str) -> str:
+    """A figure that no table of quantities holds, in the unit that the factor makes of it."""
+    value = factor * found.value
+    if found.low95 is None or found.high95 is None or not isfinite(found.high95 - found.low95):
+        return number(value, decimals, locale=locale)
+    low, high = factor * found.low95, factor * found.high95
+    if max(high - value, value - low) > _LOPSIDED * (high - low):
+        figure = number(value, decimals, u95=(high - low) / 2, locale=locale)
+        return f"{figure} ({interval(low, high, decimals, locale=locale)})"
+    return plus_minus(value, (high - low) / 2, decimals, locale=locale, signed=False)
 
 
 def width_text(quantity: Quantity, u95: float, locale: str) -> str:

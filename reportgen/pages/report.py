@@ -12,6 +12,7 @@ from reportgen.pages import sentences
 from reportgen.pages.band_tables import band_table, missing_quantities
 from reportgen.pages.charts import Chart, draw_charts
 from reportgen.pages.comparison import comparison_sentence, comparison_table
+from reportgen.pages.heat_parts import heat_parts_sentences, heat_parts_table
 from reportgen.pages.html import inline_svg, page_style
 from reportgen.pages.limits import limits_table, limits_words
 from reportgen.pages.method_tables import (
@@ -32,6 +33,7 @@ from reportgen.pages.particulars import (
 )
 from reportgen.pages.pdf import write_pdf
 from reportgen.pages.plain_text import text_lines
+from reportgen.pages.predictions import Predictions, predictions_of
 from reportgen.pages.summary import is_simulated, limits_by_quantity
 from reportgen.pages.tables import Table
 from reportgen.pages.templates import render
@@ -42,6 +44,7 @@ from reportgen.pages.uncertainty import (
     budget_table,
 )
 from reportgen.pages.wording import METHOD_NAMES, METHOD_WORDS, fitted_sentence, ohms
+from reportgen.physics.forecast import Forecast
 
 
 @dataclass(frozen=True, kw_only=True, slots=True)
@@ -76,6 +79,9 @@ class ReportPage:
     comparison_words: str
     is_baseline: bool
     limits: Table | None
+    heat_parts: Table | None
+    heat_parts_words: tuple[str, ...]
+    predictions: Predictions | None
     method_name: str
     method_words: str
     setups: Table | None
@@ -105,6 +111,7 @@ def render_report_html(
     baseline: BuildResult | None,
     bench: BenchSheet,
     program_version: str,
+    forecast: Forecast | None = None,
 ) -> str:
     """The report as one page that needs neither a network nor a script."""
     charts = _charts(result, baseline, bench)
@@ -118,7 +125,7 @@ def render_report_html(
         )
         for name, chart in charts.items()
     }
-    page = _page(result, comparison, baseline, bench, pictures, program_version)
+    page = _page(result, comparison, baseline, bench, pictures, program_version, forecast)
     return render("report.html", page=page, paper=False, style=page_style())
 
 
@@ -129,6 +136,7 @@ def render_report_pdf(
     baseline: BuildResult | None,
     bench: BenchSheet,
     program_version: str,
+    forecast: Forecast | None = None,
 ) -> bytes:
     """The report as a tagged PDF on the bench's paper.
 
@@ -143,7 +151,7 @@ def render_report_pdf(
         name: Picture(name=name, title=chart.title, alt=chart.alt, wide=nothing, narrow=nothing)
         for name, chart in charts.items()
     }
-    page = _page(result, comparison, baseline, bench, pictures, program_version)
+    page = _page(result, comparison, baseline, bench, pictures, program_version, forecast)
     text = render("report.html", page=page, paper=True, style=nothing)
     return write_pdf(text, {name: chart.svg for name, chart in charts.items()}, bench.paper)
 
@@ -155,6 +163,7 @@ def _page(
     bench: BenchSheet,
     pictures: dict[str, Picture],
     program_version: str,
+    forecast: Forecast | None,
 ) -> ReportPage:
     sheet, locale = result.build.sheet, bench.locale
     limits_verdict, limits_causes = limits_words(result.limits)
@@ -176,6 +185,11 @@ def _page(
         comparison_words=comparison_sentence(comparison),
         is_baseline=bench.baseline == result.build.key,
         limits=limits_table(result.limits, locale),
+        heat_parts=heat_parts_table(result, locale),
+        heat_parts_words=heat_parts_sentences(result, locale),
+        predictions=predictions_of(
+            forecast, (sheet.winding.low_turns, sheet.winding.high_turns), locale
+        ),
         method_name=METHOD_NAMES[result.chosen.method],
         method_words=_method_words(result, locale),
         setups=setups_table(result.build, bench),
