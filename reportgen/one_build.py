@@ -111,7 +111,7 @@ def _files(
     from reportgen.pages.report import render_report_html, render_report_pdf
 
     result, comparison = made.result, made.comparison
-    document = results_document(result, comparison, program_version=__version__)
+    document = results_document(result, comparison, program_version=__version__, forecast=forecast)
     html = render_report_html(
         result,
         comparison=comparison,

@@ -7,6 +7,7 @@ import io
 import json
 from dataclasses import replace
 
+import heat_and_forecast_samples as heat
 import numpy as np
 import pandas as pd
 import pytest
@@ -15,6 +16,7 @@ import result_samples as samples
 from reportgen.model import BuildResult
 from reportgen.output.csv_tables import bands_csv, curves_csv, results_csv, results_table
 from reportgen.output.documents import json_bytes, results_document
+from reportgen.physics.forecast import Forecast
 from reportgen.physics.quantities import QUANTITIES
 
 TOP = {
@@ -34,9 +36,10 @@ ALL = {
 BASELINE = samples.full(1.2, "Birch", "birch")
 
 
-def published(result: BuildResult) -> dict:
+def published(result: BuildResult, forecast: Forecast | None = None) -> dict:
     comparison = samples.comparison(result, BASELINE, judged=True)
-    return json.loads(json_bytes(results_document(result, comparison, program_version="1.2.3")))
+    document = results_document(result, comparison, program_version="1.2.3", forecast=forecast)
+    return json.loads(json_bytes(document))
 
 
 def numbers(value: object) -> list[float]:
@@ -113,6 +116,24 @@ def test_numbers_keep_nine_digits_and_whole_ones_stay_whole() -> None:
 
 def test_text_that_is_no_unicode_can_be_written() -> None:
     assert json_bytes({"a": "\udcff"}).decode("utf-8") == '{\n "a": "\\udcff"\n}\n'
+
+
+def test_a_forecast_is_published_whole_and_finite() -> None:
+    swr = np.array([np.inf, 2.333, 2.3, 2.251])
+    tried = replace(heat.capacitor(), worst_swr=swr)
+    told = published(samples.full(), heat.forecast(capacitor=tried, antennas=(heat.antenna(),)))[
+        "forecast"
+    ]
+    assert told["capacitor"]["capacitor_pf"] == [0, 68, 75, 150]
+    assert told["capacitor"]["worst_swr"] == [None, 2.333, 2.3, 2.251]
+    assert told["capacitor"]["then"]["swr"] == {"value": 2.251, "low95": 2.199, "high95": 2.303}
+    assert [one["high_turns"] for one in told["ratios"]] == [22, 23, 23, 25]
+    assert told["antennas"][0]["bands"][0]["covered_hz"] == [7e6, 7.2e6]
+    assert told["antennas"][0]["bands"][1]["swr"] is None
+
+
+def test_without_a_forecast_it_is_null() -> None:
+    assert published(samples.full())["forecast"] is None
 
 
 # --- CSV -----------------------------------------------------------------------------------------

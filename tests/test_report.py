@@ -3,6 +3,7 @@
 import re
 from dataclasses import replace
 
+import heat_and_forecast_samples as heat
 import pytest
 import result_samples as samples
 from page_reader import BASELINE, CASES, Page, report
@@ -161,3 +162,130 @@ def test_figures_keep_to_their_side_of_a_limit():
 
 def test_the_same_result_gives_the_same_page(sources):
     assert report("full") == sources["full"]
+
+
+# --- where the heat goes -------------------------------------------------------------------------
+
+
+def page_of(result, forecast=None) -> str:
+    return render_report_html(
+        result,
+        comparison=None,
+        baseline=None,
+        bench=samples.BENCH,
+        program_version="1",
+        forecast=forecast,
+    )
+
+
+def test_where_the_heat_goes():
+    text = Page(page_of(heat.with_split(heat.split()))).text
+    assert (
+        "The core makes 94.2 \u00b1 4.2 % of the heat on 80 m, where its share is largest, and "
+        "65.5 \u00b1 4.2 % on 10 m." in text
+    )
+    assert "188 \u00b1 17 nH of leakage inductance, leads included" in text
+    assert "6.47 \u00b1 0.35 µH of magnetising inductance at 1.5 MHz; its coupling there is" in text
+    assert "Winding, W 1.0 1.0 1.0 Core, W 7.3 7.3 7.3 Capacitor, W 0.2 0.2 0.2" in text
+    assert "Core's share, % 94.2 91.1 65.5 \u00b1 4.2 4.2 4.2" in text
+    assert text.index("At 60 W the build turns") < text.index("Where the heat goes")
+    assert text.index("Where the heat goes") < text.index("How it was measured")
+
+
+def test_one_band_has_no_largest_share_and_a_lossless_capacitor_no_row():
+    found = heat.split(capacitor_w=0.0)
+    text = Page(page_of(heat.with_split(replace(found, bands=found.bands[1:2])))).text
+    assert "The core makes 91.1 \u00b1 4.2 % of the heat on 40 m." in text
+    assert "Capacitor, W" not in text
+
+
+def test_permeability_is_drawn_and_told_where_the_core_is_known():
+    page = Page(page_of(heat.with_split(heat.split())))
+    assert (
+        "real part 535 \u00b1 28 at 1.5 MHz, lossy part at most 230 \u00b1 26 at 6.0" in page.text
+    )
+    (alt,) = {
+        one["aria-label"]
+        for one in page.all("div")
+        if "permeability" in (one.get("aria-label") or "")
+    }
+    assert "Real part, dashed: 535 \u00b1 28 at 1.5\u00a0MHz, 500" in alt.replace(
+        "\u00a0\u00b1\u00a0", " \u00b1 "
+    )
+    assert "lossy part" not in page_of(heat.with_split(heat.split(core=False)))
+
+
+def test_heat_that_is_not_divided_has_a_reason(pages):
+    assert "Heat was not measured, so it cannot be divided." in pages["load only"].text
+    reason = "The method of the result (Bisection with load) does not tell the winding from the"
+    assert reason in pages["full"].text
+    assert "leakage inductance" not in pages["full"].text
+
+
+# --- what to wind next ---------------------------------------------------------------------------
+
+
+def predicted(**changes) -> str:
+    return Page(page_of(samples.full(), heat.forecast(**changes))).text
+
+
+def test_what_to_wind_next_is_marked_as_predicted():
+    text = predicted()
+    section = text[text.index("What to wind next") : text.index("How it was measured")]
+    assert section.startswith(
+        "What to wind next Predicted, not measured. With 150 pF instead of 68 pF across the low "
+        "side the worst SWR would be 2.251 \u00b1 0.052 instead of 2.333. Least power over the "
+        "bands would be reflected with 75 pF."
+    )
+    assert "Predicted, not measured, into 3200 \u03a9" in section
+    assert "3 : 24 as it is 68 2.333 \u00b1 0.052 1.200 \u00b1 0.051" in section
+    assert "4 : 32 same ratio 91 1.445 \u00b1 0.052" in section
+    assert "3 : 24 stack of 2 rings 91 1.367" in section
+    assert "What these predictions assume: The loads are resistances without reactance." in section
+
+
+def test_neighbours_into_another_load_and_further_ones_are_left_out():
+    text = predicted()
+    assert "3 : 23 other ratio 91 1.797" in text
+    assert "1.500" not in text
+    assert "1.61" not in text
+    assert "9.99" not in text
+
+
+@pytest.mark.parametrize(
+    ("found", "said"),
+    [
+        (heat.capacitor(then=2.4), "No capacitor gives a lower worst SWR than the 68 pF that is"),
+        (
+            heat.capacitor(then=2.4, present_pf=0.0),
+            "No capacitor gives a lower worst SWR than none.",
+        ),
+        (heat.capacitor(best_pf=0.0), "Without the 68 pF across the low side the worst SWR would"),
+        (heat.capacitor(present_pf=0.0), "With 150 pF instead of none across the low side"),
+    ],
+)
+def test_what_is_said_of_the_capacitor(found, said):
+    text = predicted(capacitor=found)
+    assert said in text
+    assert ("other capacitor" in text) == found.better
+
+
+def test_without_a_forecast_there_is_no_such_section(pages):
+    assert "What to wind next" not in pages["full"].text
+    assert "What to wind next" not in pages["load only"].text
+
+
+def test_into_antennas():
+    text = predicted(antennas=(heat.antenna(),))
+    assert "Into the antenna of wire.s1p :" in text
+    assert "40 m 87.1 \u00b1 1.2 1.723 \u00b1 0.041 81.2 \u00b1 1.4" in text
+    assert "10 m the antenna was not swept there" in text
+
+
+def test_foreign_names_in_both_sections_are_escaped():
+    band = replace(heat.split().bands[0], band=samples.HOSTILE)
+    found = replace(heat.split(core=False), bands=(band,))
+    told = heat.forecast(antennas=(heat.antenna(samples.HOSTILE),), assumes=(samples.HOSTILE,))
+    source = page_of(heat.with_split(found), told)
+    assert "<script>alert" not in source
+    assert source.count("&lt;script&gt;alert") >= 4

@@ -23,6 +23,7 @@ from reportgen.model import (
     MethodResult,
     RealArray,
 )
+from reportgen.physics.forecast import Forecast
 from reportgen.physics.judge import overall
 from reportgen.physics.quantities import QUANTITIES
 
@@ -40,7 +41,11 @@ OF_A_FIGURE = (
 
 
 def results_document(
-    result: BuildResult, comparison: Comparison | None, *, program_version: str
+    result: BuildResult,
+    comparison: Comparison | None,
+    *,
+    program_version: str,
+    forecast: Forecast | None = None,
 ) -> Document:
     """Everything computed of one build; every number finite or None."""
     build = result.build
@@ -65,7 +70,7 @@ def results_document(
         "heat_split": None if result.heat_split is None else _heat_split(result.heat_split),
         "stress": None if result.stress is None else asdict(result.stress),
         "thermal": None,
-        "forecast": None,
+        "forecast": None if forecast is None else _plain(asdict(forecast)),
         "baseline": None if comparison is None else _comparison(comparison),
         "findings": [finding_document(one) for one in result.findings],
         "inputs": [
@@ -83,6 +88,17 @@ def _heat_split(split: HeatSplit) -> Document:
         if core is None
         else {name: _listed(getattr(core, name)) for name in core.__dataclass_fields__},
     }
+
+
+def _plain(value: Any) -> Any:
+    """Arrays as lists, numbers that are not finite as None, whatever holds them."""
+    if isinstance(value, dict):
+        return {name: _plain(item) for name, item in value.items()}
+    if isinstance(value, np.ndarray):
+        return _plain(value.tolist())
+    if isinstance(value, list | tuple):
+        return [_plain(item) for item in value]
+    return None if isinstance(value, float) and not math.isfinite(value) else value
 
 
 def _listed(value: RealArray | float) -> Any:
