@@ -114,7 +114,7 @@ def _log_ratio(high: float, low: float) -> float:
 def _short_names(bands: Sequence[Band], size: Size) -> list[str]:
     """Names as drawn: on a narrow chart the unit of metre bands stands once, on the first."""
     names = [name_in_chart(band.name) for band in bands]
-    if size is NARROW:
+    if size.width == NARROW.width:
         names = [
             _METRES.sub(r"\1", name) if index and _METRES.fullmatch(name) else name
             for index, name in enumerate(names)

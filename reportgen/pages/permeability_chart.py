@@ -22,6 +22,7 @@ from reportgen.pages.frequency_axes import (
 from reportgen.pages.intervals import scaled_with_interval
 from reportgen.pages.look import LIGHT
 
+_SIZES = (replace(WIDE, height=114), replace(NARROW, height=180))
 _REAL_DASH = (0, (3, 1.5))
 _GAPS = (1.0, 2.0, 5.0, 10.0, 20.0, 50.0, 100.0, 200.0, 500.0, 1000.0, 2000.0)
 _SPOKEN = 3
@@ -35,7 +36,7 @@ def draw_permeability(
     core = None if result.heat_split is None else result.heat_split.permeability
     if core is None or len(core.frequency_hz) < 2:
         return None
-    drawings = [_draw(size, core, bands) for size in (WIDE, NARROW)]
+    drawings = [_draw(size, core, bands) for size in _SIZES]
     title, alt = _words(core, locale)
     return Chart(name="permeability", title=title, alt=alt, svg=drawings[0], narrow_svg=drawings[1])
 
@@ -43,7 +44,6 @@ def draw_permeability(
 def _draw(size: Size, core: Permeability, bands: Sequence[Band]) -> str:
     low_hz, high_hz = float(core.frequency_hz[0]), float(core.frequency_hz[-1])
     inside = [band for band in bands if low_hz <= band.from_hz and band.to_hz <= high_hz]
-    size = replace(size, height=size.height * 0.8)
     figure, axes = frequency_figure(size, low_hz, high_hz, inside)
     real = core.frequency_hz <= core.real_to_hz
     top = 1.05 * max(float(np.nanmax(core.lossy_high95)), _most(core.real_high95[real]))
