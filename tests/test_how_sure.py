@@ -116,7 +116,7 @@ def test_comparison_counts_bands_by_verdict():
 
 def test_methods_stand_side_by_side_with_their_agreement(text):
     assert "Bisection with load, mean of A and B" in text
-    assert "published: the smallest interval; into 3200 Ω" in text
+    assert "published: the surest of those that speak of most units; into 3200 Ω" in text
     expected = "disagrees with bisection with load, differing most on 10 m: +0.212 ± 0.042 dB"
     assert expected in text
     assert "common practice, and not the loss of a unit" in text

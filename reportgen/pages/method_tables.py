@@ -120,8 +120,8 @@ def _choice(result: BuildResult) -> str:
     if not bands:
         return published
     if min(bands) < len(_figures_by_band(result.chosen)):
-        return f"{published}: loss in most bands, and then the smallest interval"
-    return f"{published}: the smallest interval"
+        return f"{published}: loss in most bands, then the surest of those that speak of most units"
+    return f"{published}: the surest of those that speak of most units"
 
 
 def agreement_sentence(agreements: Sequence[Agreement]) -> str:
