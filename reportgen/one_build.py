@@ -11,7 +11,7 @@ from collections.abc import Mapping
 from dataclasses import dataclass, field, replace
 from pathlib import Path
 
-from reportgen import __version__
+from reportgen.build_files import build_files
 from reportgen.errors import InputRejected, NotMeasurable, OutputError
 from reportgen.intake.builds import BuildFolder, Runs, read_build
 from reportgen.model import BuildResult, Comparison, FailedBuild, Finding, Severity
@@ -89,7 +89,7 @@ def _placed(
     """The same, everything that is published of it written."""
     assert task.out is not None
     try:
-        files = _files(task, made, baseline, forecast)
+        files = build_files(made.result, made.comparison, baseline, task.runs.bench, forecast)
     except OutputError as error:
         raise InputRejected((*made.result.findings, _not_drawn(error))) from error
     place_build(task.out, folder.key, files, _names_of(task.earlier.get(folder.key)))
@@ -100,41 +100,6 @@ def _placed(
 def _names_of(record: BuildRecord | None) -> set[str]:
     """File names that an earlier run wrote for a build."""
     return set() if record is None else {one.file.rpartition("/")[2] for one in record.outputs}
-
-
-def _files(
-    task: Task, made: Made, baseline: BuildResult | None, forecast: Forecast | None
-) -> dict[str, bytes]:
-    """Contents of everything that is published of one build."""
-    from reportgen.output.csv_tables import bands_csv, curves_csv
-    from reportgen.output.documents import json_bytes, results_document
-    from reportgen.pages.report import render_report_html, render_report_pdf
-
-    result, comparison = made.result, made.comparison
-    document = results_document(result, comparison, program_version=__version__, forecast=forecast)
-    html = render_report_html(
-        result,
-        comparison=comparison,
-        baseline=baseline,
-        bench=task.runs.bench,
-        program_version=__version__,
-        forecast=forecast,
-    )
-    pdf = render_report_pdf(
-        result,
-        comparison=comparison,
-        baseline=baseline,
-        bench=task.runs.bench,
-        program_version=__version__,
-        forecast=forecast,
-    )
-    return {
-        "report.html": html.encode("utf-8"),
-        "report.pdf": pdf,
-        "results.json": json_bytes(document),
-        "bands.csv": bands_csv(result),
-        "curves.csv": curves_csv(result.chosen.curves, result.power_w),
-    }
 
 
 def _not_measurable(error: NotMeasurable) -> Finding:

@@ -1,0 +1,51 @@
+"""Everything that is published of one build, as bytes by file name."""
+
+from __future__ import annotations
+
+from reportgen import __version__
+from reportgen.model import BenchSheet, BuildResult, Comparison
+from reportgen.physics.forecast import Forecast
+
+
+def build_files(
+    result: BuildResult,
+    comparison: Comparison | None,
+    baseline: BuildResult | None,
+    bench: BenchSheet,
+    forecast: Forecast | None,
+) -> dict[str, bytes]:
+    """Contents of every file of a build's folder.
+
+    Raises
+    ------
+    OutputError
+        A page could not be set without a complaint.
+    """
+    from reportgen.output.csv_tables import bands_csv, curves_csv
+    from reportgen.output.documents import json_bytes, results_document
+    from reportgen.pages.report import render_report_html, render_report_pdf
+
+    document = results_document(result, comparison, program_version=__version__, forecast=forecast)
+    html = render_report_html(
+        result,
+        comparison=comparison,
+        baseline=baseline,
+        bench=bench,
+        program_version=__version__,
+        forecast=forecast,
+    )
+    pdf = render_report_pdf(
+        result,
+        comparison=comparison,
+        baseline=baseline,
+        bench=bench,
+        program_version=__version__,
+        forecast=forecast,
+    )
+    return {
+        "report.html": html.encode("utf-8"),
+        "report.pdf": pdf,
+        "results.json": json_bytes(document),
+        "bands.csv": bands_csv(result),
+        "curves.csv": curves_csv(result.chosen.curves, result.power_w),
+    }
