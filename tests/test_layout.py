@@ -20,7 +20,8 @@ ARROWS = {
     "pipeline": {
         "one_build", "intake", "pages", "output", "physics", "model", "errors", "reportgen",
     },
-    "one_build": {"intake", "pages", "output", "physics", "model", "errors", "reportgen"},
+    "one_build": {"build_files", "intake", "output", "physics", "model", "errors"},
+    "build_files": {"pages", "output", "physics", "model", "reportgen"},
     "intake": {"physics", "model", "errors"},
     "pages": {"physics", "model", "errors", "reportgen"},
     "output": {"physics", "model", "errors"},
