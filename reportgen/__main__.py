@@ -83,6 +83,7 @@ def _parser() -> argparse.ArgumentParser:
     _add_inspect(commands)
     _add_table(commands)
     _add_forecast(commands)
+    _add_schema(commands)
     return parser
 
 
@@ -139,6 +140,13 @@ def _add_forecast(commands: argparse._SubParsersAction[argparse.ArgumentParser])
     forecast = commands.add_parser("forecast", help=text, description=text)
     forecast.add_argument("build", metavar="BUILD", type=Path, help="a build folder")
     forecast.set_defaults(command=_forecast)
+
+
+def _add_schema(commands: argparse._SubParsersAction[argparse.ArgumentParser]) -> None:
+    text = "print the JSON Schema of build.toml or runs.toml, for editors that check TOML"
+    schema = commands.add_parser("schema", help=text, description=text)
+    schema.add_argument("of", choices=("build", "runs"), help="which of the two files")
+    schema.set_defaults(command=_schema)
 
 
 def _jobs(text: str) -> int:
@@ -208,6 +216,13 @@ def _forecast(options: argparse.Namespace) -> int:
             "units back to back, or one with its high side open and shorted"
         )
     print_forecast(_console(), forecast, runs.bench.locale)
+    return DONE
+
+
+def _schema(options: argparse.Namespace) -> int:
+    from reportgen.sidecars import schema_text
+
+    print(schema_text(options.of))
     return DONE
 
 
