@@ -31,6 +31,7 @@ Percent = Annotated[float, Ge(0), Le(100)]
 Decibel = Annotated[float, Ge(0), Le(200)]
 Count = Annotated[int, Ge(1), Lt(1000)]
 Turns = Annotated[float, Gt(0), Lt(1000)]
+TemperatureLimit = Annotated[float, Gt(0), Le(500)]
 
 
 class Sheet:
@@ -152,6 +153,7 @@ class Winding(Sheet):
     high_turns: Turns
     isolated: bool = False
     wire_mm: Positive | None = None
+    temperature_limit_c: TemperatureLimit | None = None
 
     @property
     def turns_ratio(self) -> float:
@@ -169,7 +171,7 @@ class Core(Sheet):
     stack: Count = 1
     initial_permeability: Positive | None = None
     material: Text = ""
-    temperature_limit_c: Annotated[float, Gt(0), Le(500)] | None = None
+    temperature_limit_c: TemperatureLimit | None = None
     flux_limit_mt: Positive | None = None
 
 
@@ -200,6 +202,7 @@ class Rating(Sheet):
     load_swr: Annotated[float, Ge(1), Le(100)] = 2.0
     ambient_max_c: Annotated[float, Ge(-60), Le(150)] = 40.0
     enclosure: Text = ""
+    enclosure_limit_c: TemperatureLimit | None = None
 
 
 @dataclass(frozen=True, kw_only=True, slots=True)
@@ -338,6 +341,40 @@ class Measurement:
     load: Load | None = None
 
 
+@dataclass(frozen=True, kw_only=True, slots=True, eq=False)
+class ThermalLog:
+    """Temperatures under constant power that is switched on at the first row, (N,) each.
+
+    `time_s` ascends from the first row on [s]; `core_c` and `ambient_c` in degrees Celsius.
+    """
+
+    file: str
+    sha256: str
+    time_s: RealArray
+    core_c: RealArray
+    ambient_c: RealArray
+
+    def __post_init__(self) -> None:
+        columns = (self.time_s, self.core_c, self.ambient_c)
+        if len({column.shape for column in columns}) != 1 or self.time_s.ndim != 1:
+            raise ValueError(f"log {self.file}: columns disagree")
+        for column in columns:
+            column.setflags(write=False)
+
+    @property
+    def span_s(self) -> float:
+        """From the first row to the last [s]."""
+        return float(self.time_s[-1] - self.time_s[0])
+
+
+@dataclass(frozen=True, kw_only=True, slots=True, eq=False)
+class HeatRun:
+    """A temperature log together with the unit, power and frequency that it was taken at."""
+
+    entry: ThermalEntry
+    log: ThermalLog
+
+
 @dataclass(frozen=True, kw_only=True, slots=True)
 class InputFile:
     """A file that was read for a build; `points` is None for what is not a sweep."""
@@ -355,6 +392,7 @@ class Build:
     folder: str
     sheet: BuildSheet
     measurements: tuple[Measurement, ...]
+    heat_runs: tuple[HeatRun, ...] = ()
     inputs: tuple[InputFile, ...] = ()
     findings: tuple[Finding, ...] = ()
 
@@ -654,6 +692,91 @@ class Stress:
 
 
 @dataclass(frozen=True, kw_only=True, slots=True)
+class ThermalFit:
+    """What a temperature log says of a unit: one body, evenly heated, one time constant.
+
+    `power_w` was entering the low side at `frequency_hz` and made `heat_w`; the core ends `rise_k`
+    above its surroundings, and was `start_k` above them at the first row.
+    """
+
+    file: str
+    unit: str
+    power_w: float
+    frequency_hz: float
+    heat_w: Interval
+    rise_k: Interval
+    start_k: float
+    time_constant_s: Interval
+    resistance_k_per_w: Interval
+    span_s: float
+
+
+@dataclass(frozen=True, kw_only=True, slots=True)
+class ThermalBand:
+    """What heat permits in one band.
+
+    `continuous_w` : power that ends at the limit in the hottest surroundings [W]; None: `reason`.
+    `extrapolated` : that is beyond what the log covers.
+    `minutes_to_limit` : from cold at the rated power, sent without a pause; None: never.
+    """
+
+    band: str
+    continuous_w: float | None
+    extrapolated: bool = False
+    minutes_to_limit: float | None = None
+    reason: str | None = None
+
+
+@dataclass(frozen=True, kw_only=True, slots=True)
+class PermittedMode:
+    """Peak envelope power that a mode may have over all bands [W], and what bounds it there.
+
+    `bound_by` : "heat", or the limit of `FirstLimit` that is met before; `band` None: in all.
+    """
+
+    mode: str
+    duty_percent: float
+    power_w: float
+    band: str | None
+    bound_by: str
+    extrapolated: bool
+
+
+@dataclass(frozen=True, kw_only=True, slots=True)
+class Permitted:
+    """The power that a build stands for a load SWR and surroundings that the rating names.
+
+    `limit_of` : what the lowest temperature limit is of, "core", "wire" or "enclosure". `modes`
+    begins with the mode that may have least.
+    """
+
+    limit_c: float
+    limit_of: str
+    ambient_max_c: float
+    load_swr: float
+    bands: tuple[ThermalBand, ...]
+    modes: tuple[PermittedMode, ...]
+
+    @property
+    def limiting(self) -> PermittedMode:
+        """The mode and band that may have least power."""
+        return self.modes[0]
+
+
+@dataclass(frozen=True, kw_only=True, slots=True)
+class Thermal:
+    """What the temperature logs say; `fit` is the one with the greatest resistance.
+
+    `permitted` None: `reason` says what is missing.
+    """
+
+    fits: tuple[ThermalFit, ...]
+    fit: ThermalFit
+    permitted: Permitted | None
+    reason: str | None = None
+
+
+@dataclass(frozen=True, kw_only=True, slots=True)
 class LotBand:
     """Heat loss of several units of a build in one band [dB]."""
 
@@ -742,5 +865,6 @@ class BuildResult:
     limits: tuple[LimitResult, ...] = ()
     heat_split: HeatSplit | None = None
     stress: Stress | None = None
+    thermal: Thermal | None = None
     lot: Lot | None = None
     repeatability: tuple[Repeatability, ...] = ()

@@ -7,9 +7,9 @@ from dataclasses import dataclass
 
 import numpy as np
 
-from reportgen.model import Interval
+from reportgen.model import Interval, ThermalLog
 from reportgen.physics.thermal import thermal_resistance_k_per_w
-from reportgen.physics.warm_up import ThermalLog, fit_warm_up
+from reportgen.physics.warm_up import fit_warm_up
 
 HEAT_U95 = 0.1  # of the heat itself
 

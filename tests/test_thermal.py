@@ -7,9 +7,9 @@ import pytest
 from temperature_logs import Truth, score, simulated_log
 
 from reportgen.errors import NotMeasurable
-from reportgen.model import Interval, Severity
+from reportgen.model import HeatRun, Interval, Severity, ThermalEntry, ThermalLog
 from reportgen.physics.thermal import fit_log, heat_of, thermal_resistance_k_per_w
-from reportgen.physics.warm_up import ThermalLog, fit_warm_up, rows_worth_one
+from reportgen.physics.warm_up import fit_warm_up, rows_worth_one
 
 QUIET = {"noise_k": 0.02, "resolution_k": 0.01}
 EFFICIENCY = Interval(value=0.90, low95=0.89, high95=0.91)  # of 50 W: 5 W of heat
@@ -19,15 +19,19 @@ def log_of(seed: int = 3, **truth: float) -> ThermalLog:
     return simulated_log(Truth(**truth), np.random.default_rng(seed))
 
 
+def fit_of(log: ThermalLog):
+    """A run of 50 W at 7.1 MHz."""
+    entry = ThermalEntry(file=log.file, power_w=50, frequency_mhz=7.1)
+    return fit_log(HeatRun(entry=entry, log=log), EFFICIENCY)
+
+
 def faults_of(log: ThermalLog) -> list[tuple[str, str]]:
-    _, findings = fit_log(log, 50, EFFICIENCY)
+    _, findings = fit_of(log)
     return [(one.severity.value, one.code) for one in findings]
 
 
 def test_quiet_log_gives_back_what_it_was_made_of() -> None:
-    fit, findings = fit_log(
-        log_of(span_s=3600, start_k=4, drift_k_per_h=3, **QUIET), 50, EFFICIENCY
-    )
+    fit, findings = fit_of(log_of(span_s=3600, start_k=4, drift_k_per_h=3, **QUIET))
     assert findings == ()
     assert fit.time_constant_s.value == pytest.approx(600, rel=2e-3)
     assert fit.rise_k.value == pytest.approx(40, rel=1e-3)
@@ -157,7 +161,7 @@ def test_minutes_for_seconds() -> None:
 
 def test_warm_start_is_told_and_does_not_count_as_rise() -> None:
     log = log_of(span_s=3600, start_k=12)
-    fit, findings = fit_log(log, 50, EFFICIENCY)
+    fit, findings = fit_of(log)
     assert [(one.severity.value, one.code) for one in findings] == [("note", "log-warm-start")]
     assert fit.rise_k.value == pytest.approx(40, rel=0.02)
 
@@ -173,7 +177,7 @@ def test_two_time_constants_do_not_lie_on_one_curve() -> None:
 def test_few_rows(rows: int) -> None:
     log = log_of()
     short = {name: getattr(log, name)[:rows] for name in ("time_s", "core_c", "ambient_c")}
-    fit, (finding,) = fit_log(replace(log, **short), 50, EFFICIENCY)
+    fit, (finding,) = fit_of(replace(log, **short))
     assert fit is None
     assert finding.severity is Severity.ERROR
     assert finding.message == f"the log has {rows} rows, 20 are needed"
@@ -183,15 +187,13 @@ def test_flat_and_frozen_logs_say_nothing() -> None:
     log = log_of()
     flat = np.full_like(log.core_c, 22.0)
     for time_s in (log.time_s, np.zeros_like(log.time_s)):
-        fit, findings = fit_log(
-            replace(log, time_s=time_s, core_c=flat, ambient_c=flat), 50, EFFICIENCY
-        )
+        fit, findings = fit_of(replace(log, time_s=time_s, core_c=flat, ambient_c=flat))
         assert fit is None
         assert findings[0].severity is Severity.ERROR
 
 
 def test_noise_without_a_rise_says_nothing() -> None:
     for seed in range(8):
-        fit, findings = fit_log(log_of(seed, heat_w=0.0), 50, EFFICIENCY)
+        fit, findings = fit_of(log_of(seed, heat_w=0.0))
         assert fit is None, seed
         assert findings[0].severity is Severity.ERROR

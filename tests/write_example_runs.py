@@ -19,10 +19,17 @@ from simulation.bench import GRADES, matrix_of
 from simulation.hollin_bank import EXAMPLES
 from simulation.sidecar_text import sidecar_text
 from simulation.touchstone_text import touchstone_text
-from simulation.transformer import Unit, chain_of_unit, core_factor_per_m, twin_of
+from simulation.transformer import (
+    Unit,
+    chain_of_unit,
+    core_factor_per_m,
+    true_efficiency_ratio,
+    twin_of,
+)
 from simulation.workshop import BENCH_SHEET, Example, Plan
+from temperature_logs import Truth, simulated_log
 
-from reportgen.model import Load, Setup, SweepEntry
+from reportgen.model import Load, Setup, SweepEntry, ThermalEntry
 from reportgen.physics.allocations import known_bands
 from reportgen.physics.network import (
     Chain,
@@ -92,6 +99,12 @@ def true_load_ohm(name: str, load: Load, frequency_hz: np.ndarray) -> np.ndarray
     return resistor_ohm(load.resistance_ohm * off, rng.uniform(3e-12, 5e-12), frequency_hz)
 
 
+def wire_end_ohm(frequency_hz: np.ndarray) -> np.ndarray:
+    """A wire in the air from its end: a line of 600 ohm, open at 20 m, that loses by radiation."""
+    length = 2 * np.pi * frequency_hz / 299_792_458 * 20.3 * 1.03
+    return np.asarray(600 / np.tanh(0.16 + 0.012 * length + 1j * length))
+
+
 def series_resistor(load: Load, frequency_hz: np.ndarray) -> Chain:
     """A resistor in series to port 2."""
     return series_arm(resistor_ohm(load.resistance_ohm, load.body_pf * 1e-12, frequency_hz))
@@ -142,6 +155,7 @@ def sweep_s(example: Example, entry: SweepEntry, frequency_hz: np.ndarray) -> np
         ),
         Setup.RESISTOR_CHECK: lambda: two_port(series_resistor(load, frequency_hz)),
         Setup.THRU_CHECK: lambda: two_port(series_arm(np.zeros(len(frequency_hz)))),
+        Setup.ANTENNA: lambda: one_port(wire_end_ohm(frequency_hz)),
     }
     return connected[entry.setup]()
 
@@ -151,6 +165,26 @@ def comments_of(example: Example, entry: SweepEntry) -> list[str]:
     what = entry.units or ((entry.unit,) if entry.unit else ())
     units = f", {' and '.join(what)}" if what else ""
     return [SIMULATED, f"{example.sheet.name}, {entry.setup}{units}"]
+
+
+def log_text(example: Example, entry: ThermalEntry) -> str:
+    """A temperature log as CSV: its heat is what the unit turns into heat in truth."""
+    unit, made = unit_of(example, entry.unit), example.made
+    hz = np.array([entry.frequency_mhz * 1e6])
+    efficiency = float(true_efficiency_ratio(unit, hz, example.sheet.nominal_load_ohm)[0])
+    truth = Truth(
+        resistance_k_per_w=made.resistance_k_per_w,
+        time_constant_s=made.time_constant_s,
+        heat_w=entry.power_w * (1 - efficiency),
+        span_s=4 * made.time_constant_s,
+        step_s=10,
+        start_k=0.4,
+        drift_k_per_h=0.8,
+    )
+    log = simulated_log(truth, seeded(example.folder, entry.file))
+    rows = zip(log.time_s, log.core_c, log.ambient_c, strict=True)
+    lines = [f"{time_s:.0f},{core_c:.1f},{ambient_c:.1f}" for time_s, core_c, ambient_c in rows]
+    return "\n".join(["time_s,core_c,ambient_c", *lines, ""])
 
 
 # --- the folder ----------------------------------------------------------------------------------
@@ -173,6 +207,8 @@ def example_texts() -> Iterator[tuple[str, str]]:
                     comments=comments_of(example, entry),
                 ),
             )
+        for log in example.sheet.thermal:
+            yield f"{example.folder}/{log.file}", log_text(example, log)
 
 
 def main() -> None:

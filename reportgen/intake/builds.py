@@ -23,6 +23,7 @@ from reportgen.intake.sidecar import completed_entry, parse_bench, parse_build
 from reportgen.intake.sidecar_shape import nearest
 from reportgen.intake.sidecar_text import MAX_BYTES, shown_value
 from reportgen.intake.spot_readings import parse_spot_readings
+from reportgen.intake.thermal_log import parse_thermal_log
 from reportgen.intake.touchstone import parse_touchstone
 from reportgen.model import (
     OUTPUT_MARKER,
@@ -32,6 +33,7 @@ from reportgen.model import (
     Build,
     BuildSheet,
     Finding,
+    HeatRun,
     InputFile,
     Measurement,
     Setup,
@@ -147,6 +149,7 @@ class _Reading:
         self.inputs = [_input(BUILD_FILE, data)]
         self.findings = list(check_dates(self.sheet, runs.bench))
         self.measurements: list[Measurement] = []
+        self.heat_runs: list[HeatRun] = []
 
     def take_sweep(self, entry: SweepEntry, key: str) -> None:
         """Read one sweep; what keeps it from use becomes a finding."""
@@ -189,13 +192,20 @@ class _Reading:
         return Measurement(entry=entry, sweep=sweep, load=loads[entry.load] if entry.load else None)
 
     def take_log(self, entry: ThermalEntry, key: str) -> None:
-        """See that a temperature log is there."""
+        """Read one temperature log; what keeps it from use becomes a finding."""
         try:
-            _named_file(self.runs, self.folder, entry.file, f"{key}.file")
+            data = _named_file(self.runs, self.folder, entry.file, f"{key}.file")
         except InputRejected as rejected:
             self.findings += rejected.findings
-        else:
-            self.findings.append(_not_used("thermal-not-read", "temperature logs are", entry.file))
+            return
+        self.inputs.append(_input(entry.file, data))
+        try:
+            log, findings = parse_thermal_log(data, file=entry.file)
+        except InputRejected as rejected:
+            self.findings += rejected.findings
+            return
+        self.findings += findings
+        self.heat_runs.append(HeatRun(entry=entry, log=log))
 
     def build(self) -> Build:
         """The build, when at least one sweep of a unit is left."""
@@ -206,6 +216,7 @@ class _Reading:
             folder=self.folder.folder,
             sheet=self.sheet,
             measurements=tuple(self.measurements),
+            heat_runs=tuple(self.heat_runs),
             inputs=tuple(self.inputs),
             findings=tuple(self.findings),
         )
@@ -220,11 +231,6 @@ def _contradiction(entry: SweepEntry, ports: int, key: str) -> Finding:
 
 def _ports(count: int) -> str:
     return "1 port" if count == 1 else f"{count} ports"
-
-
-def _not_used(code: str, what: str, file: str) -> Finding:
-    message = f"{what} not part of the figures in this version"
-    return Finding(severity=Severity.NOTE, code=code, message=message, file=file)
 
 
 def _unnamed_sweeps(folder: BuildFolder, sheet: BuildSheet) -> Iterator[Finding]:

@@ -9,8 +9,7 @@ import numpy as np
 from reportgen.intake.number_lines import read_number
 from reportgen.intake.remarks import Remarks, listed_lines, quoted
 from reportgen.intake.sweep_text import decode_text
-from reportgen.model import Finding, RealArray
-from reportgen.physics.warm_up import ThermalLog
+from reportgen.model import Finding, RealArray, ThermalLog
 
 COLUMNS = ("time_s", "core_c", "ambient_c")
 MAX_BYTES = 2**24

@@ -30,6 +30,7 @@ from reportgen.physics.checks import check_findings
 from reportgen.physics.choose import chosen_of, rank
 from reportgen.physics.drawn import Drawn
 from reportgen.physics.forecast import Forecast, forecast_of
+from reportgen.physics.heat_runs import fit_heat_runs, thermal_of
 from reportgen.physics.heat_split import heat_split_of
 from reportgen.physics.judge import judge
 from reportgen.physics.loads import find_load_sweeps
@@ -87,6 +88,8 @@ def measure(build: Build, bench: BenchSheet, known: Sequence[Band]) -> Measured:
     agreements, doubts = find_agreements(solved, drawn)
     checked = check_findings(build.measurements, drawn)
     methods = tuple(one.result for one in solved)
+    fits, of_logs = fit_heat_runs(build, chosen, units)
+    stress = stress_of(build.sheet, measured_bands(chosen.bands), power_w)
     result = BuildResult(
         build=build,
         power_w=power_w,
@@ -95,11 +98,12 @@ def measure(build: Build, bench: BenchSheet, known: Sequence[Band]) -> Measured:
         methods=methods,
         bandwidths=find_bandwidths(chosen.curves, bench.limits.get("all", Limits())),
         fitted=_fitted(build, solved),
-        findings=_unique((*build.findings, *findings, *doubts, *checked)),
+        findings=_unique((*build.findings, *findings, *doubts, *checked, *of_logs)),
         loss_draws_db=loss_draws_db(chosen, spread),
         agreements=agreements,
         limits=judge(chosen.bands, bench),
-        stress=stress_of(build.sheet, measured_bands(chosen.bands), power_w),
+        stress=stress,
+        thermal=thermal_of(fits, build, bench, measured_bands(chosen.bands), stress, power_w),
         heat_split=heat_split_of(group, build.sheet, power_w),
         lot=lot_of(units),
         repeatability=find_repeatability(build.measurements),

@@ -14,20 +14,26 @@ References
 from __future__ import annotations
 
 from collections.abc import Mapping, Sequence
-from dataclasses import dataclass
 
 import numpy as np
 
-from reportgen.model import MeasuredBand
-from reportgen.physics.thermal import ThermalFit
+from reportgen.model import (
+    BuildSheet,
+    FirstLimit,
+    MeasuredBand,
+    Permitted,
+    PermittedMode,
+    ThermalBand,
+    ThermalFit,
+)
 
 DUTY_PERCENT: Mapping[str, float] = {
-    "voice": 20,
+    "carrier": 100,
+    "FM voice": 100,
+    "frequency-shift keying": 100,
     "voice, processed": 50,
     "telegraphy": 40,
-    "frequency-shift keying": 100,
-    "FM voice": 100,
-    "carrier": 100,
+    "voice": 20,
 }
 """Mean power over peak envelope power while sending, by mode [percent] [1]_."""
 
@@ -35,48 +41,21 @@ EXTRAPOLATED_BEYOND = 2.0
 """Times the logged power, or the logged heat, beyond which a power is marked."""
 
 
-@dataclass(frozen=True, kw_only=True, slots=True)
-class ModePower:
-    """Peak envelope power that a mode may have for heat alone [W]; None: no bound by heat."""
-
-    mode: str
-    duty_percent: float
-    power_w: float | None
-
-
-@dataclass(frozen=True, kw_only=True, slots=True)
-class ThermalBand:
-    """What heat permits in one band.
-
-    `continuous_w` : power that ends at the limit in the hottest surroundings [W]; None: `reason`.
-    `extrapolated` : that is beyond what the log covers.
-    `minutes_to_limit` : from cold at the rated power, sent without a pause; None: never.
-    `modes` : peak envelope power by mode.
-    """
-
-    band: str
-    continuous_w: float | None
-    extrapolated: bool = False
-    minutes_to_limit: float | None = None
-    modes: tuple[ModePower, ...] = ()
-    reason: str | None = None
-
-
 def duty_table(own: Mapping[str, float]) -> dict[str, float]:
     """Duty of each mode [percent]: the table, the workshop's own figures before it."""
     return {**DUTY_PERCENT, **own}
 
 
-def permitted_power(
+def permitted_of(
     fit: ThermalFit,
     bands: Sequence[MeasuredBand],
+    sheet: BuildSheet,
+    first_limit: FirstLimit | None,
     *,
-    limit_c: float,
-    ambient_max_c: float,
     rated_w: float,
     duty_percent: Mapping[str, float],
-) -> tuple[ThermalBand, ...]:
-    """What heat permits in each band.
+) -> Permitted | None:
+    """What the build stands by band and mode; None: no temperature limit, or no heat, is known.
 
     Parameters
     ----------
@@ -84,8 +63,10 @@ def permitted_power(
         From a log of this build, in its enclosure.
     bands : sequence of MeasuredBand
         The heat taken is that of the band's least efficiency, the lower end of its interval.
-    limit_c, ambient_max_c : float
-        Lowest limit of core, wire and box, and the hottest surroundings named [C].
+    sheet : BuildSheet
+        Names the temperature limits and the hottest surroundings.
+    first_limit : FirstLimit, optional
+        Of volts or flux, at peak envelope power: no mode may have more.
     rated_w : float
         Power asked about, entering the low side [W].
     duty_percent : mapping
@@ -95,35 +76,54 @@ def permitted_power(
     -----
     (limit - ambient) = R h P, h the share of the power that becomes heat. R is taken as fitted:
     with too little heat read off the sweeps it comes out too large, so its error and that of h
-    work against each other. Volts and flux may bind a mode's peak before heat does.
+    work against each other.
     """
-    room_k = limit_c - ambient_max_c
-    return tuple(_in_band(fit, band, room_k, rated_w, duty_percent) for band in bands)
+    lowest = lowest_limit(sheet)
+    if lowest is None:
+        return None
+    limit_of, limit_c = lowest
+    room_k = limit_c - sheet.rating.ambient_max_c
+    found = tuple(_in_band(fit, band, room_k, rated_w) for band in bands)
+    modes = _modes(found, first_limit, duty_percent)
+    if not modes:
+        return None
+    return Permitted(
+        limit_c=limit_c,
+        limit_of=limit_of,
+        ambient_max_c=sheet.rating.ambient_max_c,
+        load_swr=sheet.rating.load_swr,
+        bands=found,
+        modes=modes,
+    )
 
 
-def _in_band(
-    fit: ThermalFit,
-    band: MeasuredBand,
-    room_k: float,
-    rated_w: float,
-    duty_percent: Mapping[str, float],
-) -> ThermalBand:
+def lowest_limit(sheet: BuildSheet) -> tuple[str, float] | None:
+    """The lowest of core, wire and enclosure limits: what it is of, and the limit [C].
+
+    The log knows the core's surface only. Held against the limit of the wire, or of the cooler
+    box, it is on the safe side.
+    """
+    limits = {
+        "core": None if sheet.core is None else sheet.core.temperature_limit_c,
+        "wire": sheet.winding.temperature_limit_c,
+        "enclosure": sheet.rating.enclosure_limit_c,
+    }
+    given = [(limit_of, limit_c) for limit_of, limit_c in limits.items() if limit_c is not None]
+    return min(given, key=lambda one: one[1], default=None)
+
+
+def _in_band(fit: ThermalFit, band: MeasuredBand, room_k: float, rated_w: float) -> ThermalBand:
     name = band.band.name
     heat_ratio = _heat_ratio(band)
     if heat_ratio is None or heat_ratio <= 0:
         return ThermalBand(band=name, continuous_w=None, reason="no heat known in this band")
     k_per_w = fit.resistance_k_per_w.value * heat_ratio
     continuous_w = max(room_k, 0.0) / k_per_w
-    modes = duty_percent.items()
     return ThermalBand(
         band=name,
         continuous_w=continuous_w,
         extrapolated=_is_extrapolated(fit, continuous_w, heat_ratio),
         minutes_to_limit=minutes_to_limit(room_k, k_per_w * rated_w, fit.time_constant_s.value),
-        modes=tuple(
-            ModePower(mode=mode, duty_percent=duty, power_w=_peak_w(continuous_w, duty))
-            for mode, duty in modes
-        ),
     )
 
 
@@ -144,8 +144,38 @@ def _is_extrapolated(fit: ThermalFit, power_w: float, heat_ratio: float) -> bool
     )
 
 
-def _peak_w(continuous_w: float, duty_percent: float) -> float | None:
-    return 100 * continuous_w / duty_percent if duty_percent else None
+def _modes(
+    bands: Sequence[ThermalBand], first_limit: FirstLimit | None, duty_percent: Mapping[str, float]
+) -> tuple[PermittedMode, ...]:
+    """What each mode may have in every band, least first; modes without duty know no heat."""
+    known = [(band.continuous_w, band) for band in bands if band.continuous_w is not None]
+    if not known:
+        return ()
+    continuous_w, hottest = min(known, key=lambda one: one[0])
+    modes = [
+        _mode(mode, duty, 100 * continuous_w / duty, hottest, first_limit)
+        for mode, duty in duty_percent.items()
+        if duty > 0
+    ]
+    return tuple(sorted(modes, key=lambda one: (one.power_w, -one.duty_percent)))
+
+
+def _mode(
+    mode: str, duty_percent: float, by_heat_w: float, hottest: ThermalBand, limit: FirstLimit | None
+) -> PermittedMode:
+    if limit is not None and limit.power_w < by_heat_w:
+        power_w, band, bound_by, extrapolated = limit.power_w, limit.band, limit.what, False
+    else:
+        power_w, band, bound_by = by_heat_w, hottest.band, "heat"
+        extrapolated = hottest.extrapolated
+    return PermittedMode(
+        mode=mode,
+        duty_percent=duty_percent,
+        power_w=power_w,
+        band=band,
+        bound_by=bound_by,
+        extrapolated=extrapolated,
+    )
 
 
 def minutes_to_limit(room_k: float, final_rise_k: float, time_constant_s: float) -> float | None:

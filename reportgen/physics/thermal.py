@@ -6,13 +6,12 @@ Assumed: one body, evenly heated by a loss that stays what it was when measured 
 from __future__ import annotations
 
 from collections.abc import Iterator
-from dataclasses import dataclass
 
 import numpy as np
 
 from reportgen.errors import NotMeasurable
-from reportgen.model import Finding, Interval, Severity
-from reportgen.physics.warm_up import ThermalLog, WarmUp, fit_warm_up
+from reportgen.model import Finding, HeatRun, Interval, Severity, ThermalFit, ThermalLog
+from reportgen.physics.warm_up import WarmUp, fit_warm_up
 
 _LONG_ENOUGH = 2.0  # time constants
 _GAP = 0.2  # time constants
@@ -20,23 +19,6 @@ _OFF_CURVE = 0.05  # of the rise
 _WARM_START = 0.15  # of the rise
 _PARTS = 12
 _PLAUSIBLE_S = (20.0, 6 * 3600.0)
-
-
-@dataclass(frozen=True, kw_only=True, slots=True, eq=False)
-class ThermalFit:
-    """What a log says of a unit.
-
-    `power_w` was entering the low side and made `heat_w`; rise of `rise_k` in the end.
-    """
-
-    file: str
-    power_w: float
-    heat_w: Interval
-    rise_k: Interval
-    start_k: float
-    time_constant_s: Interval
-    resistance_k_per_w: Interval
-    span_s: float
 
 
 def heat_of(power_w: float, efficiency_ratio: Interval) -> Interval:
@@ -86,19 +68,18 @@ def _log_ratio(greater: float | None, lesser: float | None) -> float:
 
 
 def fit_log(
-    log: ThermalLog, power_w: float, efficiency_ratio: Interval
+    run: HeatRun, efficiency_ratio: Interval
 ) -> tuple[ThermalFit | None, tuple[Finding, ...]]:
     """What a log says, None where it says nothing, and what is wrong with it.
 
     Parameters
     ----------
-    log : ThermalLog
-        Of one unit.
-    power_w : float
-        Power entering the low side during the log [W].
+    run : HeatRun
+        Of one unit, the power entering its low side.
     efficiency_ratio : Interval
         Of that unit at the frequency of the log [ratio].
     """
+    log, power_w = run.log, run.entry.power_w
     try:
         warm_up = fit_warm_up(log)
         heat_w = heat_of(power_w, efficiency_ratio)
@@ -110,7 +91,9 @@ def fit_log(
         return None, faults
     fit = ThermalFit(
         file=log.file,
+        unit=run.entry.unit,
         power_w=power_w,
+        frequency_hz=run.entry.frequency_mhz * 1e6,
         heat_w=heat_w,
         rise_k=warm_up.rise_k,
         start_k=warm_up.start_k,

@@ -17,10 +17,10 @@ from dataclasses import dataclass
 import numpy as np
 from scipy.optimize import least_squares
 from scipy.signal import lfilter
-from scipy.stats import t as student
+from scipy.special import stdtrit
 
 from reportgen.errors import NotMeasurable
-from reportgen.model import Interval, RealArray
+from reportgen.model import Interval, RealArray, ThermalLog
 
 FEWEST_ROWS = 20
 _MOST_ROWS = 1000  # longer logs are averaged in blocks
@@ -29,32 +29,6 @@ _SOFTNESS = 2.0  # standard deviations beyond which a row loses weight
 _TRIED = 25
 _LEAST_RISE_K = 2.0
 _WINDOW = 3  # autocorrelation times that are summed up
-
-
-@dataclass(frozen=True, kw_only=True, slots=True, eq=False)
-class ThermalLog:
-    """Temperatures under constant power that is switched on at the first row, (N,) each.
-
-    `time_s` ascends from the first row on [s]; `core_c` and `ambient_c` in degrees Celsius.
-    """
-
-    file: str
-    sha256: str
-    time_s: RealArray
-    core_c: RealArray
-    ambient_c: RealArray
-
-    def __post_init__(self) -> None:
-        columns = (self.time_s, self.core_c, self.ambient_c)
-        if len({column.shape for column in columns}) != 1 or self.time_s.ndim != 1:
-            raise ValueError(f"log {self.file}: columns disagree")
-        for column in columns:
-            column.setflags(write=False)
-
-    @property
-    def span_s(self) -> float:
-        """From the first row to the last [s]."""
-        return float(self.time_s[-1] - self.time_s[0])
 
 
 @dataclass(frozen=True, kw_only=True, slots=True, eq=False)
@@ -182,7 +156,7 @@ def _half_widths(curve: _Curve, at: RealArray, residual: RealArray, soft: float)
     weights = np.asarray(np.linalg.pinv(curve.slopes(at)), dtype=float)
     spread = np.sum(weights**2, axis=-1) * variance * rows
     spread = spread + curve.room_variance(weights, np.exp(at[2]))
-    return np.asarray(student.ppf(0.975, freedom) * np.sqrt(spread))
+    return np.asarray(stdtrit(freedom, 0.975) * np.sqrt(spread))
 
 
 def rows_worth_one(residual: RealArray, fitted: int) -> tuple[float, float]:

@@ -9,10 +9,18 @@ test_flux_and_volts.py.
 import numpy as np
 import pytest
 
-from reportgen.model import Band, Figure, Interval, MeasuredBand
-from reportgen.physics.permitted_power import DUTY_PERCENT, minutes_to_limit, permitted_power
-from reportgen.physics.thermal import ThermalFit
-from reportgen.physics.warm_up import ThermalLog, fit_warm_up
+from reportgen.model import (
+    Band,
+    BuildSheet,
+    Figure,
+    Interval,
+    MeasuredBand,
+    ThermalFit,
+    ThermalLog,
+    Winding,
+)
+from reportgen.physics.permitted_power import DUTY_PERCENT, minutes_to_limit, permitted_of
+from reportgen.physics.warm_up import fit_warm_up
 
 
 @pytest.mark.parametrize(
@@ -40,17 +48,20 @@ def test_duty_is_of_the_sending_alone() -> None:
     """  # fmt: skip
     one = Interval(value=1.0, low95=1.0, high95=1.0)
     fit = ThermalFit(
-        file="", power_w=200, heat_w=one, rise_k=one, start_k=0, time_constant_s=one,
-        resistance_k_per_w=one, span_s=1,
+        file="", unit="A", frequency_hz=7e6, power_w=200, heat_w=one, rise_k=one, start_k=0,
+        time_constant_s=one, resistance_k_per_w=one, span_s=1,
     )  # fmt: skip
     half = Figure(mean=0.5, worst=0.5, centre=0.5, worst_at_hz=7e6, low95=0.5)
     band = MeasuredBand(
         band=Band(name="40 m", from_hz=7e6, to_hz=7.2e6), covered_hz=(7e6, 7.2e6), points=3,
         interpolated=False, figures={"efficiency_ratio": half},
     )  # fmt: skip
-    (found,) = permitted_power(
-        fit, (band,), limit_c=140, ambient_max_c=40, rated_w=100, duty_percent=DUTY_PERCENT
-    )
+    winding = Winding(low_turns=3, high_turns=24, temperature_limit_c=140)
+    found = permitted_of(
+        fit, (band,), BuildSheet(name="Alder", winding=winding), None, rated_w=100,
+        duty_percent=DUTY_PERCENT,
+    )  # fmt: skip
+    assert found is not None
     power_w = {one.mode: one.power_w for one in found.modes}
     assert power_w["telegraphy"] == pytest.approx(500)
     assert power_w["telegraphy"] * 0.4 * 0.125 == pytest.approx(25)

@@ -18,6 +18,7 @@ from reportgen.model import (
     Part,
     Setup,
     SweepEntry,
+    ThermalEntry,
 )
 
 
@@ -26,6 +27,7 @@ class Made:
     """Properties of a build's units that no sidecar tells; leakage referred to the low side.
 
     `leakage_times` makes a unit unlike the others: its leakage is so many times theirs [ratio].
+    `resistance_k_per_w` and `time_constant_s` say how it warms up in its box.
     """
 
     material: str = "broad"
@@ -34,6 +36,8 @@ class Made:
     wire_ohm: float
     self_capacitance_f: float
     leakage_times: Mapping[str, float] = field(default_factory=dict)
+    resistance_k_per_w: float = 8.0
+    time_constant_s: float = 900.0
 
 
 @dataclass(frozen=True, kw_only=True)
@@ -97,7 +101,7 @@ RING_36 = Core(
     initial_permeability=600,
     material="nickel-zinc ferrite",
     temperature_limit_c=90,
-    flux_limit_mt=20,
+    flux_limit_mt=40,
 )
 RINGS_36 = replace(RING_36, stack=2)
 RINGS_36_HIGH = Core(
@@ -108,7 +112,7 @@ RINGS_36_HIGH = Core(
     initial_permeability=800,
     material="nickel-zinc ferrite, second grade",
     temperature_limit_c=85,
-    flux_limit_mt=20,
+    flux_limit_mt=40,
 )
 RING_61 = Core(
     outer_mm=61.0,
@@ -117,7 +121,7 @@ RING_61 = Core(
     initial_permeability=400,
     material="nickel-zinc ferrite, low permeability",
     temperature_limit_c=100,
-    flux_limit_mt=25,
+    flux_limit_mt=40,
 )
 RINGS_61 = replace(RING_61, stack=2)
 BENCH_RECORD = {"data": "simulated", "operator": "bench 1", "cables": "0.6 m, phase stable"}
@@ -160,6 +164,11 @@ def single(
 ) -> SweepEntry:
     """One unit, or none, in any other set-up."""
     return SweepEntry(file=file, setup=setup, unit=unit, load=load, calibration=calibration)
+
+
+def heat_run(power_w: float) -> tuple[ThermalEntry, ...]:
+    """Unit A under power at 7.1 MHz until it hardly gets warmer."""
+    return (ThermalEntry(file="warm-up.csv", unit="A", power_w=power_w, frequency_mhz=7.1),)
 
 
 def both_loaded(load: str, calibration: str, folder: str = "") -> tuple[SweepEntry, ...]:
