@@ -220,7 +220,7 @@ def _forecast(options: argparse.Namespace) -> int:
 
 
 def _schema(options: argparse.Namespace) -> int:
-    from reportgen.sidecars import schema_text
+    from reportgen.sidecars.schema import schema_text
 
     print(schema_text(options.of))
     return DONE
@@ -231,7 +231,7 @@ def _print_outcome(console: Console, outcome: Outcome) -> None:
 
     print_findings(console, "runs folder", outcome.findings)
     for one in outcome.made:
-        print_findings(console, one.result.build.key, one.result.findings)
+        print_findings(console, one.key, one.findings)
     print_failed(console, outcome.failed)
 
 

@@ -14,10 +14,10 @@ import pytest
 from jsonschema import Draft202012Validator
 
 from reportgen.__main__ import main
-from reportgen.intake.key_words import KEYS, SETUP_WORDS, SHEET_TITLES
-from reportgen.intake.sidecar_schema import sidecar_schema
 from reportgen.intake.sidecar_shape import check_shape
 from reportgen.model import BenchSheet, BuildSheet, Setup, Sheet
+from reportgen.sidecars.key_words import KEYS, SETUP_WORDS, SHEET_TITLES
+from reportgen.sidecars.schema import sidecar_schema
 
 ROOT = Path(__file__).parents[1]
 TESTS = ROOT / "tests"

@@ -6,16 +6,23 @@ file that is not there) is told by `inspect` alone.
 
 from __future__ import annotations
 
+import json
 from typing import Any
 
 from pydantic import TypeAdapter
 
-from reportgen.intake.key_words import KEYS, SETUP_WORDS, SHEET_TITLES
-from reportgen.model import Setup, Sheet
+from reportgen.model import BenchSheet, BuildSheet, Setup, Sheet
+from reportgen.sidecars.key_words import KEYS, SETUP_WORDS, SHEET_TITLES
 
 DIALECT = "https://json-schema.org/draft/2020-12/schema"
 
 Schema = dict[str, Any]
+
+
+def schema_text(of: str) -> str:
+    """JSON Schema of `build.toml` ("build") or `runs.toml` ("runs")."""
+    kind = {"build": BuildSheet, "runs": BenchSheet}[of]
+    return json.dumps(sidecar_schema(kind), indent=2, ensure_ascii=False)
 
 
 def sidecar_schema(kind: type[Sheet]) -> Schema:

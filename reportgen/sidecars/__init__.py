@@ -1,0 +1,1 @@
+"""What helps to write sidecars: starters from the sweeps of a folder, and a schema for editors."""
