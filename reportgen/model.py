@@ -763,15 +763,32 @@ class Permitted:
         return self.modes[0]
 
 
-@dataclass(frozen=True, kw_only=True, slots=True)
+@dataclass(frozen=True, kw_only=True, slots=True, eq=False)
+class WarmUp:
+    """A warm-up curve through the rows of a log, long logs averaged; (N,) each [s] and [C].
+
+    `rise_k` : final rise above the surroundings [K], `start_k` : rise at the first row [K].
+    """
+
+    rise_k: Interval
+    start_k: float
+    time_constant_s: Interval
+    time_s: RealArray
+    core_c: RealArray
+    ambient_c: RealArray
+    fitted_c: RealArray
+
+
+@dataclass(frozen=True, kw_only=True, slots=True, eq=False)
 class Thermal:
-    """What the temperature logs say; `fit` is the one with the greatest resistance.
+    """What the temperature logs say; `fit` is the one with the greatest resistance, by `warm_up`.
 
     `permitted` None: `reason` says what is missing.
     """
 
     fits: tuple[ThermalFit, ...]
     fit: ThermalFit
+    warm_up: WarmUp
     permitted: Permitted | None
     reason: str | None = None
 

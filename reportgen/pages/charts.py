@@ -1,4 +1,4 @@
-"""Charts of one build: efficiency and match over frequency, heat by band, permeability.
+"""Charts of one build: efficiency and match over frequency, heat by band, permeability, warm-up.
 
 Each is drawn twice from the same numbers: wide for pages and paper, narrow for a phone.
 """
@@ -12,6 +12,7 @@ from reportgen.pages.canvas import Chart
 from reportgen.pages.curve_charts import draw_efficiency, draw_match
 from reportgen.pages.heat_chart import draw_heat
 from reportgen.pages.permeability_chart import draw_permeability
+from reportgen.pages.warm_up_chart import draw_warm_up
 
 __all__ = [
     "Chart",
@@ -20,6 +21,7 @@ __all__ = [
     "draw_heat",
     "draw_match",
     "draw_permeability",
+    "draw_warm_up",
 ]
 
 
@@ -32,7 +34,9 @@ def draw_charts(
     efficiency_limits: Mapping[str, float],
     locale: str = "en",
 ) -> dict[str, Chart]:
-    """All charts that the result allows, by name: `efficiency`, `match`, `heat`, `permeability`.
+    """All charts that the result allows, by name.
+
+    They are `efficiency`, `match`, `heat`, `permeability` and `warm-up`.
 
     The limits [ratio] are those of the bands that have one; the baseline is drawn where it is
     given.
@@ -42,5 +46,6 @@ def draw_charts(
         draw_match(result, baseline, bands, limits=swr_limits, locale=locale),
         draw_heat(result, baseline, locale=locale),
         draw_permeability(result, bands, locale=locale),
+        draw_warm_up(result, locale=locale),
     )
     return {chart.name: chart for chart in drawn if chart is not None}

@@ -33,6 +33,7 @@ from reportgen.pages.particulars import (
 )
 from reportgen.pages.pdf import write_pdf
 from reportgen.pages.plain_text import text_lines
+from reportgen.pages.power import PowerPage, power_of
 from reportgen.pages.predictions import Predictions, predictions_of
 from reportgen.pages.summary import is_simulated, limits_by_quantity
 from reportgen.pages.tables import Table
@@ -81,6 +82,7 @@ class ReportPage:
     limits: Table | None
     heat_parts: Table | None
     heat_parts_words: tuple[str, ...]
+    power: PowerPage | None
     predictions: Predictions | None
     method_name: str
     method_words: str
@@ -187,6 +189,7 @@ def _page(
         limits=limits_table(result.limits, locale),
         heat_parts=heat_parts_table(result, locale),
         heat_parts_words=heat_parts_sentences(result, locale),
+        power=power_of(result, locale),
         predictions=predictions_of(
             forecast, (sheet.winding.low_turns, sheet.winding.high_turns), locale
         ),

@@ -18,8 +18,11 @@ from reportgen.model import (
     Stress,
     Thermal,
     ThermalFit,
+    WarmUp,
 )
 from reportgen.physics.permitted_power import duty_table, lowest_limit, permitted_of
+
+Fitted = tuple[ThermalFit, WarmUp]
 
 _NO_LIMIT = "no temperature limit is given, so no power follows from the log"
 _NO_HEAT = "no band has a heat that is known, so no power follows from the log"
@@ -27,12 +30,12 @@ _NO_HEAT = "no band has a heat that is known, so no power follows from the log"
 
 def fit_heat_runs(
     build: Build, chosen: MethodResult, units: Sequence[MethodResult]
-) -> tuple[tuple[ThermalFit, ...], tuple[Finding, ...]]:
+) -> tuple[tuple[Fitted, ...], tuple[Finding, ...]]:
     """Every log of a build with the heat that the sweeps of its unit give, and what is wrong.
 
     A unit that no method knows by itself counts as the mean.
     """
-    fits: list[ThermalFit] = []
+    fits: list[Fitted] = []
     findings: list[Finding] = []
     for run in build.heat_runs:
         fit, found = _fit(run, chosen, units)
@@ -43,7 +46,7 @@ def fit_heat_runs(
 
 def _fit(
     run: HeatRun, chosen: MethodResult, units: Sequence[MethodResult]
-) -> tuple[ThermalFit | None, tuple[Finding, ...]]:
+) -> tuple[Fitted | None, tuple[Finding, ...]]:
     from reportgen.physics.thermal import fit_log  # slow to import, and most builds have no log
 
     known = (one for one in units if one.curves.efficiency_ratio is not None)
@@ -80,7 +83,7 @@ def _not_known(run: HeatRun) -> Finding:
 
 
 def thermal_of(
-    fits: Sequence[ThermalFit],
+    fits: Sequence[Fitted],
     build: Build,
     bench: BenchSheet,
     bands: Sequence[MeasuredBand],
@@ -90,7 +93,7 @@ def thermal_of(
     """The log that warms most for its heat, and the power that follows from it; None: no log."""
     if not fits:
         return None
-    fit = max(fits, key=lambda one: one.resistance_k_per_w.value)
+    fit, warm_up = max(fits, key=lambda one: one[0].resistance_k_per_w.value)
     permitted = permitted_of(
         fit,
         bands,
@@ -101,5 +104,9 @@ def thermal_of(
     )
     reason = _NO_LIMIT if lowest_limit(build.sheet) is None else _NO_HEAT
     return Thermal(
-        fits=tuple(fits), fit=fit, permitted=permitted, reason=None if permitted else reason
+        fits=tuple(one for one, _ in fits),
+        fit=fit,
+        warm_up=warm_up,
+        permitted=permitted,
+        reason=None if permitted else reason,
     )

@@ -10,8 +10,16 @@ from collections.abc import Iterator
 import numpy as np
 
 from reportgen.errors import NotMeasurable
-from reportgen.model import Finding, HeatRun, Interval, Severity, ThermalFit, ThermalLog
-from reportgen.physics.warm_up import WarmUp, fit_warm_up
+from reportgen.model import (
+    Finding,
+    HeatRun,
+    Interval,
+    Severity,
+    ThermalFit,
+    ThermalLog,
+    WarmUp,
+)
+from reportgen.physics.warm_up import fit_warm_up
 
 _LONG_ENOUGH = 2.0  # time constants
 _GAP = 0.2  # time constants
@@ -69,7 +77,7 @@ def _log_ratio(greater: float | None, lesser: float | None) -> float:
 
 def fit_log(
     run: HeatRun, efficiency_ratio: Interval
-) -> tuple[ThermalFit | None, tuple[Finding, ...]]:
+) -> tuple[tuple[ThermalFit, WarmUp] | None, tuple[Finding, ...]]:
     """What a log says, None where it says nothing, and what is wrong with it.
 
     Parameters
@@ -101,7 +109,7 @@ def fit_log(
         resistance_k_per_w=resistance,
         span_s=log.span_s,
     )
-    return fit, faults
+    return (fit, warm_up), faults
 
 
 def _faults(log: ThermalLog, fit: WarmUp) -> Iterator[Finding]:
@@ -132,7 +140,7 @@ def _faults(log: ThermalLog, fit: WarmUp) -> Iterator[Finding]:
             log, Severity.NOTE, "log-warm-start", text,
             "start cold, and see that both thermometers then read the same",
         )  # fmt: skip
-    parts = [part.mean() for part in np.array_split(fit.residual_k, 2 * _PARTS)]
+    parts = [part.mean() for part in np.array_split(fit.core_c - fit.fitted_c, 2 * _PARTS)]
     off_k = float(np.max(np.abs(parts)))
     if off_k > max(_OFF_CURVE * rise_k, 1.0):
         text = f"the log is up to {off_k:.1f} K off the curve of one time constant"

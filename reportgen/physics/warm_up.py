@@ -20,7 +20,7 @@ from scipy.signal import lfilter
 from scipy.special import stdtrit
 
 from reportgen.errors import NotMeasurable
-from reportgen.model import Interval, RealArray, ThermalLog
+from reportgen.model import Interval, RealArray, ThermalLog, WarmUp
 
 FEWEST_ROWS = 20
 _MOST_ROWS = 1000  # longer logs are averaged in blocks
@@ -29,20 +29,6 @@ _SOFTNESS = 2.0  # standard deviations beyond which a row loses weight
 _TRIED = 25
 _LEAST_RISE_K = 2.0
 _WINDOW = 3  # autocorrelation times that are summed up
-
-
-@dataclass(frozen=True, kw_only=True, slots=True, eq=False)
-class WarmUp:
-    """A warm-up curve fitted to a log.
-
-    `rise_k` : final rise above the surroundings [K], `start_k` : rise at the first row [K].
-    `residual_k` : (N,) row minus curve, after averaging of long logs [K].
-    """
-
-    rise_k: Interval
-    start_k: float
-    time_constant_s: Interval
-    residual_k: RealArray
 
 
 def fit_warm_up(log: ThermalLog) -> WarmUp:
@@ -82,7 +68,10 @@ def fit_warm_up(log: ThermalLog) -> WarmUp:
         rise_k=_log_interval(found[0], half[0] / found[0]),
         start_k=float(found[1]),
         time_constant_s=_log_interval(np.exp(found[2]), half[2]),
-        residual_k=residual,
+        time_s=time_s,
+        core_c=core_c,
+        ambient_c=ambient_c,
+        fitted_c=core_c - residual,
     )
 
 
