@@ -61,15 +61,29 @@ def scheme_names() -> tuple[str, ...]:
 
 
 def style_variables(scheme: Scheme) -> str:
-    """The colours as custom properties of a style sheet."""
-    return "".join(f"--{name}:{getattr(scheme, name)};" for name in scheme_names())
+    """The colours and the tints as custom properties of a style sheet."""
+    colours = {name: getattr(scheme, name) for name in scheme_names()}
+    tints = {f"tint-{level}": tint(scheme, level) for level in range(len(TINTS))}
+    return "".join(f"--{name}:{colour};" for name, colour in (colours | tints).items())
+
+
+def tint(scheme: Scheme, level: int) -> str:
+    """The ground of a figure: so much of the heat colour on paper."""
+    share = TINTS[level] / 100
+    pairs = zip(_channels(scheme.heat), _channels(scheme.paper), strict=True)
+    return "#" + "".join(
+        f"{round(share * heat + (1 - share) * paper):02x}" for heat, paper in pairs
+    )
+
+
+def _channels(colour: str) -> tuple[int, ...]:
+    return tuple(bytes.fromhex(colour.removeprefix("#")))
 
 
 def tint_rules() -> str:
     """One class for each strength of tint: `tint-0` to `tint-4`."""
     return "".join(
-        f".tint-{level}{{background:color-mix(in srgb,var(--heat) {strength}%,var(--paper))}}"
-        for level, strength in enumerate(TINTS)
+        f".tint-{level}{{background:var(--tint-{level})}}" for level in range(len(TINTS))
     )
 
 
