@@ -1,25 +1,27 @@
 """One build, from its folder to its pages: read, measure, compare, draw, render, place.
 
-What is common to a run goes to every build as one `Task`; what a build leaves behind for the
-index is one `Made`.
+What is common to a run goes to every build as one `Task`; what a build leaves behind beside its
+pages is one `Made`.
 """
 
 from __future__ import annotations
 
 import traceback
-from collections.abc import Mapping
+from collections.abc import Callable, Mapping
 from dataclasses import dataclass, field, replace
 from pathlib import Path
+from typing import TypeVar
 
 from reportgen.build_files import build_files
 from reportgen.errors import InputRejected, NotMeasurable, OutputError
 from reportgen.intake.builds import BuildFolder, Runs, read_build
-from reportgen.model import BuildResult, Comparison, FailedBuild, Finding, Severity
+from reportgen.model import BuildResult, FailedBuild, Finding, InputFile, Severity
 from reportgen.output.manifest import BuildRecord, OutputFile, output_file
 from reportgen.output.placing import place_build
 from reportgen.physics.compare import compare
-from reportgen.physics.forecast import Forecast
 from reportgen.physics.measure import Measured, measure
+
+Done = TypeVar("Done")
 
 
 @dataclass(frozen=True, kw_only=True, slots=True, eq=False)
@@ -38,17 +40,31 @@ class Task:
 
 @dataclass(frozen=True, kw_only=True, slots=True, eq=False)
 class Made:
-    """A build that was computed, and what was written for it."""
+    """A build that was computed: what was wrong with it, read for it and written for it.
 
-    result: BuildResult
-    comparison: Comparison | None
+    No figures: those of a published build stand in its `results.json`.
+    """
+
+    key: str
+    folder: str
+    findings: tuple[Finding, ...]
+    inputs: tuple[InputFile, ...]
     outputs: tuple[OutputFile, ...] = ()
 
 
 def make_build(task: Task, folder: BuildFolder) -> Made | FailedBuild:
     """One build from its folder to its pages; any failure is that build's alone."""
+    return _guarded(folder, lambda: _made(task, folder))
+
+
+def measure_baseline(runs: Runs, folder: BuildFolder) -> BuildResult | FailedBuild:
+    """The build that the others are compared with."""
+    return _guarded(folder, lambda: _measured(Task(runs=runs), folder).result)
+
+
+def _guarded(folder: BuildFolder, step: Callable[[], Done]) -> Done | FailedBuild:
     try:
-        return _made(task, folder)
+        return step()
     except InputRejected as rejected:
         return FailedBuild(key=folder.key, folder=folder.folder, findings=rejected.findings)
     except OutputError:
@@ -71,30 +87,30 @@ def _made(task: Task, folder: BuildFolder) -> Made:
     baseline = task.baseline
     if baseline is not None and baseline.build.key == folder.key:
         if not written:
-            return Made(result=baseline, comparison=None)
+            return _made_of(baseline)
         baseline = None
     measured = _measured(task, folder)
-    comparison = None if baseline is None else compare(measured.result, baseline)
-    made = Made(result=measured.result, comparison=comparison)
-    return _placed(task, folder, made, baseline, measured.forecast()) if written else made
+    made = _made_of(measured.result)
+    return replace(made, outputs=_placed(task, measured, baseline)) if written else made
 
 
-def _placed(
-    task: Task,
-    folder: BuildFolder,
-    made: Made,
-    baseline: BuildResult | None,
-    forecast: Forecast | None,
-) -> Made:
-    """The same, everything that is published of it written."""
+def _made_of(result: BuildResult) -> Made:
+    build = result.build
+    return Made(key=build.key, folder=build.folder, findings=result.findings, inputs=build.inputs)
+
+
+def _placed(task: Task, measured: Measured, baseline: BuildResult | None) -> tuple[OutputFile, ...]:
+    """Everything that is published of a build, written."""
     assert task.out is not None
+    result, bench = measured.result, task.runs.bench
+    comparison = None if baseline is None else compare(result, baseline)
     try:
-        files = build_files(made.result, made.comparison, baseline, task.runs.bench, forecast)
+        files = build_files(result, comparison, baseline, bench, measured.forecast())
     except OutputError as error:
-        raise InputRejected((*made.result.findings, _not_drawn(error))) from error
-    place_build(task.out, folder.key, files, _names_of(task.earlier.get(folder.key)))
-    outputs = tuple(output_file(f"{folder.key}/{name}", data) for name, data in files.items())
-    return replace(made, outputs=outputs)
+        raise InputRejected((*result.findings, _not_drawn(error))) from error
+    key = result.build.key
+    place_build(task.out, key, files, _names_of(task.earlier.get(key)))
+    return tuple(output_file(f"{key}/{name}", data) for name, data in files.items())
 
 
 def _names_of(record: BuildRecord | None) -> set[str]:

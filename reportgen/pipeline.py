@@ -20,7 +20,7 @@ from reportgen import __version__
 from reportgen.errors import InputRejected, OutputError, UsageError
 from reportgen.intake.builds import BuildFolder, Runs, open_runs, read_build
 from reportgen.model import BuildResult, FailedBuild, Finding, InputFile, Severity
-from reportgen.one_build import Made, Task, make_build
+from reportgen.one_build import Made, Task, make_build, measure_baseline
 from reportgen.output.manifest import (
     MANIFEST_FILE,
     BuildRecord,
@@ -29,8 +29,9 @@ from reportgen.output.manifest import (
     output_file,
     read_earlier,
 )
-from reportgen.output.placing import open_output, place_file, remove_files
+from reportgen.output.placing import open_output, place_file, place_parts, remove_files
 from reportgen.physics.measure import Measured, measure
+from reportgen.published import RESULTS_FILE, PublishedBuild, published_build, read_document
 
 Announce = Callable[[str, int, int], None]
 
@@ -57,7 +58,7 @@ class Outcome:
     def worst(self) -> Severity | None:
         """Severity of the worst finding of the whole run."""
         found = [finding.severity for finding in self.findings]
-        found += [finding.severity for one in self.made for finding in one.result.findings]
+        found += [finding.severity for one in self.made for finding in one.findings]
         if self.failed or Severity.ERROR in found:
             return Severity.ERROR
         return Severity.WARNING if Severity.WARNING in found else next(iter(found), None)
@@ -83,8 +84,8 @@ def publish(request: Request, announce: Announce) -> Outcome:
             runs=runs, baseline=baseline, out=request.out, only=request.only, earlier=earlier
         )
         outcome = _make_all(task, request.jobs, announce)
-        _place_index(request.out, runs, baseline, outcome, earlier)
-    return outcome
+        key = None if baseline is None else baseline.build.key
+        return _place_index(request.out, runs, key, outcome, earlier)
 
 
 def inspect(path: Path, jobs: int, announce: Announce) -> Outcome:
@@ -144,9 +145,9 @@ def _with_baseline(runs: Runs) -> tuple[Runs, BuildResult | None]:
     folder = next((one for one in runs.folders if one.key == runs.bench.baseline), None)
     if folder is None:
         return runs, None
-    made = make_build(Task(runs=runs), folder)
-    if isinstance(made, Made):
-        return runs, made.result
+    baseline = measure_baseline(runs, folder)
+    if isinstance(baseline, BuildResult):
+        return runs, baseline
     finding = Finding(
         severity=Severity.ERROR,
         code="no-baseline",
@@ -213,54 +214,85 @@ def _workers(jobs: int) -> Iterator[Callable[..., Iterator[Made | FailedBuild]]]
 def _place_index(
     out: Path,
     runs: Runs,
-    baseline: BuildResult | None,
+    baseline_key: str | None,
     outcome: Outcome,
     earlier: dict[str, BuildRecord],
-) -> None:
-    """What concerns all builds, and the index last."""
-    from reportgen.output.csv_tables import results_csv, results_table
+) -> Outcome:
+    """What concerns all builds, and the index last; made from what is published, on the disk."""
     from reportgen.output.documents import json_bytes
     from reportgen.pages.index import render_index_html
 
-    rows = [(one.result, one.comparison) for one in outcome.made if _stands(out, one)]
     records = _records(outcome, earlier)
     kept = {output.file for record in records for output in record.outputs}
     remove_files(
         out, [o.file for record in earlier.values() for o in record.outputs if o.file not in kept]
     )
-    table = results_csv(results_table(rows))
+    keys = [one.key for one in outcome.made if _has_page(out, one.key)]
+    rows, unreadable, table = _place_long_table(out, keys)
+    outcome = replace(outcome, findings=(*outcome.findings, *unreadable))
     index = render_index_html(
         rows,
         bench=runs.bench,
         failed=outcome.failed,
-        standing=[one.key for one in outcome.failed if (out / one.key / "report.html").is_file()],
-        findings=runs.findings,
-        baseline_key=None if baseline is None else baseline.build.key,
+        standing=[one.key for one in outcome.failed if _has_page(out, one.key)],
+        findings=outcome.findings,
+        baseline_key=baseline_key,
         program_version=__version__,
     ).encode("utf-8")
     manifest = manifest_document(
         program_version=__version__,
-        baseline=None if baseline is None else baseline.build.key,
+        baseline=baseline_key,
         inputs=runs.inputs,
         builds=records,
-        outputs=[output_file("results.csv", table), output_file("index.html", index)],
+        outputs=[table, output_file("index.html", index)],
     )
-    place_file(out, "results.csv", table)
     place_file(out, MANIFEST_FILE, json_bytes(manifest))
     place_file(out, "index.html", index)
+    return outcome
 
 
-def _stands(out: Path, one: Made) -> bool:
+def _place_long_table(
+    out: Path, keys: Sequence[str]
+) -> tuple[list[PublishedBuild], list[Finding], OutputFile]:
+    """`results.csv`, written build by build; with what the index needs of each."""
+    from reportgen.output.csv_tables import LONG_HEAD, csv_bytes, long_csv_lines
+
+    rows: list[PublishedBuild] = []
+    unreadable: list[Finding] = []
+
+    def parts() -> Iterator[bytes]:
+        yield csv_bytes(LONG_HEAD)
+        for key in keys:
+            try:
+                document = read_document(out / key / RESULTS_FILE)
+                published, lines = published_build(document), long_csv_lines(document)
+            except OutputError as error:
+                unreadable.append(_unreadable(key, error))
+                continue
+            rows.append(published)
+            yield csv_bytes(lines)
+
+    sha256 = place_parts(out, "results.csv", parts())
+    return rows, unreadable, OutputFile(file="results.csv", sha256=sha256)
+
+
+def _unreadable(key: str, error: OutputError) -> Finding:
+    return Finding(
+        severity=Severity.WARNING,
+        code="unreadable-results",
+        message=f"{key}: {error}",
+        remedy="publish it again",
+    )
+
+
+def _has_page(out: Path, key: str) -> bool:
     """Whether a build has a page: of this run, or of an earlier one where it was passed over."""
-    return bool(one.outputs) or (out / one.result.build.key / "report.html").is_file()
+    return (out / key / "report.html").is_file()
 
 
 def _records(outcome: Outcome, earlier: dict[str, BuildRecord]) -> list[BuildRecord]:
     """Each build's record; where nothing was written this time, the earlier files still count."""
-    records = [
-        _record(one.result.build.key, one.result.build.folder, one.result.build.inputs, one.outputs)
-        for one in outcome.made
-    ]
+    records = [_record(one.key, one.folder, one.inputs, one.outputs) for one in outcome.made]
     records += [_record(one.key, one.folder, (), ()) for one in outcome.failed]
     return [
         replace(record, outputs=earlier[record.key].outputs)

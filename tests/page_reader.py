@@ -7,8 +7,10 @@ from html.parser import HTMLParser
 import result_samples as samples
 from sure_samples import sure
 
+from reportgen.output.documents import results_document, rounded
 from reportgen.pages.index import render_index_html
 from reportgen.pages.report import render_report_html
+from reportgen.published import published_build
 
 VOID = {"meta", "img", "br", "link", "input", "hr", "path", "use"}
 
@@ -68,10 +70,17 @@ def report(name: str, bench=samples.BENCH) -> str:
     )
 
 
+def published(result, comparison=None):
+    """A result as its `results.json` tells it."""
+    document = results_document(result, comparison, program_version="1.2.3")
+    return published_build(rounded(document))
+
+
 def index(**changes) -> str:
     results = [samples.full(), BASELINE, samples.partial(), samples.load_only(), samples.hostile()]
     rows = [
-        (one, None if one is BASELINE else samples.comparison(one, BASELINE)) for one in results
+        published(one, None if one is BASELINE else samples.comparison(one, BASELINE))
+        for one in results
     ]
     settings = {
         "bench": samples.BENCH,

@@ -13,8 +13,14 @@ import pandas as pd
 import pytest
 import result_samples as samples
 
-from reportgen.model import BuildResult
-from reportgen.output.csv_tables import bands_csv, curves_csv, results_csv, results_table
+from reportgen.model import BuildResult, Comparison
+from reportgen.output.csv_tables import (
+    LONG_HEAD,
+    bands_csv,
+    csv_bytes,
+    curves_csv,
+    long_csv_lines,
+)
 from reportgen.output.documents import json_bytes, results_document
 from reportgen.physics.forecast import Forecast
 from reportgen.physics.quantities import QUANTITIES
@@ -24,7 +30,7 @@ TOP = {
     "methods", "bandwidth", "fitted", "budget", "advice", "limits", "lot", "heat_split", "stress",
     "thermal", "forecast", "baseline", "findings", "inputs",
 }  # fmt: skip
-BAND = {"band", "from_hz", "to_hz", "status", "reason", "covered", "interpolated"}
+BAND = {"band", "from_hz", "to_hz", "status", "reason", "covered", "points", "interpolated"}
 FIGURE = {"mean", "worst", "centre", "worst_at_hz", "low95", "high95"}
 ALL = {
     "full": samples.full(),
@@ -143,6 +149,11 @@ def table(data: bytes) -> pd.DataFrame:
     return pd.read_csv(io.BytesIO(data))
 
 
+def long_csv(result: BuildResult, comparison: Comparison | None = None) -> bytes:
+    document = json.loads(json_bytes(results_document(result, comparison, program_version="1")))
+    return csv_bytes(LONG_HEAD + long_csv_lines(document))
+
+
 def test_one_row_for_each_band() -> None:
     found = table(bands_csv(samples.partial()))
     assert list(found["band"]) == [band.band.name for band in samples.partial().chosen.bands]
@@ -172,7 +183,7 @@ def test_a_total_reflection_leaves_a_blank() -> None:
 
 def test_long_table_holds_every_method_and_the_comparison() -> None:
     result = samples.full()
-    found = table(results_csv(results_table([(result, samples.comparison(result, BASELINE))])))
+    found = table(long_csv(result, samples.comparison(result, BASELINE)))
     assert set(found["method"]) == {"bisection+load", "bisection", "halving", "minus birch"}
     chosen = found[(found["chosen"] == 1) & (found["quantity"] == "heat_loss_db")]
     assert list(chosen["band"]) == [band.band.name for band in result.chosen.bands]
@@ -183,7 +194,7 @@ def test_long_table_holds_every_method_and_the_comparison() -> None:
 def test_text_is_no_formula(start: str) -> None:
     """OWASP, CSV injection: characters that make a spreadsheet run a cell."""
     result = samples.full(name=f"{start}cmd()|x")
-    data = results_csv(results_table([(result, None)])).decode()
+    data = long_csv(result).decode()
     names = {row["name"] for row in csv.DictReader(io.StringIO(data, newline=""))}
     assert names == {f"'{start}cmd()|x".replace("\r", " ")}
 
@@ -191,7 +202,7 @@ def test_text_is_no_formula(start: str) -> None:
 def test_negative_numbers_stay_numbers() -> None:
     one = samples.full()
     other = samples.full(1.5, "Birch", "birch")
-    found = table(results_csv(results_table([(one, samples.comparison(one, other))])))
+    found = table(long_csv(one, samples.comparison(one, other)))
     difference = found[found["method"] == "minus birch"]["mean"]
     assert difference.dtype == float
     assert difference.min() < 0

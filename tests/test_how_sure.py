@@ -5,7 +5,7 @@ from dataclasses import replace
 
 import pytest
 import result_samples as samples
-from page_reader import BASELINE, Page, index, report
+from page_reader import BASELINE, Page, index, published, report
 from rich.console import Console
 from sure_samples import BENCH, NAMES, sure
 
@@ -246,7 +246,7 @@ def test_a_cell_says_when_only_a_part_was_judged():
 def test_index_shows_intervals_verdicts_and_limits():
     one = sure()
     comparison = samples.comparison(one, BASELINE, judged=True)
-    text = Page(index(rows=[(one, comparison), (BASELINE, None)])).text
+    text = Page(index(rows=[published(one, comparison), published(BASELINE)])).text
     assert re.search(r"87\.\d\d ± 0\.\d\d 0\.\d\d\d ± 0\.0\d\d", text)
     assert "better on 10 fail PDF" in text
     assert "is the baseline no limits PDF" in text

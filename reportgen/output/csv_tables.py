@@ -2,13 +2,22 @@
 
 from __future__ import annotations
 
-from collections.abc import Iterable, Sequence
+import csv
+import io
+from collections.abc import Iterator
 
 import pandas as pd
 
-from reportgen.model import BandResult, BuildResult, Comparison, Curves, MeasuredBand
-from reportgen.output.documents import OF_A_FIGURE, band_status
+from reportgen.errors import OutputError
+from reportgen.model import BandResult, BuildResult, Curves, MeasuredBand
+from reportgen.output.documents import band_status
 from reportgen.physics.quantities import QUANTITIES
+from reportgen.published import OF_A_FIGURE, Document
+
+_OF_A_METHOD = ("method", "unit", "of_units", "reason", "bands")
+_OF_A_BAND = ("band", "from_hz", "to_hz", "status", "reason")
+LONG_COLUMNS = ("build", "name", "method", "unit", "chosen", *_OF_A_BAND, "quantity", *OF_A_FIGURE)
+LONG_HEAD = ",".join(LONG_COLUMNS) + "\n"
 
 _FORMULA_STARTS = ("=", "+", "-", "@", "\t", "\r")
 
@@ -51,62 +60,76 @@ def curves_csv(curves: Curves, power_w: float) -> bytes:
     return _csv(pd.DataFrame(columns).replace([float("inf"), float("-inf")], float("nan")))
 
 
-def results_table(rows: Iterable[tuple[BuildResult, Comparison | None]]) -> pd.DataFrame:
-    """Every build, method, band and quantity in long form."""
-    return pd.DataFrame([line for result, other in rows for line in _long_rows(result, other)])
+# --- all builds in one long table ----------------------------------------------------------------
 
 
-def results_csv(table: pd.DataFrame) -> bytes:
-    """The long table as CSV."""
-    return _csv(table)
+def long_csv_lines(document: Document) -> str:
+    """Every method, band and quantity of one build, from its results; without a head.
+
+    Raises
+    ------
+    OutputError
+        They are damaged.
+    """
+    text = io.StringIO()
+    writer = csv.DictWriter(text, LONG_COLUMNS, restval="", lineterminator="\n")
+    try:
+        for row in _long_rows(document):
+            writer.writerow({name: _csv_text(value) for name, value in row.items()})
+    except (KeyError, TypeError, ValueError, AttributeError) as error:
+        raise OutputError(f"the results of a build are damaged: {error!r}") from error
+    return text.getvalue()
 
 
-def _long_rows(result: BuildResult, comparison: Comparison | None) -> Iterable[dict[str, object]]:
-    differences = {} if comparison is None else {band.band: band for band in comparison.bands}
-    for method in result.methods:
-        chosen = method is result.chosen
-        yield from _method_rows(result, method.method.value, method.unit, method.bands, chosen)
-    if all(method is not result.chosen for method in result.methods):
-        one = result.chosen
-        yield from _method_rows(result, one.method.value, one.unit, one.bands, chosen=True)
-    for name, band in differences.items():
-        for key, value in (("heat_loss_db", band.heat_loss_db), ("heat_w", band.heat_w)):
-            yield {
-                "build": result.build.key,
-                "name": result.build.sheet.name,
-                "method": f"minus {comparison.key}" if comparison else "",
-                "unit": "",
-                "chosen": 0,
-                "band": name,
-                "quantity": key,
-                "mean": value,
-            }
+def _long_rows(document: Document) -> Iterator[dict[str, object]]:
+    chosen = {name: document[name] for name in _OF_A_METHOD}
+    named = {"build": document["build"]["key"], "name": document["build"]["name"]}
+    for method in document["methods"]:
+        yield from _method_rows(named, method, chosen=method == chosen)
+    if chosen not in document["methods"]:
+        yield from _method_rows(named, document, chosen=True)
+    if document["baseline"] is not None:
+        yield from _difference_rows(named, document["baseline"])
 
 
 def _method_rows(
-    result: BuildResult, method: str, unit: str | None, bands: Sequence[BandResult], chosen: bool
-) -> Iterable[dict[str, object]]:
-    for band in bands:
-        figures = band.figures if isinstance(band, MeasuredBand) else {}
-        named = {
-            "build": result.build.key,
-            "name": result.build.sheet.name,
-            "method": method,
-            "unit": unit or "",
-            "chosen": int(chosen),
-            **_band_columns(band),
-        }
+    named: dict[str, object], method: Document, *, chosen: bool
+) -> Iterator[dict[str, object]]:
+    of_method = {**named, "method": method["method"], "unit": method["unit"], "chosen": int(chosen)}
+    for band in method["bands"]:
+        of_band = of_method | {name: band[name] for name in _OF_A_BAND}
+        figures = {one.key: band[one.key] for one in QUANTITIES if band[one.key] is not None}
         for key, figure in figures.items():
-            values = {name: getattr(figure, name) for name in OF_A_FIGURE}
-            yield {**named, "quantity": key, **values}
+            yield of_band | {"quantity": key} | figure
         if not figures:
-            yield named
+            yield of_band
+
+
+def _difference_rows(named: dict[str, object], comparison: Document) -> Iterator[dict[str, object]]:
+    of_method = {**named, "method": f"minus {comparison['key']}", "chosen": 0}
+    for band in comparison["bands"]:
+        for key in ("heat_loss_db", "heat_w"):
+            mean = band[key]["difference"]
+            yield of_method | {"band": band["band"], "quantity": key, "mean": mean}
+
+
+def _csv_text(value: object) -> object:
+    if value is None:
+        return ""
+    return f"{value:.9g}" if isinstance(value, int | float) else _harmless(value)
+
+
+# --- what all have in common ---------------------------------------------------------------------
 
 
 def _csv(table: pd.DataFrame) -> bytes:
     """UTF-8 with plain line ends; text that a spreadsheet would run is put behind a quote."""
     safe = table.apply(lambda column: column.map(_harmless))
-    text: str = safe.to_csv(index=False, float_format="%.9g", lineterminator="\n")
+    return csv_bytes(safe.to_csv(index=False, float_format="%.9g", lineterminator="\n"))
+
+
+def csv_bytes(text: str) -> bytes:
+    """The text as it is written; what is no Unicode is spelt out."""
     return text.encode("utf-8", errors="backslashreplace")
 
 

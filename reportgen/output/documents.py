@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import json
 import math
+from collections.abc import Mapping
 from dataclasses import asdict
 from typing import Any
 
@@ -13,6 +14,7 @@ from reportgen.model import (
     BandComparison,
     BandResult,
     Bandwidth,
+    Build,
     BuildResult,
     Comparison,
     Figure,
@@ -25,19 +27,13 @@ from reportgen.model import (
 )
 from reportgen.physics.forecast import Forecast
 from reportgen.physics.judge import overall
+from reportgen.physics.over_bands import efficiency_covariance
 from reportgen.physics.quantities import QUANTITIES
-
-SCHEMA = 1
-"""Counts up only when a key changes or goes."""
+from reportgen.published import OF_A_FIGURE, SCHEMA, says_simulated
 
 SIGNIFICANT_DIGITS = 9
 
 Document = dict[str, Any]
-
-OF_A_FIGURE = (
-    "mean", "worst", "centre", "worst_at_hz", "low95", "high95", "worst_low95", "worst_high95"
-)  # fmt: skip
-"""Names of the numbers of a `Figure`, as they are published."""
 
 
 def results_document(
@@ -52,10 +48,11 @@ def results_document(
     return {
         "schema": SCHEMA,
         "program_version": program_version,
-        "build": {"key": build.key, "name": build.sheet.name, "folder": build.folder},
+        "build": _build(build),
         "load_ohm": result.chosen.load_ohm,
         "power_w": result.power_w,
         **_method(result.chosen),
+        "band_covariance": _covariance(result.loss_draws_db),
         "units": [_method(one) for one in result.units],
         "methods": [_method(one) for one in result.methods],
         "bandwidth": [_bandwidth(one) for one in result.bandwidths],
@@ -77,6 +74,23 @@ def results_document(
             {"file": one.file, "sha256": one.sha256, "points": one.points} for one in build.inputs
         ],
     }
+
+
+def _build(build: Build) -> Document:
+    return {
+        "key": build.key,
+        "name": build.sheet.name,
+        "folder": build.folder,
+        "summary": build.sheet.summary,
+        "simulated": says_simulated(build.sheet),
+    }
+
+
+def _covariance(loss_draws_db: Mapping[str, RealArray]) -> Document | None:
+    found = efficiency_covariance(loss_draws_db)
+    if found is None:
+        return None
+    return {"quantity": "efficiency_ratio", "bands": found[0], "matrix": found[1].tolist()}
 
 
 def _heat_split(split: HeatSplit) -> Document:
@@ -124,11 +138,13 @@ def _band(result: BandResult) -> Document:
         "status": band_status(result),
         "reason": result.reason,
         "covered": None,
+        "points": 0,
         "interpolated": False,
     }
     if not isinstance(result, MeasuredBand):
         return document | _figures({})
     document["covered"] = list(result.covered_hz)
+    document["points"] = result.points
     document["interpolated"] = result.interpolated
     return document | _figures(result.figures)
 
@@ -208,17 +224,18 @@ def json_bytes(document: Document) -> bytes:
     ValueError
         A number is not finite: a fault of this program.
     """
-    text = json.dumps(_rounded(document), indent=1, ensure_ascii=False, allow_nan=False)
+    text = json.dumps(rounded(document), indent=1, ensure_ascii=False, allow_nan=False)
     return (text + "\n").encode("utf-8", errors="backslashreplace")
 
 
-def _rounded(value: Any) -> Any:
+def rounded(value: Any) -> Any:
+    """The same data as they are written: numbers to nine significant digits."""
     if isinstance(value, float):
         return _rounded_number(value)
     if isinstance(value, dict):
-        return {key: _rounded(item) for key, item in value.items()}
+        return {key: rounded(item) for key, item in value.items()}
     if isinstance(value, list | tuple):
-        return [_rounded(item) for item in value]
+        return [rounded(item) for item in value]
     return value
 
 

@@ -3,9 +3,10 @@
 from __future__ import annotations
 
 import fcntl
+import hashlib
 import os
 import shutil
-from collections.abc import Collection, Iterator, Mapping
+from collections.abc import Callable, Collection, Iterable, Iterator, Mapping
 from contextlib import contextmanager
 from pathlib import Path
 
@@ -110,7 +111,7 @@ def place_build(
     with _translated(out):
         new.mkdir()
         for name, data in files.items():
-            _write(new / name, data)
+            _write(new / name, [data])
         if standing.exists():
             _copy_others(standing, new, {*files, *earlier})
             standing.rename(old)
@@ -132,14 +133,27 @@ def _copy_others(standing: Path, new: Path, ours: Collection[str]) -> None:
 
 def place_file(out: Path, name: str, data: bytes) -> None:
     """One file of the output folder itself, replaced in one move."""
+    place_parts(out, name, [data])
+
+
+def place_parts(out: Path, name: str, parts: Iterable[bytes]) -> str:
+    """The same for a file that is never held whole; returns its SHA-256."""
     new = out / f"{_NEW}{name}"
-    _write(new, data)
+    digest = hashlib.sha256()
+    _write(new, _hashed(parts, digest.update))
     new.replace(out / name)
+    return digest.hexdigest()
 
 
-def _write(path: Path, data: bytes) -> None:
+def _hashed(parts: Iterable[bytes], update: Callable[[bytes], None]) -> Iterator[bytes]:
+    for part in parts:
+        update(part)
+        yield part
+
+
+def _write(path: Path, parts: Iterable[bytes]) -> None:
     with path.open("wb") as file:
-        file.write(data)
+        file.writelines(parts)
         file.flush()
         os.fsync(file.fileno())
 

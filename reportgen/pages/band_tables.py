@@ -22,7 +22,7 @@ from reportgen.pages.intervals import (
     worst_with_interval,
 )
 from reportgen.pages.sentences import counted, listed
-from reportgen.pages.summary import figure_of, limits_by_quantity, means, measured_bands
+from reportgen.pages.summary import HasBands, figure_of, limits_by_quantity, means, measured_bands
 from reportgen.pages.tables import Cell, Column, Row, Table, figures, with_points_aligned
 from reportgen.physics.quantities import BY_KEY, QUANTITIES, Quantity
 
@@ -144,7 +144,7 @@ def missing_quantities(result: BuildResult) -> str:
     return f"Not measured: {listed(missing)}{reason}."
 
 
-def heat_loss_text(method: MethodResult, band: str, locale: str) -> str:
+def heat_loss_text(method: HasBands, band: str, locale: str) -> str:
     """Mean heat loss in one band of a method's result, or that it was not measured."""
     found = next((one for one in measured_bands(method) if one.band.name == band), None)
     figure = None if found is None else figure_of(found, "heat_loss_db")

@@ -5,7 +5,7 @@ from __future__ import annotations
 from collections.abc import Sequence
 from dataclasses import dataclass, replace
 
-from reportgen.model import BenchSheet, BuildResult, Comparison, FailedBuild, Finding, Verdict
+from reportgen.model import BenchSheet, Comparison, FailedBuild, Finding, Verdict
 from reportgen.pages import sentences
 from reportgen.pages.band_tables import heat_loss_text
 from reportgen.pages.display import DASH, NOT_MEASURED, aligned, with_unit
@@ -16,7 +16,6 @@ from reportgen.pages.look import TINTS
 from reportgen.pages.particulars import FindingText, finding_texts
 from reportgen.pages.summary import (
     interval_over_bands,
-    is_simulated,
     mean_over_bands,
     means,
     worst_of,
@@ -25,9 +24,9 @@ from reportgen.pages.summary import (
 from reportgen.pages.tables import Cell, Column, Row, Table, with_points_aligned
 from reportgen.pages.templates import render
 from reportgen.physics.quantities import BY_KEY
+from reportgen.published import PublishedBuild
 
 _FIGURES = ("efficiency", "heat_loss", "swr")
-Ranked = tuple[BuildResult, Comparison | None]
 
 
 @dataclass(frozen=True, kw_only=True, slots=True)
@@ -75,7 +74,7 @@ class IndexPage:
 
 
 def render_index_html(
-    rows: Sequence[Ranked],
+    rows: Sequence[PublishedBuild],
     *,
     bench: BenchSheet,
     failed: Sequence[FailedBuild] = (),
@@ -89,16 +88,16 @@ def render_index_html(
     `failed` could not be published; `standing` are the keys of those whose pages of an earlier run
     are still there; `findings` concern the whole runs folder.
     """
-    shared = shared_bands([result for result, _ in rows])
-    ranked = sorted(rows, key=lambda row: _rank_key(row[0], shared))
+    shared = shared_bands(rows)
+    ranked = sorted(rows, key=lambda build: _rank_key(build, shared))
     page = IndexPage(
         title=bench.title,
         publisher=bench.publisher,
         lead=_lead(ranked, failed, shared, bench.locale),
         ranking=_ranking_words(shared),
-        simulated=any(is_simulated(result) for result, _ in rows),
+        simulated=any(build.simulated for build in rows),
         lines=_lines(ranked, shared, baseline_key, bench.locale),
-        heat=_heat_table([result for result, _ in ranked], bench.locale),
+        heat=_heat_table(ranked, bench.locale),
         missing=tuple(_missing(one, standing) for one in failed),
         findings=finding_texts(findings),
         program_version=program_version,
@@ -109,27 +108,25 @@ def render_index_html(
 # --- ranking -------------------------------------------------------------------------------------
 
 
-def shared_bands(results: Sequence[BuildResult]) -> tuple[str, ...]:
+def shared_bands(builds: Sequence[PublishedBuild]) -> tuple[str, ...]:
     """Bands in which every build that has an efficiency at all has one: the common ground."""
     known = [
         names
-        for result in results
-        if (names := [one.band.name for one in means(result.chosen, "efficiency_ratio")])
+        for build in builds
+        if (names := [one.band.name for one in means(build, "efficiency_ratio")])
     ]
     return (
         tuple(name for name in known[0] if all(name in names for names in known)) if known else ()
     )
 
 
-def _efficiency(result: BuildResult, shared: Sequence[str]) -> float | None:
-    return mean_over_bands(
-        result.chosen, "efficiency_ratio", result.power_w, shared if shared else None
-    )
+def _efficiency(build: PublishedBuild, shared: Sequence[str]) -> float | None:
+    return mean_over_bands(build, "efficiency_ratio", build.power_w, shared or None)
 
 
-def _rank_key(result: BuildResult, shared: Sequence[str]) -> tuple[float, str]:
-    efficiency = _efficiency(result, shared)
-    return (-efficiency if efficiency is not None else 1.0, result.build.key)
+def _rank_key(build: PublishedBuild, shared: Sequence[str]) -> tuple[float, str]:
+    efficiency = _efficiency(build, shared)
+    return (-efficiency if efficiency is not None else 1.0, build.key)
 
 
 def _ranking_words(shared: Sequence[str]) -> str:
@@ -139,25 +136,28 @@ def _ranking_words(shared: Sequence[str]) -> str:
 
 
 def _lead(
-    ranked: Sequence[Ranked], failed: Sequence[FailedBuild], shared: Sequence[str], locale: str
+    ranked: Sequence[PublishedBuild],
+    failed: Sequence[FailedBuild],
+    shared: Sequence[str],
+    locale: str,
 ) -> str:
     published = f"{sentences.counted(len(ranked), 'build')} published"
     rejected = f", {len(failed)} not" if failed else ""
-    first = ranked[0][0] if ranked else None
+    first = ranked[0] if ranked else None
     efficiency = None if first is None else _efficiency(first, shared)
     if first is None or efficiency is None:
         return f"{published}{rejected}."
     text = _figure(first, "efficiency_ratio", efficiency, shared or None, locale)
     figure = with_unit(text, "%")
-    return f"{published}{rejected}; the most efficient is {first.build.sheet.name}, {figure}."
+    return f"{published}{rejected}; the most efficient is {first.name}, {figure}."
 
 
 def _lines(
-    ranked: Sequence[Ranked], shared: Sequence[str], baseline_key: str | None, locale: str
+    ranked: Sequence[PublishedBuild], shared: Sequence[str], baseline_key: str | None, locale: str
 ) -> tuple[Line, ...]:
     lines = [
-        _line(place, result, comparison, shared, baseline_key, locale)
-        for place, (result, comparison) in enumerate(ranked, start=1)
+        _line(place, build, shared, baseline_key, locale)
+        for place, build in enumerate(ranked, start=1)
     ]
     columns = [aligned([getattr(line, name) for line in lines], locale) for name in _FIGURES]
     return tuple(
@@ -168,45 +168,43 @@ def _lines(
 
 def _line(
     place: int,
-    result: BuildResult,
-    comparison: Comparison | None,
+    build: PublishedBuild,
     shared: Sequence[str],
     baseline_key: str | None,
     locale: str,
 ) -> Line:
-    key, sheet = result.build.key, result.build.sheet
-    names = shared if shared else None
+    names = shared or None
     efficiency, loss = (
-        mean_over_bands(result.chosen, quantity, result.power_w, names)
+        mean_over_bands(build, quantity, build.power_w, names)
         for quantity in ("efficiency_ratio", "heat_loss_db")
     )
-    every = worsts(result.chosen, "swr")
+    every = worsts(build, "swr")
     swr = worst_of([one for one in every if not shared or one.band.name in shared], "swr")
     return Line(
         rank=DASH if efficiency is None else str(place),
-        name=sheet.name,
-        report=f"{key}/report.html",
-        pdf=f"{key}/report.pdf",
-        summary=sheet.summary,
-        efficiency=_figure(result, "efficiency_ratio", efficiency, names, locale),
-        heat_loss=_figure(result, "heat_loss_db", loss, names, locale),
-        difference=_against(comparison, is_baseline=key == baseline_key),
-        limits=limits_short(result.limits),
+        name=build.name,
+        report=f"{build.key}/report.html",
+        pdf=f"{build.key}/report.pdf",
+        summary=build.summary,
+        efficiency=_figure(build, "efficiency_ratio", efficiency, names, locale),
+        heat_loss=_figure(build, "heat_loss_db", loss, names, locale),
+        difference=_against(build.comparison, is_baseline=build.key == baseline_key),
+        limits=limits_short(build.limits),
         swr=NOT_MEASURED if swr is None else plain_text("swr", swr, locale),
-        simulated=is_simulated(result),
-        baseline=key == baseline_key,
+        simulated=build.simulated,
+        baseline=build.key == baseline_key,
     )
 
 
 def _figure(
-    result: BuildResult,
+    build: PublishedBuild,
     key: str,
     value: float | None,
     names: Sequence[str] | None,
     locale: str,
 ) -> str:
     """A mean over bands and its interval."""
-    low, high = interval_over_bands(result, key, names)
+    low, high = interval_over_bands(build, build.covariance, key, build.power_w, names)
     return with_interval(BY_KEY[key], value, low, high, locale=locale)
 
 
@@ -230,11 +228,11 @@ def _against(comparison: Comparison | None, *, is_baseline: bool) -> str:
 # --- heat loss, builds by bands ------------------------------------------------------------------
 
 
-def _heat_table(results: Sequence[BuildResult], locale: str) -> Table | None:
-    losses = {result.build.key: _losses(result) for result in results}
+def _heat_table(builds: Sequence[PublishedBuild], locale: str) -> Table | None:
+    losses = {build.key: _losses(build) for build in builds}
     values = [value for found in losses.values() for value in found.values()]
     bands = sorted(
-        {band.band for result in results for band in result.chosen.bands},
+        {band.band for build in builds for band in build.bands},
         key=lambda band: (band.from_hz, band.to_hz, band.name),
     )
     if not values:
@@ -245,41 +243,41 @@ def _heat_table(results: Sequence[BuildResult], locale: str) -> Table | None:
         corner="Build",
         columns=tuple(Column(label=band.name.replace(" ", "\u00a0", 1)) for band in bands),
         groups=tuple(
-            (_heat_row(result, [band.name for band in bands], losses, edges, locale),)
-            for result in results
+            (_heat_row(build, [band.name for band in bands], losses, edges, locale),)
+            for build in builds
         ),
     )
     return with_points_aligned(table, locale)
 
 
 def _heat_row(
-    result: BuildResult,
+    build: PublishedBuild,
     bands: Sequence[str],
     losses: dict[str, dict[str, float]],
     edges: tuple[float, float],
     locale: str,
 ) -> Row:
-    name, link = result.build.sheet.name, f"{result.build.key}/report.html"
-    own = losses[result.build.key]
+    name, link = build.name, f"{build.key}/report.html"
+    own = losses[build.key]
     if not own:
-        reason = f"{NOT_MEASURED}: {result.chosen.reason or 'its report says why'}"
+        reason = f"{NOT_MEASURED}: {build.reason or 'its report says why'}"
         return Row(head=name, link=link, words=reason, words_columns=len(bands))
-    cells = tuple(_tinted(result, band, own, edges, locale) for band in bands)
+    cells = tuple(_tinted(build, band, own, edges, locale) for band in bands)
     return Row(head=name, link=link, cells=cells)
 
 
-def _losses(result: BuildResult) -> dict[str, float]:
-    return {one.band.name: one.value for one in means(result.chosen, "heat_loss_db")}
+def _losses(build: PublishedBuild) -> dict[str, float]:
+    return {one.band.name: one.value for one in means(build, "heat_loss_db")}
 
 
 def _tinted(
-    result: BuildResult,
+    build: PublishedBuild,
     band: str,
     losses: dict[str, float],
     edges: tuple[float, float],
     locale: str,
 ) -> Cell:
-    text = heat_loss_text(result.chosen, band, locale)
+    text = heat_loss_text(build, band, locale)
     if band not in losses:
         return Cell(text=text, look="soft gap")
     low, high = edges

@@ -20,6 +20,7 @@ from reportgen.pages.intervals import spoken_with_interval, with_interval
 from reportgen.pages.summary import (
     BandValue,
     best_of,
+    covariance_of,
     interval_over_bands,
     mean_over_bands,
     means,
@@ -86,7 +87,9 @@ def _mean_efficiency(result: BuildResult) -> BandValue | None:
     mean = mean_over_bands(result.chosen, "efficiency_ratio", result.power_w)
     if mean is None:
         return None
-    low, high = interval_over_bands(result, "efficiency_ratio")
+    low, high = interval_over_bands(
+        result.chosen, covariance_of(result), "efficiency_ratio", result.power_w
+    )
     first = means(result.chosen, "efficiency_ratio")[0]
     return BandValue(band=first.band, value=mean, low95=low, high95=high)
 

@@ -5,21 +5,23 @@ from __future__ import annotations
 from collections.abc import Iterable, Sequence
 from dataclasses import dataclass
 from math import isfinite, nan
+from typing import Protocol
 
 import numpy as np
 
 from reportgen.model import (
     Band,
+    BandResult,
     BenchSheet,
     BuildResult,
     Curves,
     Figure,
     MeasuredBand,
-    MethodResult,
 )
 from reportgen.physics.judge import limits_of_band
+from reportgen.physics.over_bands import efficiency_covariance, half_width_over_bands
 from reportgen.physics.quantities import BY_KEY, QUANTITIES, Better
-from reportgen.physics.uncertainty import interval
+from reportgen.published import BandCovariance, says_simulated
 
 
 @dataclass(frozen=True, kw_only=True, slots=True)
@@ -33,7 +35,16 @@ class BandValue:
     high95: float | None = None
 
 
-def measured_bands(method: MethodResult) -> tuple[MeasuredBand, ...]:
+class HasBands(Protocol):
+    """A method's result, or a published build."""
+
+    @property
+    def bands(self) -> tuple[BandResult, ...]:
+        """The bands, measured or not."""
+        ...
+
+
+def measured_bands(method: HasBands) -> tuple[MeasuredBand, ...]:
     """The bands that have figures."""
     return tuple(band for band in method.bands if isinstance(band, MeasuredBand))
 
@@ -49,7 +60,7 @@ def usable(value: float | None) -> bool:
     return value is not None and isfinite(value)
 
 
-def means(method: MethodResult, key: str) -> tuple[BandValue, ...]:
+def means(method: HasBands, key: str) -> tuple[BandValue, ...]:
     """Means over each band, in the order of the bands."""
     pairs = ((band, figure_of(band, key)) for band in measured_bands(method))
     return tuple(
@@ -59,7 +70,7 @@ def means(method: MethodResult, key: str) -> tuple[BandValue, ...]:
     )
 
 
-def worsts(method: MethodResult, key: str) -> tuple[BandValue, ...]:
+def worsts(method: HasBands, key: str) -> tuple[BandValue, ...]:
     """Worst values within each band, in the order of the bands; infinite ones are kept."""
     pairs = ((band, band.figures.get(key)) for band in measured_bands(method))
     return tuple(
@@ -88,13 +99,13 @@ def best_of(values: Sequence[BandValue], key: str) -> BandValue | None:
 
 
 def mean_over_bands(
-    method: MethodResult, key: str, power_w: float, names: Iterable[str] | None = None
+    method: HasBands, key: str, power_w: float, names: Iterable[str] | None = None
 ) -> float | None:
     """The quantity that follows from the mean efficiency of the bands, each counted once.
 
     Parameters
     ----------
-    method : MethodResult
+    method : HasBands
         Whose bands count.
     key : str
         `efficiency_ratio` or what follows from it: `heat_loss_db`, `heat_w`.
@@ -113,16 +124,34 @@ def mean_over_bands(
 
 
 def interval_over_bands(
-    result: BuildResult, key: str, names: Iterable[str] | None = None
+    bands: HasBands,
+    covariance: BandCovariance | None,
+    key: str,
+    power_w: float,
+    names: Iterable[str] | None = None,
 ) -> tuple[float | None, float | None]:
-    """Ends of the 95 % interval of what `mean_over_bands` gives for the result."""
-    draws = result.loss_draws_db
-    known = [one.band.name for one in means(result.chosen, "efficiency_ratio")]
-    wanted = known if names is None else list(names)
-    if not wanted or any(name not in draws for name in wanted):
+    """Ends of the 95 % interval of what `mean_over_bands` gives; `names` as there.
+
+    One rule for a build's own pages and for the index, which has no draws.
+    """
+    mean = mean_over_bands(bands, "efficiency_ratio", power_w, names)
+    wanted = [one.band.name for one in means(bands, "efficiency_ratio")] if names is None else names
+    if mean is None or covariance is None:
         return None, None
-    ratio = np.mean([10 ** (-draws[name] / 10) for name in wanted], axis=0)
-    return interval(np.asarray(BY_KEY[key].value(ratio, result.power_w)))
+    half = half_width_over_bands(covariance.bands, covariance.matrix, list(wanted))
+    if half is None:
+        return None, None
+    ends = np.asarray(BY_KEY[key].value(np.array([mean - half, mean + half]), power_w))
+    low, high = (float(end) if isfinite(end) else None for end in np.sort(ends))
+    return low, high
+
+
+def covariance_of(result: BuildResult) -> BandCovariance | None:
+    """How the band means of a result vary together."""
+    found = efficiency_covariance(result.loss_draws_db)
+    if found is None:
+        return None
+    return BandCovariance(bands=found[0], matrix=tuple(map(tuple, found[1].tolist())))
 
 
 def limits_by_quantity(bench: BenchSheet, band: str, power_w: float) -> dict[str, float]:
@@ -147,4 +176,4 @@ def limits_by_quantity(bench: BenchSheet, band: str, power_w: float) -> dict[str
 
 def is_simulated(result: BuildResult) -> bool:
     """True when the record says that the sweeps were simulated."""
-    return str(result.build.sheet.record.get("data", "")).strip().lower() == "simulated"
+    return says_simulated(result.build.sheet)
