@@ -14,6 +14,7 @@ from reportgen.pages.display import (
     entered,
     interval,
     megahertz_range,
+    no_more_than,
     number,
     one_sided,
     plus_minus,
@@ -179,3 +180,12 @@ def test_typed_numbers_keep_what_was_typed():
         "82",
         "21.25",
     ]
+
+
+@pytest.mark.parametrize(
+    ("value", "text"),
+    [(17.99, "17"), (179.9, "170"), (0.0199, "0.019"), (100.0, "100"), (9.999, "9.9"), (0, "0")],
+)
+def test_what_may_be_had_at_most_is_rounded_down(value, text):
+    assert no_more_than(value) == text
+    assert no_more_than(value, locale="de") == text.replace(".", ",")

@@ -158,6 +158,13 @@ def one_sided(low: float | None, high: float | None, decimals: int, *, locale: s
     return f"{word}\u00a0{_written(rounded, locale, False)}"
 
 
+def no_more_than(value: float, *, digits: int = 2, locale: str = "en") -> str:
+    """What may be had at most, rounded down to so many significant digits: 17.9 as 17."""
+    exact = _decimal(max(value, 0.0))
+    step = _step(digits - 1 - exact.adjusted()) if exact else Decimal(1)
+    return _written(exact.quantize(step, ROUND_FLOOR, _EXACT).normalize(_EXACT), locale, False)
+
+
 def _plain_number(
     exact: Decimal,
     decimals: int,
