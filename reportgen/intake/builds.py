@@ -13,12 +13,12 @@ from reportgen.intake.folders import (
     BUILD_FILE,
     BuildFolder,
     build_folders,
-    is_sweep,
     stray_files,
 )
 from reportgen.intake.paths import read_bytes
 from reportgen.intake.plausibility import check_dates, check_sweep
-from reportgen.intake.scan import STANDARD_LIMITS, scan_runs
+from reportgen.intake.remarks import shortened
+from reportgen.intake.scan import STANDARD_LIMITS, is_sweep, scan_runs
 from reportgen.intake.sidecar import completed_entry, parse_bench, parse_build
 from reportgen.intake.sidecar_shape import nearest
 from reportgen.intake.sidecar_text import MAX_BYTES, shown_value
@@ -92,7 +92,7 @@ def open_runs(root: Path) -> Runs:
         bench=bench,
         bands=_chosen_bands(bench),
         folders=folders,
-        findings=(*scan.findings, *stray_files(scan.files), *baseline),
+        findings=(*scan.findings, *shortened(stray_files(scan.files)), *baseline),
         inputs=inputs,
     )
 
@@ -210,7 +210,7 @@ class _Reading:
     def build(self) -> Build:
         """The build, when at least one sweep of a unit is left."""
         if all(each.entry.setup in _NOT_OF_A_UNIT for each in self.measurements):
-            raise InputRejected((*self.findings, _nothing_left(self.sheet)))
+            raise InputRejected((*shortened(self.findings), _nothing_left(self.sheet)))
         return Build(
             key=self.folder.key,
             folder=self.folder.folder,
@@ -218,7 +218,7 @@ class _Reading:
             measurements=tuple(self.measurements),
             heat_runs=tuple(self.heat_runs),
             inputs=tuple(self.inputs),
-            findings=tuple(self.findings),
+            findings=shortened(self.findings),
         )
 
 

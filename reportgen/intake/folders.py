@@ -6,7 +6,7 @@ from collections.abc import Iterable, Iterator
 from dataclasses import dataclass
 
 from reportgen.intake.paths import build_keys, shown
-from reportgen.intake.scan import SWEEP_SUFFIXES
+from reportgen.intake.scan import is_sweep as is_sweep  # others ask for it here
 from reportgen.intake.sidecar_shape import nearest
 from reportgen.model import Finding, Severity
 
@@ -52,9 +52,13 @@ def build_folders(files: Iterable[str], *, root_name: str) -> tuple[BuildFolder,
 def stray_files(files: Iterable[str]) -> Iterator[Finding]:
     """Findings about sweeps that belong to no build, and about a bench file out of place."""
     files = list(files)
-    ownerless = [file for folder, file in _owners(files) if folder is None]
-    for folder in sorted({parent(file) for file in ownerless if is_sweep(file)}):
-        yield _no_sidecar(folder, [name(file) for file in ownerless if parent(file) == folder])
+    ownerless: dict[str, list[str]] = {}
+    for folder, file in _owners(files):
+        if folder is None:
+            ownerless.setdefault(parent(file), []).append(name(file))
+    for folder, names in sorted(ownerless.items()):
+        if any(map(is_sweep, names)):
+            yield _no_sidecar(folder, names)
     for file in files:
         if name(file) == BENCH_FILE and file != BENCH_FILE:
             yield Finding(
@@ -90,17 +94,12 @@ def _parents(file: str) -> Iterator[str]:
         yield file
 
 
-def is_sweep(file: str) -> bool:
-    """Whether a file's name ends as those of sweeps do."""
-    return file.lower().endswith(SWEEP_SUFFIXES)
-
-
 def _no_sidecar(folder: str, names: list[str]) -> Finding:
     """The error about a folder with sweeps and no sidecar, in it or above."""
     count = sum(map(is_sweep, names))
     sweeps = "1 sweep file" if count == 1 else f"{count} sweep files"
     meant = nearest(BUILD_FILE, [each for each in names if not is_sweep(each)])
-    start = f"write {shown(folder)}/build.toml; the README shows the shortest one"
+    start = f"write {shown(folder)}/build.toml; `reportgen sidecar` writes a starter"
     return Finding(
         severity=Severity.ERROR,
         code="no-sidecar",

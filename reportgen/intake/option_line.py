@@ -14,7 +14,7 @@ from dataclasses import dataclass, field, replace
 
 from reportgen.intake.number_lines import read_number
 from reportgen.intake.remarks import Remarks, quoted
-from reportgen.intake.sweep_text import Line, SweepLines
+from reportgen.intake.sweep_text import LONGEST_LINE, Line, SweepLines
 
 EXAMPLE = "# MHz S MA R 50"
 HERTZ_PER_UNIT = {"Hz": 1.0, "kHz": 1e3, "MHz": 1e6, "GHz": 1e9}
@@ -90,7 +90,7 @@ def _parse(line: Line, remarks: Remarks, decimal: str) -> Option:
         elif kind:
             found[kind] = value
         elif _begins_reference(word) and seen_r:
-            _take_reference(word, words, line, Remarks(""), decimal)
+            _take_reference(word, words, line, _unheard(), decimal)
             _remark_twice("the reference", word, line, remarks)
         elif _begins_reference(word):
             seen_r = True
@@ -207,7 +207,7 @@ def _compare_with_first(first: Option, others: list[Line], remarks: Remarks, dec
     for line in others:
         if line.text in alike:
             continue
-        unheard = Remarks("")
+        unheard = _unheard()
         if _parse(line, unheard, decimal) != first or unheard.rejected:
             remarks.error(
                 "second-option-line",
@@ -218,6 +218,11 @@ def _compare_with_first(first: Option, others: list[Line], remarks: Remarks, dec
             )
             return
         alike.add(line.text)
+
+
+def _unheard() -> Remarks:
+    """Remarks that nobody gets to see; a line is too short for more."""
+    return Remarks("", most_errors=LONGEST_LINE)
 
 
 def ohms(values: tuple[float, ...]) -> str:

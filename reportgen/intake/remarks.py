@@ -3,7 +3,8 @@
 from __future__ import annotations
 
 import unicodedata
-from collections.abc import Sequence
+from collections import Counter
+from collections.abc import Iterable, Sequence
 from typing import NoReturn
 
 import numpy as np
@@ -11,6 +12,9 @@ from numpy.typing import NDArray
 
 from reportgen.errors import InputRejected
 from reportgen.model import Finding, Severity
+
+MOST_ERRORS = 100
+MOST_ALIKE = 100
 
 _QUOTE_LENGTH = 80
 _LISTED = 5
@@ -24,10 +28,13 @@ class Remarks:
     ----------
     file : str
         Name of the file as the findings give it.
+    most_errors : int, optional
+        The file is given up at the next one.
     """
 
-    def __init__(self, file: str) -> None:
+    def __init__(self, file: str, *, most_errors: int = MOST_ERRORS) -> None:
         self.file = file
+        self.most_errors = most_errors
         self._found: list[Finding] = []
 
     @property
@@ -49,7 +56,17 @@ class Remarks:
         self._add(Severity.WARNING, code, message, remedy, line)
 
     def error(self, code: str, message: str, remedy: str, line: int | None = None) -> None:
-        """Something that keeps the file from being used; reading may go on to find more."""
+        """Something that keeps the file from being used; reading may go on to find more.
+
+        Raises
+        ------
+        InputRejected
+            There were too many before.
+        """
+        if len(self._found) >= self.most_errors:
+            message = f"more than {self.most_errors} mistakes; the others are not told"
+            self._add(Severity.ERROR, "too-many-mistakes", message, "is this the right file?", line)
+            raise InputRejected(self.findings)
         self._add(Severity.ERROR, code, message, remedy, line)
 
     def reject(self, code: str, message: str, remedy: str, line: int | None = None) -> NoReturn:
@@ -87,6 +104,26 @@ class Remarks:
                 line=line,
             )
         )
+
+
+def shortened(findings: Iterable[Finding]) -> tuple[Finding, ...]:
+    """Findings without those of a kind that was told 100 times; how many they are is told."""
+    kept: list[Finding] = []
+    counts: Counter[tuple[Severity, str]] = Counter()
+    for finding in findings:
+        kind = (finding.severity, finding.code)
+        counts[kind] += 1
+        if counts[kind] <= MOST_ALIKE:
+            kept.append(finding)
+    return (
+        *kept,
+        *(_left_out(*kind, count) for kind, count in counts.items() if count > MOST_ALIKE),
+    )
+
+
+def _left_out(severity: Severity, code: str, count: int) -> Finding:
+    message = f"{count - MOST_ALIKE} more findings of the kind `{code}`; they are not listed"
+    return Finding(severity=severity, code=code, message=message, remedy="mend the others first")
 
 
 def quoted(text: str) -> str:

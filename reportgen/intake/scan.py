@@ -3,15 +3,18 @@
 from __future__ import annotations
 
 import os
+import re
 from collections.abc import Iterator
 from dataclasses import dataclass
+from heapq import nsmallest
 from pathlib import Path
 
 from reportgen.intake.paths import shown
+from reportgen.intake.remarks import shortened
 from reportgen.model import OUTPUT_MARKER, Finding, Severity
 
-SWEEP_SUFFIXES = (".s1p", ".s2p", ".ts", ".snp")
-_READ_SUFFIXES = (*SWEEP_SUFFIXES, ".toml", ".csv")
+_SWEEP = re.compile(r".*\.(s\d{1,3}p|snp|ts)", re.IGNORECASE | re.ASCII | re.DOTALL)
+_OTHERS_READ = (".toml", ".csv")
 
 
 @dataclass(frozen=True, kw_only=True, slots=True)
@@ -19,6 +22,7 @@ class ScanLimits:
     """How much of a folder is looked at; bytes count for files that this program reads."""
 
     depth: int = 12
+    folders: int = 10_000
     files: int = 10_000
     file_bytes: int = 64 * 2**20
     all_bytes: int = 2 * 2**30
@@ -54,8 +58,13 @@ def scan_runs(root: Path, limits: ScanLimits = STANDARD_LIMITS) -> Scan:
         folder = waiting.pop()
         inner = [f"{folder}{name}/" for name in walk.enter(root, folder)]
         waiting += reversed(inner)
-    files = tuple(sorted(walk.files))
-    return Scan(files=files, findings=(*walk.findings, *walk.left_out(len(waiting))))
+    walk.folders_left += len(waiting)
+    return Scan(files=tuple(sorted(walk.files)), findings=walk.findings())
+
+
+def is_sweep(file: str) -> bool:
+    """Whether a file's name ends as those of sweeps do, of however many ports."""
+    return _SWEEP.fullmatch(file) is not None
 
 
 class _Walk:
@@ -64,16 +73,17 @@ class _Walk:
     def __init__(self, limits: ScanLimits) -> None:
         self.limits = limits
         self.files: list[str] = []
-        self.findings: list[Finding] = []
+        self.noted: list[Finding] = []
         self.bytes = 0
+        self.folders = 0
+        self.folders_left = 0
         self.too_many = 0
         self.too_much = 0
 
     def enter(self, root: Path, folder: str) -> list[str]:
         """Note the files of one folder; the folders in it are returned, by name."""
         try:
-            with os.scandir(root / folder) as listing:
-                entries = sorted(listing, key=lambda entry: entry.name)
+            entries = self.entries(root / folder)
         except OSError as error:
             message = f"the folder cannot be read: {error.strerror}"
             self.note("unreadable", folder.rstrip("/"), message, "check its permissions")
@@ -84,11 +94,22 @@ class _Walk:
         for entry in entries:
             if entry.name.startswith(".") or not self.usable(entry, folder + entry.name):
                 continue
-            if entry.is_dir(follow_symlinks=False):
+            if not entry.is_dir(follow_symlinks=False):
+                self.take(entry, folder + entry.name)
+            elif self.folders < self.limits.folders:
+                self.folders += 1
                 inner.append(entry.name)
             else:
-                self.take(entry, folder + entry.name)
+                self.folders_left += 1
         return inner
+
+    def entries(self, folder: Path) -> list[os.DirEntry[str]]:
+        """What a folder holds, by name; of very many the first, the others counted."""
+        most = self.limits.files + self.limits.folders
+        with os.scandir(folder) as listing:
+            self.too_many += max(0, sum(1 for _ in listing) - most)
+        with os.scandir(folder) as listing:
+            return nsmallest(most, listing, key=lambda entry: entry.name)
 
     def usable(self, entry: os.DirEntry[str], path: str) -> bool:
         """Whether an entry is a folder or regular file of a readable name, not too deep."""
@@ -127,22 +148,28 @@ class _Walk:
     @staticmethod
     def size_to_read(entry: os.DirEntry[str]) -> int:
         """Size of a file that this program reads [bytes]; 0 for any other."""
-        if not entry.name.lower().endswith(_READ_SUFFIXES):
+        if not is_sweep(entry.name) and not entry.name.lower().endswith(_OTHERS_READ):
             return 0
         try:
             return entry.stat(follow_symlinks=False).st_size
         except OSError:  # gone since the folder was listed
             return 0
 
-    def left_out(self, folders: int) -> Iterator[Finding]:
-        """What the limits on number and size have kept out, counted."""
+    def findings(self) -> tuple[Finding, ...]:
+        """What was noted, and what the limits have kept out, counted."""
+        return (*shortened(self.noted), *self.left_out())
+
+    def left_out(self) -> Iterator[Finding]:
         remedy = "publish the folder in parts"
         if self.too_many:
             message = (
                 f"more than {self.limits.files} files: {self.too_many} files "
-                f"and {folders} whole folders left out"
+                f"and {self.folders_left} whole folders left out"
             )
             yield _finding("too-many-files", None, message, remedy)
+        elif self.folders_left:
+            message = f"more than {self.limits.folders} folders: {self.folders_left} left out"
+            yield _finding("too-many-folders", None, message, remedy)
         if self.too_much:
             most = f"more than {self.limits.all_bytes / 2**20:g} MB to read"
             message = f"{most}: {self.too_much} files left out"
@@ -157,7 +184,7 @@ class _Walk:
         severity: Severity = Severity.ERROR,
     ) -> None:
         """Add a finding about one file or folder."""
-        self.findings.append(_finding(code, shown(path) or ".", message, remedy, severity))
+        self.noted.append(_finding(code, shown(path) or ".", message, remedy, severity))
 
 
 def _finding(

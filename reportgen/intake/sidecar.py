@@ -8,15 +8,18 @@ from __future__ import annotations
 
 from collections.abc import Iterable, Iterator
 from dataclasses import replace
+from itertools import chain, islice
 from typing import Any, TypeVar
 
 from reportgen.errors import InputRejected
 from reportgen.intake.paths import file_name_problem
-from reportgen.intake.sidecar_shape import check_shape, nearest
+from reportgen.intake.remarks import MOST_ERRORS
+from reportgen.intake.sidecar_shape import check_shape, nearest, own_keys, right_shape
 from reportgen.intake.sidecar_text import (
     Path,
     Problem,
     Tree,
+    key_lines,
     key_path,
     line_of,
     parse_toml,
@@ -26,8 +29,10 @@ from reportgen.model import (
     BenchSheet,
     BuildSheet,
     Core,
+    Finding,
     OwnBand,
     Setup,
+    Severity,
     Sheet,
     SweepEntry,
     ThermalEntry,
@@ -38,6 +43,7 @@ SheetT = TypeVar("SheetT", bound=Sheet)
 Placed = list[tuple[Path, SheetT]]
 
 ALL_BANDS = "all"
+MOST_OWN_KEYS = 200
 LOADED_SETUPS = frozenset(
     {Setup.LOAD, Setup.SERIES_RESISTOR, Setup.LOAD_CHECK, Setup.RESISTOR_CHECK}
 )
@@ -54,7 +60,9 @@ def parse_bench(data: bytes, *, file: str) -> BenchSheet:
     """
     tree = parse_toml(data, file=file)
     sheet, problems = check_shape(BenchSheet, tree)
-    return _accepted(sheet, [*problems, *_bench_sense(tree)], data, file)
+    return _accepted(
+        sheet, chain(problems, _crowded(BenchSheet, tree), _bench_sense(tree)), data, file
+    )
 
 
 def parse_build(data: bytes, *, file: str, bench: BenchSheet) -> BuildSheet:
@@ -76,7 +84,8 @@ def parse_build(data: bytes, *, file: str, bench: BenchSheet) -> BuildSheet:
     """
     tree = parse_toml(data, file=file)
     sheet, problems = check_shape(BuildSheet, tree)
-    return _accepted(sheet, [*problems, *_build_sense(tree, bench)], data, file)
+    sense = _build_sense(tree, bench)
+    return _accepted(sheet, chain(problems, _crowded(BuildSheet, tree), sense), data, file)
 
 
 def completed_entry(entry: SweepEntry, sheet: BuildSheet, bench: BenchSheet) -> SweepEntry:
@@ -101,12 +110,35 @@ def _only(known: Iterable[str]) -> str | None:
     return names[0] if len(names) == 1 else None
 
 
-def _accepted(sheet: SheetT | None, problems: list[Problem], data: bytes, file: str) -> SheetT:
-    if sheet is None or problems:
-        text = data.decode("utf-8-sig")
-        found = [problem.finding(file, line_of(problem.path, text)) for problem in problems]
-        raise InputRejected(tuple(sorted(found, key=lambda finding: finding.line or 0)))
-    return sheet
+def _accepted(sheet: SheetT | None, problems: Iterator[Problem], data: bytes, file: str) -> SheetT:
+    told = list(islice(problems, MOST_ERRORS))
+    if sheet is not None and not told:
+        return sheet
+    places = key_lines(data.decode("utf-8-sig"))
+    found = [problem.finding(file, line_of(problem.path, places)) for problem in told]
+    found.sort(key=lambda finding: finding.line or 0)
+    if next(problems, None) is not None:
+        found.append(_too_many(file))
+    raise InputRejected(tuple(found))
+
+
+def _too_many(file: str) -> Finding:
+    message = f"more than {MOST_ERRORS} mistakes; the others are not told"
+    return Finding(
+        severity=Severity.ERROR,
+        code="too-many-mistakes",
+        message=message,
+        remedy="is this the right file?",
+        file=file,
+    )
+
+
+def _crowded(kind: type[Sheet], tree: Tree) -> Iterator[Problem]:
+    """Tables with keys of one's own that hold more of them than a page can show."""
+    for key in own_keys(kind):
+        if (count := len(_table(tree, key))) > MOST_OWN_KEYS:
+            message = f"found {count} keys, expected at most {MOST_OWN_KEYS}"
+            yield Problem((key,), "too-many-keys", message, "leave those that matter")
 
 
 # --- runs.toml -----------------------------------------------------------------------------------
@@ -174,7 +206,7 @@ def _build_sense(tree: Tree, bench: BenchSheet) -> Iterator[Problem]:
 
 
 def _core_sense(tree: Tree) -> Iterator[Problem]:
-    core, _ = check_shape(Core, _table(tree, "core"))
+    core = right_shape(Core, _table(tree, "core"))
     if core and not core.inner_mm < core.outer_mm:
         message = f"found {core.inner_mm:g}, expected less than outer_mm = {core.outer_mm:g}"
         remedy = "exchange the two diameters or measure again"
@@ -245,5 +277,5 @@ def _tables(tree: Tree, key: str) -> list[Tree]:
 
 def _right_entries(tree: Tree, key: str, kind: type[SheetT]) -> Placed[SheetT]:
     """Path and content of every entry of the right shape."""
-    checked = [check_shape(kind, entry)[0] for entry in _tables(tree, key)]
+    checked = [right_shape(kind, entry) for entry in _tables(tree, key)]
     return [((key, place), entry) for place, entry in enumerate(checked) if entry is not None]

@@ -8,17 +8,29 @@ from __future__ import annotations
 
 import difflib
 import json
-from collections.abc import Iterable, Mapping
+from collections.abc import Iterable, Iterator, Mapping
 from dataclasses import fields, is_dataclass
 from datetime import date, datetime, time
 from enum import StrEnum
 from functools import cache
+from itertools import islice
 from types import NoneType, UnionType
-from typing import Annotated, Any, Literal, TypeVar, Union, get_args, get_origin, get_type_hints
+from typing import (
+    Annotated,
+    Any,
+    Literal,
+    TypeVar,
+    Union,
+    cast,
+    get_args,
+    get_origin,
+    get_type_hints,
+)
 
 from annotated_types import Ge, Gt, Le, Len, Lt
 from pydantic import TypeAdapter, ValidationError
 
+from reportgen.intake.remarks import MOST_ERRORS
 from reportgen.intake.sidecar_text import Path, Problem, Tree, is_toml_integer, shown_value
 from reportgen.model import Sheet
 
@@ -41,14 +53,34 @@ _SANITY_BOUND = 1e6  # a cap this high is only worth mentioning to who exceeds i
 
 
 def check_shape(kind: type[SheetT], tree: Tree) -> tuple[SheetT | None, list[Problem]]:
-    """The sheet that a tree of TOML tables describes, or None and everything wrong with it."""
+    """The sheet that a tree of TOML tables describes, or None and what is wrong with it.
+
+    Of very many problems only the first are found, one more than are told of a file.
+    """
     hint: Any = kind
     try:
         return _adapter(hint).validate_json(_as_json(hint, tree)), []
     except ValidationError as error:
-        found = [_problem(kind, tree, detail["loc"], detail["type"]) for detail in error.errors()]
-    # a value that may be of several kinds is complained about once for each kind
-    return None, list({problem.path: problem for problem in found}.values())
+        return None, list(islice(_problems(kind, tree, error), MOST_ERRORS + 1))
+
+
+def right_shape(kind: type[SheetT], tree: Tree) -> SheetT | None:
+    """The sheet that a tree of TOML tables describes, if it is one."""
+    hint: Any = kind
+    try:
+        return cast("SheetT", _adapter(hint).validate_json(_as_json(hint, tree)))
+    except ValidationError:
+        return None
+
+
+def _problems(kind: Any, tree: Tree, error: ValidationError) -> Iterator[Problem]:
+    told: set[Path] = set()
+    for detail in error.errors(include_url=False, include_context=False, include_input=False):
+        problem = _problem(kind, tree, detail["loc"], detail["type"])
+        # a value that may be of several kinds is complained about once for each kind
+        if problem.path not in told:
+            told.add(problem.path)
+            yield problem
 
 
 @cache
@@ -61,6 +93,11 @@ def _hints(kind: Any) -> dict[str, Any]:
     """Keys of a table and the kinds of their values."""
     hints = get_type_hints(kind, include_extras=True)
     return {key.name: hints[key.name] for key in fields(kind)}
+
+
+def own_keys(kind: Any) -> list[str]:
+    """Keys of tables in which everybody may name keys as they like."""
+    return [key for key, hint in _hints(kind).items() if get_origin(_bare(hint)) is dict]
 
 
 # --- from TOML's types to those that strict validation of JSON takes -----------------------------
@@ -194,7 +231,7 @@ def _remedy(key: str, value: Any, hint: Any) -> str:
         return "write a text of that length" if isinstance(value, str) else "write it in quotes"
     if isinstance(value, str):
         return "write the bare number, without quotes and without a unit"
-    return "correct the value"
+    return "enter the value" if value == 0 else "correct the value"
 
 
 def _list_remedy(key: str, hint: Any) -> str:

@@ -174,15 +174,15 @@ def _syntax_error(error: Exception, text: str, file: str) -> InputRejected:
     return _rejected(file, "toml-syntax", f"not valid TOML ({place}): {complaint}", remedy, line)
 
 
-def line_of(path: Path, text: str) -> int | None:
-    """Line of the key at a path, or of the last heading on the way to it; None when unsure.
+def key_lines(text: str) -> dict[str, int]:
+    """Line of every heading and key, by its path; empty when unsure.
 
     Only headings and keys that begin a line are looked at; with a text of several lines in the
     file there could be lines that only look like them.
     """
-    if '"""' in text or "'''" in text:
-        return None
     places: dict[str, int] = {}
+    if '"""' in text or "'''" in text:
+        return places
     heading = ""
     seen: Counter[str] = Counter()
     for number, line in enumerate(text.split("\n"), start=1):
@@ -195,6 +195,11 @@ def line_of(path: Path, text: str) -> int | None:
         elif match := _KEY.match(line):
             name = _spelled(match[1])
             places.setdefault(f"{heading}.{name}" if heading else name, number)
+    return places
+
+
+def line_of(path: Path, places: dict[str, int]) -> int | None:
+    """Line of the key at a path, or of the last heading on the way to it."""
     ends = (key_path(path[:end]) for end in range(len(path), 0, -1))
     return next((places[end] for end in ends if end in places), None)
 
