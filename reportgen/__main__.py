@@ -83,6 +83,7 @@ def _parser() -> argparse.ArgumentParser:
     _add_inspect(commands)
     _add_table(commands)
     _add_forecast(commands)
+    _add_sidecar(commands)
     _add_schema(commands)
     return parser
 
@@ -140,6 +141,15 @@ def _add_forecast(commands: argparse._SubParsersAction[argparse.ArgumentParser])
     forecast = commands.add_parser("forecast", help=text, description=text)
     forecast.add_argument("build", metavar="BUILD", type=Path, help="a build folder")
     forecast.set_defaults(command=_forecast)
+
+
+def _add_sidecar(commands: argparse._SubParsersAction[argparse.ArgumentParser]) -> None:
+    text = "write a starter build.toml from the sweeps in a folder; nothing is ever overwritten"
+    sidecar = commands.add_parser("sidecar", help=text, description=text)
+    sidecar.add_argument("folder", metavar="FOLDER", type=Path, help="a folder with sweeps")
+    bench = "write a starter runs.toml instead; FOLDER is the one that holds the builds"
+    sidecar.add_argument("--bench", action="store_true", help=bench)
+    sidecar.set_defaults(command=_sidecar)
 
 
 def _add_schema(commands: argparse._SubParsersAction[argparse.ArgumentParser]) -> None:
@@ -216,6 +226,17 @@ def _forecast(options: argparse.Namespace) -> int:
             "units back to back, or one with its high side open and shorted"
         )
     print_forecast(_console(), forecast, runs.bench.locale)
+    return DONE
+
+
+def _sidecar(options: argparse.Namespace) -> int:
+    from reportgen.sidecars.write import words_of, write_bench_starter, write_build_starter
+
+    if options.bench:
+        print(f"{write_bench_starter(options.folder)} written; take the # away where it applies")
+        return DONE
+    for line in words_of(write_build_starter(options.folder)):
+        print(line)
     return DONE
 
 

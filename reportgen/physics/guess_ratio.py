@@ -14,6 +14,7 @@ from reportgen.physics.network import ANALYZER_OHM, impedance_of_reflection
 from reportgen.physics.pairs import inverted
 
 
+@np.errstate(divide="ignore", invalid="ignore")
 def ratio_of_load(loaded: Sweep, resistance_ohm: float, bare: Sweep | None = None) -> float:
     """Turns ratio of a unit with a known resistor on its high side [ratio].
 
@@ -35,6 +36,7 @@ def ratio_of_load(loaded: Sweep, resistance_ohm: float, bare: Sweep | None = Non
     return float(np.sqrt(resistance_ohm * _added_conductance_s(loaded, bare)))
 
 
+@np.errstate(divide="ignore", invalid="ignore")
 def ratio_of_series(sweep: Sweep, bare: Sweep | None = None) -> float:
     """Turns ratio of a unit with an unknown resistor in series to port 2 [ratio].
 
@@ -45,12 +47,14 @@ def ratio_of_series(sweep: Sweep, bare: Sweep | None = None) -> float:
     return ANALYZER_OHM * _added_conductance_s(sweep, bare) * _voltage_ratio(sweep)
 
 
+@np.errstate(divide="ignore", invalid="ignore")
 def resistance_of_series(sweep: Sweep, bare: Sweep | None = None) -> float:
     """The series resistor of such a sweep, without the port behind it [ohm]."""
     ratio = ratio_of_series(sweep, bare)
     return ratio**2 / _added_conductance_s(sweep, bare) - ANALYZER_OHM
 
 
+@np.errstate(divide="ignore", invalid="ignore")
 def resistance_of_check(sweep: Sweep) -> float:
     """A bare series resistor between the ports: S21 = 100/(100 + R) [ohm]."""
     s21 = sweep.s[middle_of(sweep.frequency_hz), 1, 0]

@@ -20,6 +20,7 @@ MIDDLE_HZ = (3e6, 12e6)
 _FEWEST_POINTS = 5
 _WIDE = 2.0  # from end to end at least so many times, or little can be told [ratio]
 _FROM_HZ = 4e6  # a sweep that begins above does not show a winding's inductive end [Hz]
+_LARGEST_RESISTOR_OHM = 20e3
 _SWING = 0.1  # imaginary part that a reflection has to reach to count as a swing
 
 
@@ -35,6 +36,7 @@ class Guess:
     others: tuple[Setup, ...] = ()
 
 
+@np.errstate(divide="ignore", invalid="ignore")  # a reflection of 1 is an impedance without bounds
 def guess_setup(sweep: Sweep) -> Guess:
     """The set-up that a sweep of one or two ports was most likely taken in."""
     middle = middle_of(sweep.frequency_hz)
@@ -99,12 +101,11 @@ def _antenna(swings: list[int]) -> Guess:
 
 
 def _bare_load(reflection: ComplexArray, wide: bool) -> Guess:
-    resistance_ohm = np.median(impedance_of_reflection(reflection).real)
-    reason = (
-        f"it looks like a bare resistor of some {_two_digits(resistance_ohm)} ohm, and the phase "
-        "hardly turns"
-    )
-    return Guess(setup=Setup.LOAD_CHECK, reason=reason, others=() if wide else (Setup.OPEN,))
+    resistance_ohm = float(np.median(impedance_of_reflection(reflection).real))
+    sure = wide and resistance_ohm < _LARGEST_RESISTOR_OHM
+    what = f"bare resistor of some {_two_digits(resistance_ohm)} ohm" if sure else "large resistor"
+    reason = f"it looks like a {what}, and the phase hardly turns"
+    return Guess(setup=Setup.LOAD_CHECK, reason=reason, others=() if sure else (Setup.OPEN,))
 
 
 def _short(frequency_hz: RealArray, reflection: ComplexArray) -> Guess:

@@ -67,8 +67,8 @@ SETUP_WORDS = {
     Setup.SPOT: "a table of through losses of a pair, read off a screen",
 }
 
-_RESIDUAL = "what is left of it [dB]; in place of what the grade assumes"
-_EITHER_WAY = "how far it may be off either way [dB]; in place of what the grade assumes"
+_RESIDUAL = "left over [dB]; by grade if left out"
+_EITHER_WAY = "either way [dB]; by grade if left out"
 
 KEYS: dict[type[Sheet], dict[str, Key]] = {
     BenchSheet: {
@@ -99,24 +99,23 @@ KEYS: dict[type[Sheet], dict[str, Key]] = {
     Calibration: {
         "grade": Key("what the calibration is taken to leave", "handheld"),
         "performed_on": Key("day of the calibration", date(2026, 10, 4)),
-        "directivity_db": Key(f"directivity: {_RESIDUAL}", 42),
-        "source_match_db": Key(f"source match: {_RESIDUAL}", 36),
-        "load_match_db": Key(f"load match: {_RESIDUAL}", 33),
-        "tracking_db": Key(f"tracking: {_EITHER_WAY}", 0.05),
-        "isolation_db": Key(f"isolation: {_RESIDUAL}", 70),
-        "noise_db": Key("noise below full scale [dB]; in place of what the grade assumes", 74),
-        "drift_db": Key("change from sweep to sweep, below full scale [dB]", 60),
-        "connection_db": Key(f"gain from sweep to sweep: {_EITHER_WAY}", 0.02),
+        "directivity_db": Key(f"directivity {_RESIDUAL}", 42),
+        "source_match_db": Key(f"source match {_RESIDUAL}", 36),
+        "load_match_db": Key(f"load match {_RESIDUAL}", 33),
+        "tracking_db": Key(f"tracking error {_EITHER_WAY}", 0.05),
+        "isolation_db": Key(f"isolation {_RESIDUAL}", 70),
+        "noise_db": Key("noise below full scale [dB]; by grade if left out", 74),
+        "drift_db": Key("drift below full scale [dB]; by grade if left out", 60),
+        "connection_db": Key(f"gain of a connection {_EITHER_WAY}", 0.02),
     },
     Load: {
         "resistance_ohm": Key("measured, not as printed on the part [ohm]", 2450),
         "tolerance_percent": Key("half-width of its tolerance [%]", 0.5),
         "stray_pf": Key(
-            "capacitance to ground at the high side beyond that present at the open [pF]; "
-            '"fit" lets the sweeps say',
+            'capacitance to ground beyond that at the open [pF]; "fit": by the sweeps',
             "fit",
         ),
-        "body_pf": Key("capacitance across its body, in series with the high side [pF]", 0.1),
+        "body_pf": Key("capacitance across its body, in series set-ups [pF]", 0.1),
     },
     BuildSheet: {
         "schema": Key("version of this file's layout"),
@@ -137,7 +136,7 @@ KEYS: dict[type[Sheet], dict[str, Key]] = {
     },
     Winding: {
         "low_turns": Key("turns of the low side, the 50-ohm side", 3),
-        "high_turns": Key("turns of the high side, all of them where the winding is tapped", 24),
+        "high_turns": Key("turns of the high side, those below a tap included", 24),
         "isolated": Key("true: separate windings; false: a tapped winding", False),
         "wire_mm": Key("diameter of the wire [mm]", 0.8),
         "temperature_limit_c": Key("highest temperature of the wire [C]", 120),
