@@ -14,7 +14,8 @@ from typing import Any, TypeVar
 from reportgen.errors import InputRejected
 from reportgen.intake.paths import file_name_problem
 from reportgen.intake.remarks import MOST_ERRORS
-from reportgen.intake.sidecar_shape import check_shape, nearest, own_keys, right_shape
+from reportgen.intake.sidecar_shape import check_shape, nearest, right_shape
+from reportgen.intake.sidecar_sizes import size_problems
 from reportgen.intake.sidecar_text import (
     Path,
     Problem,
@@ -36,6 +37,7 @@ from reportgen.model import (
     Sheet,
     SweepEntry,
     ThermalEntry,
+    Winding,
 )
 from reportgen.physics.allocations import known_bands
 
@@ -43,7 +45,7 @@ SheetT = TypeVar("SheetT", bound=Sheet)
 Placed = list[tuple[Path, SheetT]]
 
 ALL_BANDS = "all"
-MOST_OWN_KEYS = 200
+LARGEST_TURNS_RATIO = 1000.0
 LOADED_SETUPS = frozenset(
     {Setup.LOAD, Setup.SERIES_RESISTOR, Setup.LOAD_CHECK, Setup.RESISTOR_CHECK}
 )
@@ -60,9 +62,8 @@ def parse_bench(data: bytes, *, file: str) -> BenchSheet:
     """
     tree = parse_toml(data, file=file)
     sheet, problems = check_shape(BenchSheet, tree)
-    return _accepted(
-        sheet, chain(problems, _crowded(BenchSheet, tree), _bench_sense(tree)), data, file
-    )
+    sense = chain(size_problems(BenchSheet, tree), _bench_sense(tree))
+    return _accepted(sheet, chain(problems, sense), data, file)
 
 
 def parse_build(data: bytes, *, file: str, bench: BenchSheet) -> BuildSheet:
@@ -84,8 +85,8 @@ def parse_build(data: bytes, *, file: str, bench: BenchSheet) -> BuildSheet:
     """
     tree = parse_toml(data, file=file)
     sheet, problems = check_shape(BuildSheet, tree)
-    sense = _build_sense(tree, bench)
-    return _accepted(sheet, chain(problems, _crowded(BuildSheet, tree), sense), data, file)
+    sense = chain(size_problems(BuildSheet, tree), _build_sense(tree, bench))
+    return _accepted(sheet, chain(problems, sense), data, file)
 
 
 def completed_entry(entry: SweepEntry, sheet: BuildSheet, bench: BenchSheet) -> SweepEntry:
@@ -131,14 +132,6 @@ def _too_many(file: str) -> Finding:
         remedy="is this the right file?",
         file=file,
     )
-
-
-def _crowded(kind: type[Sheet], tree: Tree) -> Iterator[Problem]:
-    """Tables with keys of one's own that hold more of them than a page can show."""
-    for key in own_keys(kind):
-        if (count := len(_table(tree, key))) > MOST_OWN_KEYS:
-            message = f"found {count} keys, expected at most {MOST_OWN_KEYS}"
-            yield Problem((key,), "too-many-keys", message, "leave those that matter")
 
 
 # --- runs.toml -----------------------------------------------------------------------------------
@@ -191,6 +184,7 @@ def _unknown_name(what: str, name: object, known: Iterable[str], path: Path) -> 
 
 def _build_sense(tree: Tree, bench: BenchSheet) -> Iterator[Problem]:
     yield from _core_sense(tree)
+    yield from _winding_sense(tree)
     sweeps = _right_entries(tree, "sweep", SweepEntry)
     thermal = _right_entries(tree, "thermal", ThermalEntry)
     loads = [*bench.loads, *(name for name in _table(tree, "loads") if name not in bench.loads)]
@@ -211,6 +205,16 @@ def _core_sense(tree: Tree) -> Iterator[Problem]:
         message = f"found {core.inner_mm:g}, expected less than outer_mm = {core.outer_mm:g}"
         remedy = "exchange the two diameters or measure again"
         yield Problem(("core", "inner_mm"), "wrong-order", message, remedy)
+
+
+def _winding_sense(tree: Tree) -> Iterator[Problem]:
+    winding = right_shape(Winding, _table(tree, "winding"))
+    if winding and not 1 / LARGEST_TURNS_RATIO <= winding.turns_ratio <= LARGEST_TURNS_RATIO:
+        message = (
+            f"found {winding.high_turns:g} to {winding.low_turns:g}, "
+            f"expected a ratio of at most {LARGEST_TURNS_RATIO:g}"
+        )
+        yield Problem(("winding", "high_turns"), "turns-ratio", message, "count the turns again")
 
 
 def _file_sense(entries: list[tuple[Path, Any]]) -> Iterator[Problem]:

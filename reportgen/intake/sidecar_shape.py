@@ -49,6 +49,7 @@ _UNITS = {
     "percent": "per cent",
     "turns": "turns",
 }
+_MOST_COMPARED = 500
 _SANITY_BOUND = 1e6  # a cap this high is only worth mentioning to who exceeds it
 
 
@@ -192,8 +193,8 @@ def _unknown_key(path: Path, known: Mapping[str, Any], kind: Any) -> Problem:
 
 
 def nearest(name: str, known: Iterable[str]) -> str | None:
-    """The known name most like a misspelt one, if any is like it."""
-    by_case = {candidate.casefold(): candidate for candidate in known}
+    """The known name most like a misspelt one, if any is like it; of very many the first count."""
+    by_case = {candidate.casefold(): candidate for candidate in islice(known, _MOST_COMPARED)}
     close = difflib.get_close_matches(name.casefold()[:120], by_case, n=1)
     return by_case[close[0]] if close else None
 
