@@ -2,14 +2,22 @@
 
 from __future__ import annotations
 
-from collections.abc import Iterator
+from collections.abc import Iterator, Sequence
 from dataclasses import dataclass
 
 from reportgen.model import Interval
-from reportgen.pages.display import DASH, entered, number, with_unit
+from reportgen.pages.display import DASH, entered, number, quantity_number, with_unit
 from reportgen.pages.intervals import half_width, with_interval
 from reportgen.pages.sentences import counted
-from reportgen.pages.tables import Cell, Column, Row, Table, figures, with_points_aligned
+from reportgen.pages.tables import (
+    Cell,
+    Column,
+    Row,
+    Table,
+    band_column,
+    figures,
+    with_points_aligned,
+)
 from reportgen.pages.wording import ohms
 from reportgen.physics.antennas import AntennaBand, AntennaForecast
 from reportgen.physics.forecast import CapacitorForecast, Forecast, WindingForecast
@@ -33,7 +41,9 @@ class Predictions:
     """Everything that a page says of a forecast."""
 
     capacitor: str
+    bands: Table | None
     windings: Table
+    loads: Table
     antennas: tuple[Antenna, ...]
     assumes: tuple[str, ...]
 
@@ -46,7 +56,9 @@ def predictions_of(
         return None
     return Predictions(
         capacitor=_capacitor_sentences(forecast.capacitor, locale),
+        bands=_bands_table(forecast.capacitor, locale) if forecast.capacitor.better else None,
         windings=_winding_table(forecast, winding, locale),
+        loads=_loads_table(forecast.loads, locale),
         antennas=tuple(
             Antenna(file=one.file, table=_antenna_table(one, locale)) for one in forecast.antennas
         ),
@@ -78,6 +90,56 @@ def _worst_swr_sentence(found: CapacitorForecast, locale: str) -> str:
     before = number(swr.value, 2, u95=half_width(swr.low95, swr.high95), locale=locale)
     where = f"across the {found.side} side"
     return f"{change} {where} the worst SWR would be {then} instead of {before}."
+
+
+def _bands_table(found: CapacitorForecast, locale: str) -> Table:
+    """Worst SWR in each band now and with the best capacitor."""
+    rows = [
+        Row(
+            head=_farads(value_pf, locale) + words,
+            cells=figures([_value("swr", band.swr, locale) for band in outcome.bands]),
+        )
+        for value_pf, words, outcome in (
+            (found.present_pf, ", as it is", found.now),
+            (found.best_pf, "", found.then),
+        )
+    ]
+    table = Table(
+        caption="Worst SWR in each band with the capacitor that is there, and predicted.",
+        corner="Capacitor",
+        columns=tuple(band_column(band.band) for band in found.now.bands),
+        groups=(tuple(rows),),
+        long_heads=True,
+    )
+    return with_points_aligned(table, locale)
+
+
+def _loads_table(loads: Sequence[Outcome], locale: str) -> Table:
+    """Worst SWR and mean heat loss into loads about the nominal one."""
+    quantities = {"Worst SWR": "swr", "Mean heat loss, dB": "heat_loss_db"}
+    return Table(
+        caption=(
+            "The build as it is into other loads, predicted: worst SWR in any band and mean heat "
+            "loss over all."
+        ),
+        corner="Load",
+        columns=tuple(Column(label=ohms(round(one.load_ohm), locale)) for one in loads),
+        groups=(
+            tuple(
+                Row(
+                    head=head,
+                    cells=figures([_figure(key, getattr(one, key), locale) for one in loads]),
+                )
+                for head, key in quantities.items()
+            ),
+        ),
+        long_heads=True,
+    )
+
+
+def _value(key: str, found: Interval, locale: str) -> str:
+    u95 = half_width(found.low95, found.high95)
+    return quantity_number(BY_KEY[key], found.value, u95=u95, locale=locale)
 
 
 def _farads(value_pf: float, locale: str) -> str:

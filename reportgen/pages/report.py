@@ -45,7 +45,7 @@ from reportgen.pages.uncertainty import (
     budget_table,
 )
 from reportgen.pages.wording import METHOD_NAMES, METHOD_WORDS, fitted_sentence, ohms
-from reportgen.physics.forecast import Forecast
+from reportgen.physics.forecast import CapacitorForecast, Forecast
 
 
 @dataclass(frozen=True, kw_only=True, slots=True)
@@ -116,7 +116,7 @@ def render_report_html(
     forecast: Forecast | None = None,
 ) -> str:
     """The report as one page that needs neither a network nor a script."""
-    charts = _charts(result, baseline, bench)
+    charts = _charts(result, baseline, bench, forecast)
     pictures = {
         name: Picture(
             name=name,
@@ -147,7 +147,7 @@ def render_report_pdf(
     OutputError
         The page could not be set without a complaint.
     """
-    charts = _charts(result, baseline, bench)
+    charts = _charts(result, baseline, bench, forecast)
     nothing = Markup()
     pictures = {
         name: Picture(name=name, title=chart.title, alt=chart.alt, wide=nothing, narrow=nothing)
@@ -238,10 +238,14 @@ _Limits = tuple[tuple[str, float], ...]
 
 
 def _charts(
-    result: BuildResult, baseline: BuildResult | None, bench: BenchSheet
+    result: BuildResult,
+    baseline: BuildResult | None,
+    bench: BenchSheet,
+    forecast: Forecast | None,
 ) -> dict[str, Chart]:
     swr, efficiency = (_limits(result, bench, key) for key in ("swr", "efficiency_ratio"))
-    return _drawn(result, baseline, swr, efficiency, bench.locale)
+    capacitor = None if forecast is None else forecast.capacitor
+    return _drawn(result, baseline, swr, efficiency, capacitor, bench.locale)
 
 
 def _limits(result: BuildResult, bench: BenchSheet, key: str) -> _Limits:
@@ -258,6 +262,7 @@ def _drawn(
     baseline: BuildResult | None,
     swr_limits: _Limits,
     efficiency_limits: _Limits,
+    capacitor: CapacitorForecast | None,
     locale: str,
 ) -> dict[str, Chart]:
     return draw_charts(
@@ -266,5 +271,6 @@ def _drawn(
         [band.band for band in result.chosen.bands],
         swr_limits=dict(swr_limits),
         efficiency_limits=dict(efficiency_limits),
+        capacitor=capacitor,
         locale=locale,
     )

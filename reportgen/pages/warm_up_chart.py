@@ -23,7 +23,6 @@ from reportgen.pages.canvas import (
 from reportgen.pages.curve_charts import regular_ticks
 from reportgen.pages.display import entered, number, with_unit
 from reportgen.pages.frequency_axes import DASHES, set_value_axis, title_scales
-from reportgen.pages.intervals import scaled_with_interval
 from reportgen.pages.look import LIGHT
 
 _SIZES = (replace(WIDE, height=128), replace(NARROW, height=180))
@@ -99,7 +98,7 @@ def _add_rows(axes: Axes, thermal: Thermal, minutes: np.ndarray) -> None:
 def _words(thermal: Thermal, locale: str) -> tuple[str, str]:
     """Title and alternative text."""
     fit = thermal.fit
-    rise = with_unit(scaled_with_interval(fit.rise_k, 1, 0, locale), "K")
+    rise = with_unit(number(fit.rise_k.value, 0, locale=locale), "K")
     power = with_unit(entered(fit.power_w, locale=locale), "W")
     mhz = with_unit(entered(fit.frequency_hz / 1e6, locale=locale), "MHz")
     title = f"At {power} on {mhz} the core ends {rise} above its surroundings"
