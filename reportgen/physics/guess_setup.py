@@ -134,8 +134,9 @@ def _two_port(sweep: Sweep, middle: slice) -> Guess:
     reflected = float(np.median(np.abs(s11[middle])))
     through_db = decibel(np.median(np.abs(s21[middle])))
     kept = float(np.median(np.abs(s11[middle]) ** 2 + np.abs(s21[middle]) ** 2))
-    if np.quantile(np.abs(s11), 0.95) < 0.12 and through_db < 0.2:
-        return _thru(through_db)
+    wide = bool(sweep.frequency_hz[-1] > _WIDE * sweep.frequency_hz[0])
+    if np.quantile(np.abs(s11), 0.95) < 0.12 and through_db < 0.15:
+        return _thru(through_db, wide)
     if through_db > 6 and np.median(np.abs(s11[middle] + s21[middle] - 1)) < 0.1:
         return _bare_resistor(s21[middle])
     if reflected > 0.5 and kept > 0.93 and _is_lopsided(sweep, middle):
@@ -152,9 +153,10 @@ def _is_lopsided(sweep: Sweep, middle: slice) -> bool:
     return bool(near < 0 and (sweep.one_path or far > 0))
 
 
-def _thru(through_db: float) -> Guess:
+def _thru(through_db: float, wide: bool) -> Guess:
     reason = f"{abs(through_db):.2f} dB from port to port, and hardly anything is reflected"
-    return Guess(setup=Setup.THRU_CHECK, reason=reason)
+    others = () if wide else (Setup.BACK_TO_BACK,)
+    return Guess(setup=Setup.THRU_CHECK, reason=reason, others=others)
 
 
 def _bare_resistor(s21: ComplexArray) -> Guess:

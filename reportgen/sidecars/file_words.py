@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import re
 from dataclasses import dataclass
+from itertools import pairwise
 
 from reportgen.model import Setup
 
@@ -19,8 +20,8 @@ _WORDS: dict[int, dict[Setup, set[str]]] = {
         Setup.THRU_CHECK: {"thru", "through", "fixture"},
         Setup.BACK_TO_BACK: {"pair", "pairs", "b2b", "back", "backtoback"},
         Setup.DIRECT: {"direct", "straight"},
-        Setup.RESISTOR_CHECK: {"check", "checks", "bare"},
         Setup.SERIES_RESISTOR: {"series", "resistor"},
+        Setup.RESISTOR_CHECK: {"check", "checks", "bare", "resistor"},
     },
 }
 _PAIR = re.compile(r"([a-h])([a-h])")
@@ -30,17 +31,17 @@ _NUMBERED = {"unit", "no", "nr"}
 
 @dataclass(frozen=True, kw_only=True, slots=True)
 class FileWords:
-    """Set-up and units that a name speaks of; None and empty: it does not."""
+    """Set-ups that a name may speak of, the likeliest first, and units."""
 
-    setup: Setup | None
+    setups: tuple[Setup, ...]
     units: tuple[str, ...]
 
 
 def words_of_file(file: str, ports: int) -> FileWords:
     """What the name of a sweep of so many ports says, the folders above it included."""
     words = _split(file)
-    setups = (setup for setup, known in _WORDS[ports].items() if known & set(words))
-    return FileWords(setup=next(setups, None), units=_units(words))
+    setups = tuple(setup for setup, known in _WORDS[ports].items() if known & set(words))
+    return FileWords(setups=setups, units=_units(words))
 
 
 def _split(file: str) -> list[str]:
@@ -48,8 +49,7 @@ def _split(file: str) -> list[str]:
     stem = file.rpartition(".")[0].casefold()
     words = [word for word in re.split(r"[^a-z0-9]+", stem) if word]
     return [
-        f"{word}{after}" if word in _NUMBERED else word
-        for word, after in zip(words, [*words[1:], ""], strict=True)
+        f"{word}{after}" if word in _NUMBERED else word for word, after in pairwise([*words, ""])
     ]
 
 

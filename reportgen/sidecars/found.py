@@ -106,18 +106,18 @@ def _found_sweep(folder: Path, file: str) -> FoundSweep:
     data = read_bytes(folder, file, file=file, at_most=STANDARD_LIMITS.file_bytes)
     sweep, _ = parse_touchstone(data, file=file)
     words = words_of_file(file, sweep.ports)
-    guess, by_name = _settled(guess_setup(sweep), words.setup)
+    guess, by_name = _settled(guess_setup(sweep), words.setups)
     return FoundSweep(file=file, sweep=sweep, guess=guess, by_name=by_name, units=words.units)
 
 
-def _settled(guess: Guess, named: Setup | None) -> tuple[Guess, bool]:
+def _settled(guess: Guess, named: tuple[Setup, ...]) -> tuple[Guess, bool]:
     """The guess of the data with what the name says; the name decides where the data do not."""
-    if named is None or named is guess.setup:
-        return guess, named is not None
+    if not named or guess.setup in named:
+        return guess, bool(named)
     if not guess.others:
-        return replace(guess, others=(named,)), False
-    rest = (guess.setup, *(other for other in guess.others if other is not named))
-    return Guess(setup=named, reason=guess.reason, others=rest), True
+        return replace(guess, others=named[:1]), False
+    rest = (guess.setup, *(other for other in guess.others if other is not named[0]))
+    return Guess(setup=named[0], reason=guess.reason, others=rest), True
 
 
 def _is_measured(folder: Path, file: str) -> bool:

@@ -65,7 +65,9 @@ def _ratio(ratio: float) -> str:
 
 
 def _caveat(bare: Sweep | None) -> str:
-    return "" if bare is not None else ", or 10 % less: the core's loss is in it"
+    if bare is not None:
+        return "; give or take 10 %"
+    return "; or up to 20 % less, since the core's loss is in it"
 
 
 def _ohms(resistance_ohm: float) -> str:
