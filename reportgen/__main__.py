@@ -23,6 +23,8 @@ from reportgen.errors import (
 if TYPE_CHECKING:
     from rich.console import Console
 
+    from reportgen.output.fingerprints import Seen
+    from reportgen.output.manifest import Manifest
     from reportgen.pipeline import Outcome
 
 DONE, REJECTED, WRONG_CALL = 0, 1, 2
@@ -106,7 +108,17 @@ def _add_publish(commands: argparse._SubParsersAction[argparse.ArgumentParser]) 
         default=[],
         help="make the pages of this build only; may be repeated",
     )
+    publish.add_argument(
+        "--force", action="store_true", help="make every build again, changed or not"
+    )
     _add_jobs(publish)
+    publish.add_argument(
+        "--patience",
+        metavar="SECONDS",
+        type=_seconds,
+        default=120.0,
+        help="most time that one build may take (default: %(default)g)",
+    )
     publish.add_argument("--strict", action="store_true", help="warnings count as errors")
     publish.set_defaults(command=_publish)
 
@@ -169,10 +181,50 @@ def _jobs(text: str) -> int:
     return jobs
 
 
+def _seconds(text: str) -> float:
+    try:
+        seconds = float(text)
+    except ValueError:
+        seconds = 0.0
+    if not 0 < seconds < float("inf"):
+        raise argparse.ArgumentTypeError(f"found {text[:80]!r}, expected seconds above 0")
+    return seconds
+
+
 # --- commands ----------------------------------------------------------------------------------
 
 
 def _publish(options: argparse.Namespace) -> int:
+    from reportgen.output.unchanged import find_unchanged, look_at
+
+    seen = look_at(options.runs)
+    if seen is not None and not options.force:
+        unchanged = find_unchanged(
+            seen, options.runs, options.out, baseline=options.baseline, only=options.only
+        )
+        if unchanged is not None:
+            return _tell_unchanged(unchanged, options)
+    return _publish_what_changed(options, seen)
+
+
+def _tell_unchanged(manifest: Manifest, options: argparse.Namespace) -> int:
+    """The same as when it was made, without anything slow."""
+    from reportgen.pages.plain_findings import counts_line, finding_lines
+
+    records = manifest.builds.values()
+    lines = [*finding_lines("runs folder", manifest.findings)]
+    for record in records:
+        lines += finding_lines(f"{record.key}: not published", record.failure)
+    lines += filter(None, [counts_line(manifest.counts())])
+    print("".join(f"{line}\n" for line in lines), end="", file=sys.stderr)
+    published = sum(record.published for record in records)
+    _print_count(published, len(records), published, options.out)
+    counted = {"error", "warning"} if options.strict else {"error"}
+    return REJECTED if manifest.severities() & counted else DONE
+
+
+def _publish_what_changed(options: argparse.Namespace, seen: Seen | None) -> int:
+    from reportgen.pages.plain_findings import counts_line
     from reportgen.pipeline import Request, publish
 
     request = Request(
@@ -181,15 +233,25 @@ def _publish(options: argparse.Namespace) -> int:
         baseline=options.baseline,
         only=tuple(options.only),
         jobs=options.jobs,
+        patience_s=options.patience,
+        force=options.force,
+        seen=seen,
     )
     console = _console(stderr=True)
     with _progress(console) as announce:
         outcome = publish(request, announce)
     _print_outcome(console, outcome)
-    written = sum(bool(one.outputs) for one in outcome.made)
-    count = f"{written} of {len(outcome.made) + len(outcome.failed)} builds"
-    print(f"{count} published; open {options.out / 'index.html'}")
+    if outcome.unchanged:
+        console.print(counts_line(outcome.unchanged), soft_wrap=True)
+    unchanged = outcome.published - len(outcome.made)
+    _print_count(outcome.published, outcome.builds, unchanged, options.out)
     return _status(outcome, strict=options.strict)
+
+
+def _print_count(published: int, builds: int, unchanged: int, out: Path) -> None:
+    of_them = "all" if unchanged == published else f"{unchanged} of them"
+    words = f", {of_them} unchanged" if unchanged else ""
+    print(f"{published} of {builds} builds published{words}; open {out / 'index.html'}")
 
 
 def _inspect(options: argparse.Namespace) -> int:

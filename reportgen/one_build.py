@@ -1,77 +1,102 @@
-"""One build, from its folder to its pages: read, measure, compare, draw, render, place.
+"""One build, from its folder to its pages: read, measure, compare, draw, render.
 
-What is common to a run goes to every build as one `Task`; what a build leaves behind beside its
-pages is one `Made`.
+What is common to a run is a `Task`, given once to each process that makes builds; each build is a
+`Job`, and what comes of it, files included, is a `Made`. Nothing is written here.
 """
 
 from __future__ import annotations
 
 import traceback
-from collections.abc import Callable, Mapping
+from collections.abc import Mapping
 from dataclasses import dataclass, field, replace
+from functools import lru_cache
 from pathlib import Path
-from typing import TypeVar
 
 from reportgen.build_files import build_files
 from reportgen.errors import InputRejected, NotMeasurable, OutputError
 from reportgen.intake.builds import BuildFolder, Runs, read_build
 from reportgen.model import BuildResult, FailedBuild, Finding, InputFile, Severity
-from reportgen.output.manifest import BuildRecord, OutputFile, output_file
-from reportgen.output.placing import place_build
+from reportgen.output.baseline import baseline_bytes, read_baseline
 from reportgen.physics.compare import compare
 from reportgen.physics.measure import Measured, measure
 
-Done = TypeVar("Done")
+RETRIED = frozenset({"fault", "not-drawn", "worker-ended"})
+"""Codes of what fails a build without being the fault of its inputs."""
 
 
 @dataclass(frozen=True, kw_only=True, slots=True, eq=False)
 class Task:
-    """What every build of a run needs; `out` None: compute, write nothing.
-
-    `earlier` names what an earlier run wrote, by key.
-    """
+    """What every build of a run needs; `baseline_file` holds the baseline, once it is known."""
 
     runs: Runs
-    baseline: BuildResult | None = None
-    out: Path | None = None
-    only: tuple[str, ...] = ()
-    earlier: Mapping[str, BuildRecord] = field(default_factory=dict)
+    baseline_file: Path | None = None
+
+
+@dataclass(frozen=True, kw_only=True, slots=True)
+class Job:
+    """One build to be made.
+
+    `fingerprint` : of all that decides what is published of it.
+    `pages` : false where nothing is to be published of it.
+    `baseline_sha256` : of the baseline that it is compared with; None: with none.
+    `is_baseline` : it is the one that the others are compared with.
+    """
+
+    folder: BuildFolder
+    fingerprint: str = ""
+    pages: bool = False
+    baseline_sha256: str | None = None
+    is_baseline: bool = False
 
 
 @dataclass(frozen=True, kw_only=True, slots=True, eq=False)
 class Made:
-    """A build that was computed: what was wrong with it, read for it and written for it.
+    """A build that was computed: what was wrong with it, read for it, and to be published of it.
 
-    No figures: those of a published build stand in its `results.json`.
+    No figures but in the files; `baseline` is the build as others need it to compare with.
     """
 
     key: str
     folder: str
     findings: tuple[Finding, ...]
     inputs: tuple[InputFile, ...]
-    outputs: tuple[OutputFile, ...] = ()
+    files: Mapping[str, bytes] = field(default_factory=dict)
+    baseline: bytes | None = None
 
 
-def make_build(task: Task, folder: BuildFolder) -> Made | FailedBuild:
+_task: Task | None = None
+
+
+def start(task: Task) -> None:
+    """Take note of what is common to all builds that this process will make."""
+    global _task
+    _task = task
+
+
+def make_build(job: Job) -> Made | FailedBuild:
     """One build from its folder to its pages; any failure is that build's alone."""
-    return _guarded(folder, lambda: _made(task, folder))
-
-
-def measure_baseline(runs: Runs, folder: BuildFolder) -> BuildResult | FailedBuild:
-    """The build that the others are compared with."""
-    return _guarded(folder, lambda: _measured(Task(runs=runs), folder).result)
-
-
-def _guarded(folder: BuildFolder, step: Callable[[], Done]) -> Done | FailedBuild:
+    folder = job.folder
+    assert _task is not None
     try:
-        return step()
+        return _made(_task, job)
     except InputRejected as rejected:
         return FailedBuild(key=folder.key, folder=folder.folder, findings=rejected.findings)
-    except OutputError:
-        raise
     except Exception as error:
         fault = _fault(error)
         return FailedBuild(key=folder.key, folder=folder.folder, findings=(fault,))
+
+
+def _made(task: Task, job: Job) -> Made:
+    measured = _measured(task, job.folder)
+    result = measured.result
+    made = Made(
+        key=job.folder.key,
+        folder=job.folder.folder,
+        findings=result.findings,
+        inputs=result.build.inputs,
+        baseline=baseline_bytes(result, job.fingerprint) if job.is_baseline else None,
+    )
+    return replace(made, files=_files(task, job, measured)) if job.pages else made
 
 
 def _measured(task: Task, folder: BuildFolder) -> Measured:
@@ -82,40 +107,36 @@ def _measured(task: Task, folder: BuildFolder) -> Measured:
         raise InputRejected((*build.findings, _not_measurable(error))) from error
 
 
-def _made(task: Task, folder: BuildFolder) -> Made:
-    written = task.out is not None and (not task.only or folder.key in task.only)
-    baseline = task.baseline
-    if baseline is not None and baseline.build.key == folder.key:
-        if not written:
-            return _made_of(baseline)
-        baseline = None
-    measured = _measured(task, folder)
-    made = _made_of(measured.result)
-    return replace(made, outputs=_placed(task, measured, baseline)) if written else made
-
-
-def _made_of(result: BuildResult) -> Made:
-    build = result.build
-    return Made(key=build.key, folder=build.folder, findings=result.findings, inputs=build.inputs)
-
-
-def _placed(task: Task, measured: Measured, baseline: BuildResult | None) -> tuple[OutputFile, ...]:
-    """Everything that is published of a build, written."""
-    assert task.out is not None
-    result, bench = measured.result, task.runs.bench
+def _files(task: Task, job: Job, measured: Measured) -> dict[str, bytes]:
+    """Everything that is published of a build."""
+    result, baseline = measured.result, None
+    if job.baseline_sha256 is not None and task.baseline_file is not None:
+        baseline = _baseline(task.baseline_file, job.baseline_sha256)
     comparison = None if baseline is None else compare(result, baseline)
     try:
-        files = build_files(result, comparison, baseline, bench, measured.forecast())
+        return build_files(result, comparison, baseline, task.runs.bench, measured.forecast())
     except OutputError as error:
         raise InputRejected((*result.findings, _not_drawn(error))) from error
-    key = result.build.key
-    place_build(task.out, key, files, _names_of(task.earlier.get(key)))
-    return tuple(output_file(f"{key}/{name}", data) for name, data in files.items())
 
 
-def _names_of(record: BuildRecord | None) -> set[str]:
-    """File names that an earlier run wrote for a build."""
-    return set() if record is None else {one.file.rpartition("/")[2] for one in record.outputs}
+@lru_cache(maxsize=1)
+def _baseline(path: Path, sha256: str) -> BuildResult:  # noqa: ARG001  (read again when it changes)
+    return read_baseline(path)
+
+
+# --- what went wrong -----------------------------------------------------------------------------
+
+
+def ended_build(folder: BuildFolder, words: str) -> FailedBuild:
+    """A build that a worker could not finish."""
+    finding = Finding(
+        severity=Severity.ERROR,
+        code="worker-ended",
+        message=words,
+        remedy="publish again; where it happens again, sweep fewer points or give it more time "
+        "(--patience)",
+    )
+    return FailedBuild(key=folder.key, folder=folder.folder, findings=(finding,))
 
 
 def _not_measurable(error: NotMeasurable) -> Finding:

@@ -1,71 +1,78 @@
-"""The whole story: scan, read, measure, compare, draw, render, place.
+"""The whole story: scan, decide what changed, read, measure, compare, draw, render, place.
 
-Builds are independent of each other, the baseline alone goes first; `one_build` tells what happens
-to each.
+`every_build` tells which builds are made and what becomes of them, `one_build` what happens to
+each, `index_files` what is made of all.
 """
 
 from __future__ import annotations
 
-from collections.abc import Callable, Iterator, Sequence
-from concurrent.futures import ProcessPoolExecutor
-from concurrent.futures.process import BrokenProcessPool
-from contextlib import contextmanager
-from dataclasses import dataclass, replace
+from collections import Counter
+from collections.abc import Mapping, Sequence
+from dataclasses import dataclass, field, replace
 from difflib import get_close_matches
-from itertools import repeat
-from multiprocessing import get_context
 from pathlib import Path
+from typing import TYPE_CHECKING
 
 from reportgen import __version__
-from reportgen.errors import InputRejected, OutputError, UsageError
+from reportgen.errors import InputRejected, UsageError
+from reportgen.every_build import PATIENCE_S, Announce, Crew, Publishing
 from reportgen.intake.builds import BuildFolder, Runs, open_runs, read_build
-from reportgen.model import BuildResult, FailedBuild, Finding, InputFile, Severity
-from reportgen.one_build import Made, Task, make_build, measure_baseline
-from reportgen.output.manifest import (
-    MANIFEST_FILE,
-    BuildRecord,
-    OutputFile,
-    manifest_document,
-    output_file,
-    read_earlier,
-)
-from reportgen.output.placing import open_output, place_file, place_parts, remove_files
-from reportgen.physics.measure import Measured, measure
-from reportgen.published import RESULTS_FILE, PublishedBuild, published_build, read_document
+from reportgen.model import FailedBuild, Finding, Severity
+from reportgen.one_build import Job, Made, Task
+from reportgen.output.fingerprints import Seen
+from reportgen.output.manifest import MANIFEST_FILE, Manifest, manifest_document, remove_journal
+from reportgen.output.placing import open_output, place_file, remove_files
+from reportgen.output.unchanged import look_at, state_of
 
-Announce = Callable[[str, int, int], None]
+if TYPE_CHECKING:
+    from reportgen.physics.measure import Measured
 
 
 @dataclass(frozen=True, kw_only=True, slots=True)
 class Request:
-    """What `publish` was asked for; `only` names keys, empty: all."""
+    """What `publish` was asked for.
+
+    `only` names keys, empty: all. `jobs` is the number of worker processes, 0: none, everything
+    is done in this one. `seen` is what lies in the runs folder, where that is known.
+    """
 
     runs: Path
     out: Path
     baseline: str | None = None
     only: tuple[str, ...] = ()
-    jobs: int = 1
+    jobs: int = 0
+    patience_s: float = PATIENCE_S
+    force: bool = False
+    seen: Seen | None = None
 
 
 @dataclass(frozen=True, kw_only=True, slots=True, eq=False)
 class Outcome:
-    """What became of a run."""
+    """What became of a run.
+
+    `made` are the builds made by it; `unchanged` counts the findings, by severity, of those that
+    were not made again, and `published` all builds whose pages are those of their inputs.
+    """
 
     made: tuple[Made, ...]
     failed: tuple[FailedBuild, ...]
     findings: tuple[Finding, ...]
+    unchanged: Mapping[str, int] = field(default_factory=dict)
+    published: int = 0
+    builds: int = 0
 
     def worst(self) -> Severity | None:
         """Severity of the worst finding of the whole run."""
-        found = [finding.severity for finding in self.findings]
-        found += [finding.severity for one in self.made for finding in one.findings]
-        if self.failed or Severity.ERROR in found:
+        found = {finding.severity for finding in self.findings}
+        found |= {finding.severity for one in self.made for finding in one.findings}
+        found |= {Severity(name) for name in self.unchanged}
+        if self.failed:
             return Severity.ERROR
-        return Severity.WARNING if Severity.WARNING in found else next(iter(found), None)
+        return next((severity for severity in Severity if severity in found), None)
 
 
 def publish(request: Request, announce: Announce) -> Outcome:
-    """Everything of a runs folder, published.
+    """Everything of a runs folder, published; what has not changed is not made again.
 
     Raises
     ------
@@ -76,21 +83,80 @@ def publish(request: Request, announce: Announce) -> Outcome:
     OutputError
         The pages cannot be written.
     """
-    runs, baseline = _opened(request)
+    seen = request.seen or look_at(request.runs) or {}
+    runs = _opened(request)
     _refuse_tangle(request.out, runs)
     with open_output(request.out):
-        earlier = read_earlier(request.out)
-        task = Task(
-            runs=runs, baseline=baseline, out=request.out, only=request.only, earlier=earlier
-        )
-        outcome = _make_all(task, request.jobs, announce)
-        key = None if baseline is None else baseline.build.key
-        return _place_index(request.out, runs, key, outcome, earlier)
+        publishing = Publishing(runs, seen, request.out, only=request.only, force=request.force)
+        publishing.make_all(Crew(request.jobs, request.patience_s), announce)
+        state = None if publishing.stale else state_of(seen, request.runs, request.baseline)
+        return _concluded(publishing, state)
+
+
+def _concluded(done: Publishing, state: str | None) -> Outcome:
+    """What concerns all builds: pages of builds that are gone, the index, the manifest last."""
+    from reportgen.index_files import has_page, place_index_files
+    from reportgen.output.documents import finding_document, json_bytes
+
+    runs, out = done.runs, done.out
+    keys = [folder.key for folder in runs.folders]
+    records = {key: done.records[key] for key in keys if key in done.records}
+    kept = {output.file for record in records.values() for output in record.outputs}
+    remove_files(out, [one.file for one in done.standing.outputs() if one.file not in kept])
+    overview = place_index_files(
+        out,
+        [key for key in keys if key not in done.failed and has_page(out, key)],
+        bench=runs.bench,
+        failed=[done.failed[key] for key in keys if key in done.failed],
+        findings=done.findings,
+        baseline_key=done.baseline_key,
+    )
+    findings = (*done.findings, *overview.findings)
+    manifest = Manifest(
+        builds=records,
+        outputs=(*done.beside(), *overview.outputs),
+        findings=tuple(finding_document(one) for one in findings),
+        state=state,
+    )
+    inputs = [{"file": o.file, "sha256": o.sha256, "points": o.points} for o in runs.inputs]
+    document = manifest_document(
+        manifest, program_version=__version__, baseline=done.baseline_key, inputs=inputs
+    )
+    place_file(out, MANIFEST_FILE, json_bytes(document))
+    remove_journal(out)
+    return _outcome(done, findings, keys)
+
+
+def _outcome(done: Publishing, findings: tuple[Finding, ...], keys: Sequence[str]) -> Outcome:
+    unchanged: Counter[str] = Counter()
+    for key in done.kept:
+        unchanged.update(done.records[key].findings)
+    return Outcome(
+        made=tuple(done.made[key] for key in keys if key in done.made),
+        failed=tuple(done.failed[key] for key in keys if key in done.failed),
+        findings=findings,
+        unchanged=unchanged,
+        published=len({*done.made, *done.kept} - {*done.failed}),
+        builds=len(keys),
+    )
 
 
 def inspect(path: Path, jobs: int, announce: Announce) -> Outcome:
     """What is wrong or worth knowing about a runs folder; writes nothing."""
-    return _make_all(Task(runs=open_runs(path)), jobs, announce)
+    runs, crew = open_runs(path), Crew(jobs)
+    results: dict[str, Made | FailedBuild] = {}
+    with crew.hire(Task(runs=runs)) as workers:
+        every = [Job(folder=folder) for folder in runs.folders]
+        for job, result in crew.each_made(workers, every):
+            results[job.folder.key] = result
+            announce(job.folder.key, len(results), len(every))
+    ordered = [results[folder.key] for folder in runs.folders]
+    return Outcome(
+        made=tuple(one for one in ordered if isinstance(one, Made)),
+        failed=tuple(one for one in ordered if isinstance(one, FailedBuild)),
+        findings=runs.findings,
+        builds=len(ordered),
+    )
 
 
 def measure_folder(path: Path) -> tuple[Measured, Runs]:
@@ -103,6 +169,8 @@ def measure_folder(path: Path) -> tuple[Measured, Runs]:
     InputRejected, NotMeasurable
         Nothing can be computed from it.
     """
+    from reportgen.physics.measure import measure
+
     runs, folder = _find_build(path)
     return measure(read_build(runs, folder), runs.bench, runs.bands), runs
 
@@ -110,7 +178,7 @@ def measure_folder(path: Path) -> tuple[Measured, Runs]:
 # --- what is asked for -----------------------------------------------------------------------
 
 
-def _opened(request: Request) -> tuple[Runs, BuildResult | None]:
+def _opened(request: Request) -> Runs:
     runs = open_runs(request.runs)
     if not runs.folders:
         raise InputRejected((*runs.findings, _no_build()))
@@ -122,7 +190,7 @@ def _opened(request: Request) -> tuple[Runs, BuildResult | None]:
         bench = replace(runs.bench, baseline=request.baseline)
         known = tuple(one for one in runs.findings if one.code != "unknown-baseline")
         runs = replace(runs, bench=bench, findings=known)
-    return _with_baseline(runs)
+    return runs
 
 
 def _no_build() -> Finding:
@@ -138,24 +206,6 @@ def _no_such_key(key: str, keys: Sequence[str]) -> str:
     near = get_close_matches(key, keys, n=1)
     known = f"did you mean {near[0]}?" if near else f"there are: {', '.join(keys) or 'none'}"
     return f"no build has the key {key[:80]!r}; {known}"
-
-
-def _with_baseline(runs: Runs) -> tuple[Runs, BuildResult | None]:
-    """The baseline build, computed; a finding where it cannot be."""
-    folder = next((one for one in runs.folders if one.key == runs.bench.baseline), None)
-    if folder is None:
-        return runs, None
-    baseline = measure_baseline(runs, folder)
-    if isinstance(baseline, BuildResult):
-        return runs, baseline
-    finding = Finding(
-        severity=Severity.ERROR,
-        code="no-baseline",
-        file=f"{folder.folder}/build.toml",
-        message=f"the baseline {folder.key} cannot be computed, so no build was compared with it",
-        remedy="mend its errors, or choose another baseline",
-    )
-    return replace(runs, findings=(*runs.findings, finding)), None
 
 
 def _refuse_tangle(out: Path, runs: Runs) -> None:
@@ -179,132 +229,3 @@ def _find_build(path: Path) -> tuple[Runs, BuildFolder]:
         if (root / folder.folder).resolve() == place:
             return runs, folder
     raise UsageError(f"{path} was not found from {root}; is it a link or a hidden folder?")
-
-
-# --- builds ----------------------------------------------------------------------------------
-
-
-def _make_all(task: Task, jobs: int, announce: Announce) -> Outcome:
-    """Every build of the runs folder; one that fails does not stop the others."""
-    folders = task.runs.folders
-    made: list[Made] = []
-    failed: list[FailedBuild] = []
-    with _workers(min(jobs, len(folders))) as run:
-        for count, one in enumerate(run(make_build, repeat(task), folders), start=1):
-            (made if isinstance(one, Made) else failed).append(one)  # type: ignore[arg-type]
-            announce(folders[count - 1].key, count, len(folders))
-    return Outcome(made=tuple(made), failed=tuple(failed), findings=task.runs.findings)
-
-
-@contextmanager
-def _workers(jobs: int) -> Iterator[Callable[..., Iterator[Made | FailedBuild]]]:
-    if jobs <= 1:
-        yield map
-        return
-    try:
-        with ProcessPoolExecutor(jobs, mp_context=get_context("spawn")) as pool:
-            yield pool.map
-    except BrokenProcessPool as error:
-        raise OutputError("a worker was ended from outside; try again with --jobs 1") from error
-
-
-# --- index -----------------------------------------------------------------------------------
-
-
-def _place_index(
-    out: Path,
-    runs: Runs,
-    baseline_key: str | None,
-    outcome: Outcome,
-    earlier: dict[str, BuildRecord],
-) -> Outcome:
-    """What concerns all builds, and the index last; made from what is published, on the disk."""
-    from reportgen.output.documents import json_bytes
-    from reportgen.pages.index import render_index_html
-
-    records = _records(outcome, earlier)
-    kept = {output.file for record in records for output in record.outputs}
-    remove_files(
-        out, [o.file for record in earlier.values() for o in record.outputs if o.file not in kept]
-    )
-    keys = [one.key for one in outcome.made if _has_page(out, one.key)]
-    rows, unreadable, table = _place_long_table(out, keys)
-    outcome = replace(outcome, findings=(*outcome.findings, *unreadable))
-    index = render_index_html(
-        rows,
-        bench=runs.bench,
-        failed=outcome.failed,
-        standing=[one.key for one in outcome.failed if _has_page(out, one.key)],
-        findings=outcome.findings,
-        baseline_key=baseline_key,
-        program_version=__version__,
-    ).encode("utf-8")
-    manifest = manifest_document(
-        program_version=__version__,
-        baseline=baseline_key,
-        inputs=runs.inputs,
-        builds=records,
-        outputs=[table, output_file("index.html", index)],
-    )
-    place_file(out, MANIFEST_FILE, json_bytes(manifest))
-    place_file(out, "index.html", index)
-    return outcome
-
-
-def _place_long_table(
-    out: Path, keys: Sequence[str]
-) -> tuple[list[PublishedBuild], list[Finding], OutputFile]:
-    """`results.csv`, written build by build; with what the index needs of each."""
-    from reportgen.output.csv_tables import LONG_HEAD, csv_bytes, long_csv_lines
-
-    rows: list[PublishedBuild] = []
-    unreadable: list[Finding] = []
-
-    def parts() -> Iterator[bytes]:
-        yield csv_bytes(LONG_HEAD)
-        for key in keys:
-            try:
-                document = read_document(out / key / RESULTS_FILE)
-                published, lines = published_build(document), long_csv_lines(document)
-            except OutputError as error:
-                unreadable.append(_unreadable(key, error))
-                continue
-            rows.append(published)
-            yield csv_bytes(lines)
-
-    sha256 = place_parts(out, "results.csv", parts())
-    return rows, unreadable, OutputFile(file="results.csv", sha256=sha256)
-
-
-def _unreadable(key: str, error: OutputError) -> Finding:
-    return Finding(
-        severity=Severity.WARNING,
-        code="unreadable-results",
-        message=f"{key}: {error}",
-        remedy="publish it again",
-    )
-
-
-def _has_page(out: Path, key: str) -> bool:
-    """Whether a build has a page: of this run, or of an earlier one where it was passed over."""
-    return (out / key / "report.html").is_file()
-
-
-def _records(outcome: Outcome, earlier: dict[str, BuildRecord]) -> list[BuildRecord]:
-    """Each build's record; where nothing was written this time, the earlier files still count."""
-    records = [_record(one.key, one.folder, one.inputs, one.outputs) for one in outcome.made]
-    records += [_record(one.key, one.folder, (), ()) for one in outcome.failed]
-    return [
-        replace(record, outputs=earlier[record.key].outputs)
-        if not record.outputs and record.key in earlier
-        else record
-        for record in sorted(records, key=lambda record: record.key)
-    ]
-
-
-def _record(
-    key: str, folder: str, inputs: tuple[InputFile, ...], outputs: tuple[OutputFile, ...]
-) -> BuildRecord:
-    return BuildRecord(
-        key=key, folder=folder, published=bool(outputs), inputs=inputs, outputs=outputs
-    )

@@ -11,14 +11,20 @@ from small_runs import BENCH, contents, write_build, write_runs
 
 from reportgen import __version__
 from reportgen.__main__ import main
+from reportgen.output.workers import ThisProcess
 
 pytestmark = pytest.mark.usefixtures("few_draws")
+
+
+def in_this_process(_jobs: int, _limit_s: float, *start: object) -> ThisProcess:
+    """Instead of workers, which take seconds to start."""
+    return ThisProcess(*start)
 
 
 @pytest.fixture
 def run(capsys, monkeypatch):
     """Call a command, builds one after the other: its exit status and what it said."""
-    monkeypatch.setattr("os.cpu_count", lambda: 1)
+    monkeypatch.setattr("reportgen.every_build.Workers", in_this_process)
 
     def call(*arguments: object) -> tuple[int, str, str]:
         try:

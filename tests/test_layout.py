@@ -16,13 +16,15 @@ TOP_LEVEL = {
 }  # fmt: skip
 # each layer may import those behind it; `reportgen` itself holds nothing but the version
 ARROWS = {
-    "__main__": {"pipeline", "sidecars", "pages", "model", "errors", "reportgen"},
+    "__main__": {"pipeline", "sidecars", "pages", "output", "model", "errors", "reportgen"},
     "sidecars": {"intake", "pages", "output", "physics", "model", "errors"},
     "pipeline": {
-        "one_build", "intake", "pages", "output", "physics", "published", "model", "errors",
-        "reportgen",
+        "every_build", "index_files", "one_build", "intake", "output", "physics", "model",
+        "errors", "reportgen",
     },
-    "one_build": {"build_files", "intake", "output", "physics", "published", "model", "errors"},
+    "every_build": {"one_build", "intake", "output", "model"},
+    "index_files": {"pages", "output", "published", "model", "errors", "reportgen"},
+    "one_build": {"build_files", "intake", "output", "physics", "model", "errors"},
     "build_files": {"pages", "output", "physics", "model", "reportgen"},
     "intake": {"physics", "model", "errors"},
     "pages": {"physics", "published", "model", "errors", "reportgen"},

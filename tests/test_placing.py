@@ -108,16 +108,16 @@ def interrupted(out: Path, *folders: str) -> dict[str, bytes]:
 
 
 def test_stopped_while_writing_the_new_pages(tmp_path: Path) -> None:
-    assert interrupted(tmp_path, "alder", ".new-alder") == {"alder/report.html": b"alder"}
+    assert interrupted(tmp_path, "alder", ".reportgen-new-alder") == {"alder/report.html": b"alder"}
 
 
 def test_stopped_with_the_old_pages_moved_away(tmp_path: Path) -> None:
-    found = interrupted(tmp_path, ".old-alder", ".new-alder")
-    assert found == {"alder/report.html": b".old-alder"}
+    found = interrupted(tmp_path, ".reportgen-old-alder", ".reportgen-new-alder")
+    assert found == {"alder/report.html": b".reportgen-old-alder"}
 
 
 def test_stopped_before_the_old_pages_were_removed(tmp_path: Path) -> None:
-    assert interrupted(tmp_path, "alder", ".old-alder") == {"alder/report.html": b"alder"}
+    assert interrupted(tmp_path, "alder", ".reportgen-old-alder") == {"alder/report.html": b"alder"}
 
 
 # --- removing ------------------------------------------------------------------------------------

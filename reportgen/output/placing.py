@@ -7,14 +7,15 @@ import hashlib
 import os
 import shutil
 from collections.abc import Callable, Collection, Iterable, Iterator, Mapping
-from contextlib import contextmanager
+from contextlib import contextmanager, suppress
 from pathlib import Path
 
 from reportgen.errors import OutputError
 from reportgen.model import OUTPUT_MARKER
+from reportgen.output.manifest import OutputFile
 
-_NEW = ".new-"
-_OLD = ".old-"
+NEW = ".reportgen-new-"
+OLD = ".reportgen-old-"
 
 
 @contextmanager
@@ -33,7 +34,12 @@ def open_output(out: Path) -> Iterator[None]:
         with (out / OUTPUT_MARKER).open("r+", encoding="utf-8") as marker:
             _lock(marker.fileno(), out)
             _mend(out)
-            yield
+            try:
+                yield
+            except BaseException:
+                with suppress(OSError):
+                    _mend(out)
+                raise
 
 
 @contextmanager
@@ -67,13 +73,13 @@ def _lock(descriptor: int, out: Path) -> None:
 
 def _mend(out: Path) -> None:
     """Finish or undo the moves of an interrupted run."""
-    for old in sorted(out.glob(f"{_OLD}*")):
-        standing = out / old.name.removeprefix(_OLD)
+    for old in sorted(out.glob(f"{OLD}*")):
+        standing = out / old.name.removeprefix(OLD)
         if standing.exists():
             _remove(old)
         else:
             old.rename(standing)
-    for new in sorted(out.glob(f"{_NEW}*")):
+    for new in sorted(out.glob(f"{NEW}*")):
         _remove(new)
 
 
@@ -105,7 +111,7 @@ def place_build(
     OutputError
         The folder cannot be written, or its name is taken by something that is no folder.
     """
-    new, old, standing = out / f"{_NEW}{key}", out / f"{_OLD}{key}", out / key
+    new, old, standing = out / f"{NEW}{key}", out / f"{OLD}{key}", out / key
     if standing.is_symlink() or standing.is_file():
         raise OutputError(f"{standing} is in the way; move it, or choose another --out")
     with _translated(out):
@@ -131,18 +137,19 @@ def _copy_others(standing: Path, new: Path, ours: Collection[str]) -> None:
             shutil.copy2(path, new / path.name, follow_symlinks=False)
 
 
-def place_file(out: Path, name: str, data: bytes) -> None:
+def place_file(out: Path, name: str, data: bytes) -> OutputFile:
     """One file of the output folder itself, replaced in one move."""
-    place_parts(out, name, [data])
+    return place_parts(out, name, [data])
 
 
-def place_parts(out: Path, name: str, parts: Iterable[bytes]) -> str:
-    """The same for a file that is never held whole; returns its SHA-256."""
-    new = out / f"{_NEW}{name}"
+def place_parts(out: Path, name: str, parts: Iterable[bytes]) -> OutputFile:
+    """The same for a file that is never held whole."""
+    new = out / f"{NEW}{name}"
     digest = hashlib.sha256()
     _write(new, _hashed(parts, digest.update))
+    size = new.stat().st_size
     new.replace(out / name)
-    return digest.hexdigest()
+    return OutputFile(file=name, sha256=digest.hexdigest(), bytes=size)
 
 
 def _hashed(parts: Iterable[bytes], update: Callable[[bytes], None]) -> Iterator[bytes]:
@@ -158,12 +165,12 @@ def _write(path: Path, parts: Iterable[bytes]) -> None:
         os.fsync(file.fileno())
 
 
-def remove_files(out: Path, names: list[str]) -> None:
+def remove_files(out: Path, names: Iterable[str]) -> None:
     """Files that an earlier run wrote, by path below `out`, and their folders where then empty."""
-    for name in names:
-        path = out / name
+    paths = [path for path in (out / name for name in names) if not path.parent.is_symlink()]
+    for path in paths:
         if path.is_file() and not path.is_symlink():
             path.unlink()
-    for folder in sorted({(out / name).parent for name in names} - {out}):
+    for folder in sorted({path.parent for path in paths} - {out}):
         if folder.is_dir() and not any(folder.iterdir()):
             folder.rmdir()
