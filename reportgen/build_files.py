@@ -23,6 +23,13 @@ def build_files(
     """
     from reportgen.output.csv_tables import bands_csv, curves_csv
     from reportgen.output.documents import json_bytes, results_document
+    from reportgen.pages.card import card_pictures, render_card_pdf
+    from reportgen.pages.kit_words import kit_words
+    from reportgen.pages.listing import (
+        render_listing_html,
+        render_listing_markdown,
+        render_listing_text,
+    )
     from reportgen.pages.report import render_report_html, render_report_pdf
 
     document = results_document(result, comparison, program_version=__version__, forecast=forecast)
@@ -42,10 +49,18 @@ def build_files(
         program_version=__version__,
         forecast=forecast,
     )
+    words = kit_words(result, comparison, bench, __version__)
+    wide, square = card_pictures(words, bench.locale)
     return {
         "report.html": html.encode("utf-8"),
         "report.pdf": pdf,
         "results.json": json_bytes(document),
         "bands.csv": bands_csv(result),
         "curves.csv": curves_csv(result.chosen.curves, result.power_w),
+        "card.pdf": render_card_pdf(words, bench, __version__),
+        "card.png": wide,
+        "card-square.png": square,
+        "listing.md": render_listing_markdown(words),
+        "listing.html": render_listing_html(words),
+        "listing.txt": render_listing_text(words),
     }

@@ -90,6 +90,9 @@ def chart_height(words: KitWords, letters: float, row: float) -> float:
 
 def draw_bands(drawing: Drawing, words: KitWords, at: BandPlace, locale: str) -> None:
     """A row for each band: name, dot and 95 % interval, efficiency, worst SWR."""
+    if not words.bands:
+        drawing.write((at.left, at.baseline(0)), "No band has a figure.", _soft(at.letters))
+        return
     all_fit = len(words.bands) <= MOST_ROWS
     bands = words.bands if all_fit else words.bands[: MOST_ROWS - 1]
     columns, free = _columns(words, bands, at)
@@ -97,7 +100,7 @@ def draw_bands(drawing: Drawing, words: KitWords, at: BandPlace, locale: str) ->
     _draw_columns(drawing, bands, columns, at)
     scale = _scale(words, bands, at, free)
     if scale is not None:
-        _draw_scale(drawing, scale, len(bands), at, words, locale)
+        _draw_scale(drawing, scale, at, words, locale)
         _draw_marks(drawing, scale, bands, at, words)
     if not all_fit:
         text = f"and {len(words.bands) - len(bands)} more bands, in the report"
@@ -201,17 +204,18 @@ def _ticks(low: float, high: float, gaps: Sequence[float]) -> tuple[float, ...]:
 
 
 def _draw_scale(
-    drawing: Drawing, scale: _Scale, rows: int, at: BandPlace, words: KitWords, locale: str
+    drawing: Drawing, scale: _Scale, at: BandPlace, words: KitWords, locale: str
 ) -> None:
     """A hairline at each mark, its value below; what dot and bar are, above."""
-    bottom, small = at.first + rows * at.row, _soft(_SMALL * at.letters)
+    bottom, small = at.first + rows_shown(words) * at.row, _soft(_SMALL * at.letters)
     marks = [(scale.place(tick), f"{tick:g}") for tick in scale.ticks]
     lines = [((x, at.first), (x, bottom)) for x, _ in marks]
     drawing.rules(lines, LIGHT.hairline, 0.05 * at.letters)
     for x, text in marks:
         shown = text.replace(".", decimal_sign(locale))
         drawing.write((x, bottom + 1.3 * at.letters), shown, small, "center")
-    key = f"{'worst' if words.drawn == 'swr' else 'mean'}, 95\u00a0% interval"
+    key = "worst" if words.drawn == "swr" else "mean"
+    key += ", 95\u00a0% interval" if words.intervals else ""
     if small.width(key) <= scale.right - scale.left:
         drawing.write((scale.left, at.top + at.letters), key, small)
 

@@ -11,6 +11,7 @@ from reportgen.pages.line_breaks import broken, first_lines
 from reportgen.pages.look import LIGHT
 
 _LINE = 1.28
+_LEAST_CHART = 480.0
 _CAPITALS = 0.66
 """Height of capitals over the size of letters."""
 
@@ -27,7 +28,8 @@ class Plan:
     ratio: int
     figure: int
     text: int
-    facts: int
+    facts: tuple[tuple[int, int], ...]
+    small: int
     chart_left: int
     chart_letters: int
     tallest_row: int
@@ -48,7 +50,8 @@ WIDE = Plan(
     ratio=25,
     figure=68,
     text=19,
-    facts=17,
+    facts=((17, 2), (16, 2), (15, 2), (14, 1)),
+    small=16,
     chart_left=556,
     chart_letters=19,
     tallest_row=44,
@@ -63,7 +66,8 @@ SQUARE = Plan(
     ratio=34,
     figure=112,
     text=26,
-    facts=22,
+    facts=((22, 2), (20, 2), (18, 1)),
+    small=21,
     chart_left=72,
     chart_letters=24,
     tallest_row=48,
@@ -75,10 +79,11 @@ def draw_wide(words: KitWords, locale: str) -> Drawing:
     """The picture of 1200 by 630: words on the left, the bands on the right."""
     plan, drawing = WIDE, new_drawing(WIDE.width, WIDE.height)
     foot = _draw_foot(drawing, words, plan)
-    y = _draw_name(drawing, words, plan)
-    _draw_headline(drawing, words, plan, y + 2.4 * plan.text)
-    _draw_facts(drawing, words, plan, foot)
-    _draw_chart(drawing, words, plan, (plan.margin - 8, foot - 0.5 * plan.chart_letters), locale)
+    name, y = _draw_name(drawing, words, plan)
+    below = _draw_headline(drawing, words, plan, y + 2.4 * plan.text)
+    _draw_facts(drawing, words, plan, below + 0.6 * plan.text, foot)
+    top = plan.margin - 8 if name <= plan.column else y - plan.ratio
+    _draw_chart(drawing, words, plan, (top, foot - 0.5 * plan.chart_letters), locale)
     return drawing
 
 
@@ -86,19 +91,20 @@ def draw_square(words: KitWords, locale: str) -> Drawing:
     """The picture of 1200 by 1200: everything below each other."""
     plan, drawing = SQUARE, new_drawing(SQUARE.width, SQUARE.height)
     foot = _draw_foot(drawing, words, plan)
-    y = _draw_name(drawing, words, plan)
+    _, y = _draw_name(drawing, words, plan)
     below = _draw_headline(drawing, words, plan, y + 2.4 * plan.text)
-    facts = _draw_facts(drawing, words, plan, foot)
-    _draw_chart(drawing, words, plan, (below + 1.4 * plan.text, facts - plan.facts), locale)
+    chart = below + 1.4 * plan.text
+    facts = _draw_facts(drawing, words, plan, chart + _LEAST_CHART, foot)
+    _draw_chart(drawing, words, plan, (chart, facts - plan.text), locale)
     return drawing
 
 
 # --- name and headline -------------------------------------------------------------------------
 
 
-def _draw_name(drawing: Drawing, words: KitWords, plan: Plan) -> float:
-    """Name and ratio; the baseline of the last line."""
-    letters, lines = _name_lines(drawable_text(words.name), plan)
+def _draw_name(drawing: Drawing, words: KitWords, plan: Plan) -> tuple[float, float]:
+    """Name and ratio; the room that the name was given, and the baseline of the last line."""
+    letters, lines, room = _name_lines(drawable_text(words.name), plan)
     top = plan.margin + _CAPITALS * letters.size
     line = 1.1 * letters.size
     y = drawing.write_lines((plan.margin, top), lines, letters, line) - line
@@ -106,17 +112,21 @@ def _draw_name(drawing: Drawing, words: KitWords, plan: Plan) -> float:
     soft = Letters(size=plan.ratio, colour=LIGHT.soft)
     ratio = broken(f"{words.ratio}, {words.turns}", plan.column, soft.width)
     drawing.write_lines((plan.margin, y), first_lines(ratio, 1, plan.column, soft.width), soft, 0)
-    return y
+    return room, y
 
 
-def _name_lines(name: str, plan: Plan) -> tuple[Letters, list[str]]:
-    """The name in the largest letters in which no word of it is broken; else in the smallest."""
-    for size, most in plan.names:
+def _name_lines(name: str, plan: Plan) -> tuple[Letters, list[str], float]:
+    """The name in the largest letters in which it fits and no word of it is broken.
+
+    A name that does not fit the column goes over the whole width, and is cut there.
+    """
+    tries = [(size, most, plan.column) for size, most in plan.names]
+    for size, most, room in (*tries, (plan.names[-1][0], 3, plan.inner)):
         letters = Letters(size=size, face="Semibold")
-        lines = broken(name, plan.column, letters.width)
+        lines = broken(name, room, letters.width)
         if len(lines) <= most and " ".join(lines) == name:
             break
-    return letters, first_lines(lines, most, plan.column, letters.width)
+    return letters, first_lines(lines, most, room, letters.width), room
 
 
 def _draw_headline(drawing: Drawing, words: KitWords, plan: Plan, y: float) -> float:
@@ -131,17 +141,17 @@ def _draw_headline(drawing: Drawing, words: KitWords, plan: Plan, y: float) -> f
     size = plan.figure if words.drawn == "efficiency_ratio" else 0.62 * plan.figure
     y += 0.35 * plan.text + 0.86 * size
     figure = Letters(size=size, face="Semibold")
-    drawing.write((plan.margin, y), words.headline.figure, figure)
+    drawing.write((plan.margin, y), words.headline.figure.capitalize(), figure)
     step = _LINE * plan.text
+    x = float(plan.margin)
     if plan.words_beside:
-        x, y = plan.margin + figure.width(words.headline.figure) + plan.text, y - 2 * step
-    else:
-        x, y = plan.margin, y + 0.2 * plan.text
+        x += figure.width(words.headline.figure) + plan.text
     room = plan.margin + plan.column - x
     below = [drawable_text(line) for line in below_headline(words)]
     lines = [part for line in below for part in broken(line, room, soft.width)]
     kept = first_lines(lines, 3, room, soft.width)
-    return drawing.write_lines((x, y + step), kept, soft, step) - step
+    first = y - (len(kept) - 1) * step if plan.words_beside else y + 0.2 * plan.text + step
+    return max(y, drawing.write_lines((x, first), kept, soft, step) - step)
 
 
 # --- facts and foot ----------------------------------------------------------------------------
@@ -150,41 +160,40 @@ def _draw_headline(drawing: Drawing, words: KitWords, plan: Plan, y: float) -> f
 _Line = tuple[str, str, str]
 
 
-def _fact_lines(words: KitWords, plan: Plan, room: float) -> list[_Line]:
-    """The facts in lines: label (on the first of each), words, colour."""
-    letters = Letters(size=plan.facts)
-    room -= _label_width(plan)
+def _draw_facts(drawing: Drawing, words: KitWords, plan: Plan, top: float, bottom: float) -> float:
+    """The facts, the last line above `bottom`, in the largest letters that fit; where they begin.
+
+    What a power holds for is never cut.
+    """
+    for size, most in plan.facts:
+        label_width = Letters(size=size).width("Worst SWR") + 1.2 * size
+        lines = _fact_lines(words, Letters(size=size), plan.column - label_width, most)
+        start = bottom - (len(lines) * _LINE + 0.8) * size
+        if start >= top:
+            break
+    y = start
+    for label, text, accent in lines:
+        y += _LINE * size
+        drawing.write((plan.margin, y), label, Letters(size=size, colour=LIGHT.soft))
+        letters = Letters(size=size, colour=getattr(LIGHT, accent))
+        drawing.write((plan.margin + label_width, y), text, letters)
+    return start
+
+
+def _fact_lines(words: KitWords, letters: Letters, room: float, most: int) -> list[_Line]:
+    """The facts in lines: label (on the first of each), words, accent."""
     found: list[_Line] = []
     for label, text, accent in card_facts(words):
         lines = broken(drawable_text(text), room, letters.width)
-        kept = first_lines(lines, 4 if label == "Power" else 2, room, letters.width)
-        found += [
-            (label if index == 0 else "", one, getattr(LIGHT, accent))
-            for index, one in enumerate(kept)
-        ]
+        if label != "Power":
+            lines = first_lines(lines, most, room, letters.width)
+        found += [("" if index else label, one, accent) for index, one in enumerate(lines)]
     return found
-
-
-def _label_width(plan: Plan) -> float:
-    return Letters(size=plan.facts).width("Worst SWR") + 1.2 * plan.facts
-
-
-def _draw_facts(drawing: Drawing, words: KitWords, plan: Plan, bottom: float) -> float:
-    """The facts, the last line above `bottom`; where they begin."""
-    lines = _fact_lines(words, plan, plan.column)
-    top = bottom - (len(lines) * _LINE + 0.8) * plan.facts
-    y = top
-    for label, text, colour in lines:
-        y += _LINE * plan.facts
-        at = (plan.margin + _label_width(plan), y)
-        drawing.write((plan.margin, y), label, Letters(size=plan.facts, colour=LIGHT.soft))
-        drawing.write(at, text, Letters(size=plan.facts, colour=colour))
-    return top
 
 
 def _draw_foot(drawing: Drawing, words: KitWords, plan: Plan) -> float:
     """Who publishes it, and what to mind, below a line; the height of that line."""
-    size = plan.facts - 1
+    size = plan.small
     step, room = _LINE * size, 0.3 * plan.inner
     bold = Letters(size=size, face="Semibold", colour=LIGHT.soft)
     soft = Letters(size=size, colour=LIGHT.soft)

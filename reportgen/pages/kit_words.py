@@ -24,11 +24,12 @@ from reportgen.pages.display import (
     NOT_MEASURED,
     aligned,
     entered,
-    no_more_than,
     percent_of,
     with_unit,
 )
 from reportgen.pages.intervals import mean_with_interval, spoken_with_interval, worst_text
+from reportgen.pages.power import power_verdict
+from reportgen.pages.power_tables import unbroken
 from reportgen.pages.sentences import KeyFigure, counted, coverage_sentence, key_figures
 from reportgen.pages.summary import (
     figure_of,
@@ -54,7 +55,8 @@ SHORT_CAUTION = (
     f"{CAUTIONS[0]} Hot core and high RF voltage under power. Figures from small-signal sweeps."
 )
 INTERVALS = "After \u00b1 stands half of the 95\u00a0% interval of the mean over the band."
-_NO_POWER = "No power rating: no temperature log"
+_IN_THE_REPORT = "Named in the report, with its conditions."
+_LONGEST_POWER = 220
 _METHODS = {
     Method.HALVING: "back to back, the loss halved",
     Method.BISECTION: "back to back, halved by Bartlett's theorem",
@@ -116,6 +118,11 @@ class KitWords:
     comparison: str
     provenance: str
 
+    @property
+    def intervals(self) -> bool:
+        """True where at least one drawn figure has its interval."""
+        return any(band.low95 is not None and band.high95 is not None for band in self.bands)
+
 
 def kit_words(
     result: BuildResult, comparison: Comparison | None, bench: BenchSheet, program_version: str
@@ -132,7 +139,7 @@ def kit_words(
         ratio=f"{ohms(sheet.match.source_ohm, locale)} to {ohms(sheet.nominal_load_ohm, locale)}",
         turns=_turns_words(sheet, locale),
         drawn=drawn,
-        headline=_headline(result, locale),
+        headline=key_figures(result, locale)[0],
         least=_least_words(result, locale),
         bands=_aligned(
             [_band_line(band, result, drawn, bench) for band in result.chosen.bands], locale
@@ -142,7 +149,7 @@ def kit_words(
         worst_swr=_worst_swr(result, locale),
         capacitor=_capacitor_words(sheet, locale),
         core=_core_words(sheet, locale),
-        power=power_sentence(result, locale),
+        power=power_verdict(result, locale),
         parts=tuple(_parts(sheet, locale)),
         method=_method_words(result),
         measured_on=sheet.measured_on.isoformat() if sheet.measured_on else "",
@@ -160,49 +167,19 @@ def below_headline(words: KitWords) -> tuple[str, ...]:
 
 
 def card_facts(words: KitWords) -> tuple[tuple[str, str, str], ...]:
-    """Label, words and accent of each fact on a card."""
+    """Label, words and accent of each fact on a card; no power without its whole condition."""
     on = f", {words.measured_on}" if words.measured_on else ""
     return (
         ("Worst SWR", words.worst_swr, "match"),
-        ("Power", words.power, "ink"),
+        ("Power", words.power if len(words.power) <= _LONGEST_POWER else _IN_THE_REPORT, "ink"),
         ("Capacitor", words.capacitor, "ink"),
         ("Core", words.core, "ink"),
         ("Measured", f"{words.method}{on}", "ink"),
     )
 
 
-def _headline(result: BuildResult, locale: str) -> KeyFigure:
-    figure = key_figures(result, locale)[0]
-    return replace(figure, figure=figure.figure.capitalize())
-
-
 def _sentence(words: str) -> str:
     return f"{words[:1].upper()}{words[1:]}."
-
-
-# --- power -----------------------------------------------------------------------------------
-
-
-def power_sentence(result: BuildResult, locale: str) -> str:
-    """The power that heat and stress permit, with its conditions, or that there is none."""
-    if result.thermal is None:
-        return f"{_NO_POWER}."
-    permitted = result.thermal.permitted
-    if permitted is None:
-        return f"{_sentence(f'No power rating: {result.thermal.reason}')}"
-    least = permitted.limiting
-    power_w, mode, band = least.power_w, least.mode, least.band
-    first = None if result.stress is None else result.stress.first_limit
-    if first is not None and first.power_w < power_w:
-        power_w, mode, band = first.power_w, "peak", first.band
-    watts = with_unit(no_more_than(power_w, locale=locale), "W")
-    ambient = with_unit(entered(permitted.ambient_max_c, locale=locale), "\u00b0C")
-    swr = entered(permitted.load_swr, locale=locale)
-    beyond = ", extrapolated beyond the temperature log" if least.extrapolated else ""
-    return (
-        f"{watts} {mode}, {band or 'every band'}, the least of all modes and bands: at up to "
-        f"{ambient} around it, load SWR up to {swr}{beyond}."
-    )
 
 
 # --- bands -----------------------------------------------------------------------------------
@@ -273,14 +250,14 @@ def _least_words(result: BuildResult, locale: str) -> str:
     least = worst_of(found, "efficiency_ratio")
     if least is None or len(found) == 1:
         return ""
-    return f"{spoken_with_interval('efficiency_ratio', least, locale)} on {least.band.name}"
+    return f"{spoken_with_interval('efficiency_ratio', least, locale)} on {unbroken(least.band.name)}"
 
 
 def _worst_swr(result: BuildResult, locale: str) -> str:
     worst = worst_of(worsts(result.chosen, "swr"), "swr")
     if worst is None:
         return NOT_MEASURED
-    return f"{spoken_with_interval('swr', worst, locale)} on {worst.band.name}"
+    return f"{spoken_with_interval('swr', worst, locale)} on {unbroken(worst.band.name)}"
 
 
 # --- the build -------------------------------------------------------------------------------
@@ -315,7 +292,7 @@ def _parts(sheet: BuildSheet, locale: str) -> Iterator[str]:
     """Lines of the parts list: pieces are counted before the name, lengths told after it."""
     for part in sheet.part:
         amount = "" if part.quantity is None else entered(part.quantity, locale=locale)
-        if part.quantity is not None and part.quantity.is_integer():
+        if part.quantity is not None and float(part.quantity).is_integer():
             yield f"{amount} \u00d7 {part.name}" + (f" ({part.note})" if part.note else "")
         else:
             told = " ".join(text for text in (amount, part.note) if text)

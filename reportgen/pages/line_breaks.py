@@ -44,6 +44,17 @@ def first_lines(lines: Sequence[str], most: int, room: float, measure: Measure) 
     return [*lines[: most - 1], last.rstrip() + ELLIPSIS]
 
 
+def kept_text(text: str, most: int, room: float, measure: Measure) -> tuple[str, int]:
+    """What of a text fits into so many lines, an ellipsis where that is not all; its lines."""
+    lines = broken(text, room, measure)
+    if len(lines) <= most:
+        return text, len(lines)
+    end = 0
+    for line in (kept := first_lines(lines, most, room, measure)):
+        end = text.index(line.removesuffix(ELLIPSIS), end) + len(line.removesuffix(ELLIPSIS))
+    return text[:end] + ELLIPSIS, len(kept)
+
+
 def shortened(text: str, most: int) -> str:
     """A text of at most so many characters; an ellipsis ends it where some are left out."""
     return text if len(text) <= most else text[: most - 1].rstrip() + ELLIPSIS
