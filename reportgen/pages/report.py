@@ -33,7 +33,7 @@ from reportgen.pages.particulars import (
 )
 from reportgen.pages.pdf import write_pdf
 from reportgen.pages.plain_text import text_lines
-from reportgen.pages.power import PowerPage, power_of
+from reportgen.pages.power import PowerPage, power_of, power_verdict
 from reportgen.pages.predictions import Predictions, predictions_of
 from reportgen.pages.summary import is_simulated, limits_by_quantity
 from reportgen.pages.tables import Table
@@ -46,6 +46,8 @@ from reportgen.pages.uncertainty import (
 )
 from reportgen.pages.wording import METHOD_NAMES, METHOD_WORDS, fitted_sentence, ohms
 from reportgen.physics.forecast import CapacitorForecast, Forecast
+
+_IS_BASELINE = "This build is the baseline that the others are compared with."
 
 
 @dataclass(frozen=True, kw_only=True, slots=True)
@@ -69,8 +71,7 @@ class ReportPage:
     summary: str
     simulated: bool
     verdict: str
-    limits_verdict: str
-    limits_causes: str
+    brief: tuple[tuple[str, str], ...]
     coverage: str
     key_figures: tuple[sentences.KeyFigure, ...]
     bands: Table | None
@@ -78,7 +79,6 @@ class ReportPage:
     pictures: dict[str, Picture]
     comparison: Table | None
     comparison_words: str
-    is_baseline: bool
     limits: Table | None
     heat_parts: Table | None
     heat_parts_words: tuple[str, ...]
@@ -168,7 +168,6 @@ def _page(
     forecast: Forecast | None,
 ) -> ReportPage:
     sheet, locale = result.build.sheet, bench.locale
-    limits_verdict, limits_causes = limits_words(result.limits)
     return ReportPage(
         name=sheet.name,
         publisher=bench.publisher,
@@ -176,8 +175,7 @@ def _page(
         summary=sheet.summary,
         simulated=is_simulated(result),
         verdict=sentences.verdict(result, locale),
-        limits_verdict=limits_verdict,
-        limits_causes=limits_causes,
+        brief=_brief(result, comparison, bench),
         coverage=sentences.coverage_sentence(result),
         key_figures=sentences.key_figures(result, locale),
         bands=band_table(result, bench),
@@ -185,7 +183,6 @@ def _page(
         pictures=pictures,
         comparison=comparison_table(result, comparison, baseline, locale),
         comparison_words=comparison_sentence(comparison),
-        is_baseline=bench.baseline == result.build.key,
         limits=limits_table(result.limits, locale),
         heat_parts=heat_parts_table(result, locale),
         heat_parts_words=heat_parts_sentences(result, locale),
@@ -214,6 +211,20 @@ def _page(
         inputs=inputs_table(result.build),
         program_version=program_version,
     )
+
+
+def _brief(
+    result: BuildResult, comparison: Comparison | None, bench: BenchSheet
+) -> tuple[tuple[str, str], ...]:
+    """What the rest of the page says at length, in a line each: limits, baseline, power."""
+    lines = {
+        "Limits": " ".join(limits_words(result.limits)).strip(),
+        "Baseline": _IS_BASELINE
+        if bench.baseline == result.build.key
+        else comparison_sentence(comparison),
+        "Power": "" if result.stress is None else power_verdict(result, bench.locale),
+    }
+    return tuple((label, words) for label, words in lines.items() if words)
 
 
 def _method_words(result: BuildResult, locale: str) -> str:
