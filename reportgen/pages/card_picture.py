@@ -174,7 +174,8 @@ def _draw_facts(drawing: Drawing, words: KitWords, plan: Plan, top: float, botto
     y = start
     for label, text, accent in lines:
         y += _LINE * size
-        drawing.write((plan.margin, y), label, Letters(size=size, colour=LIGHT.soft))
+        if label:
+            drawing.write((plan.margin, y), label, Letters(size=size, colour=LIGHT.soft))
         letters = Letters(size=size, colour=getattr(LIGHT, accent))
         drawing.write((plan.margin + label_width, y), text, letters)
     return start

@@ -141,7 +141,7 @@ class Drawing:
         """
         self.figure.patch.set(visible=True, facecolor=LIGHT.paper)
         canvas: Any = FigureCanvasAgg(self.figure)
-        with matplotlib.rc_context({"text.hinting": "none", "text.hinting_factor": 1}):
+        with matplotlib.rc_context({"text.hinting": "none"}):
             canvas.draw()
         picture = Image.frombuffer("RGBA", canvas.get_width_height(), canvas.buffer_rgba())
         fields, buffer = PngInfo(), io.BytesIO()

@@ -250,7 +250,8 @@ def _least_words(result: BuildResult, locale: str) -> str:
     least = worst_of(found, "efficiency_ratio")
     if least is None or len(found) == 1:
         return ""
-    return f"{spoken_with_interval('efficiency_ratio', least, locale)} on {unbroken(least.band.name)}"
+    figure = spoken_with_interval("efficiency_ratio", least, locale)
+    return f"{figure} on {unbroken(least.band.name)}"
 
 
 def _worst_swr(result: BuildResult, locale: str) -> str:
