@@ -4,66 +4,46 @@ from __future__ import annotations
 
 import json
 import math
-import os
 import re
 import shutil
-import subprocess
-import sys
 from pathlib import Path
 
 import pytest
+from published_examples import HERE, in_a_process
 from small_runs import contents, write_runs
 from write_goldens import EXAMPLE_RUNS, GOLDENS, golden_of
 
 from reportgen.model import OUTPUT_MARKER
 
 KEYS = sorted(path.stem for path in GOLDENS.glob("*.json"))
-OF_A_BUILD = {"report.html", "report.pdf", "results.json", "bands.csv", "curves.csv"}
+OF_A_BUILD = {
+    "report.html", "report.pdf", "results.json", "bands.csv", "curves.csv",
+    "card.pdf", "card.png", "card-square.png", "listing.md", "listing.html", "listing.txt",
+}  # fmt: skip
 TOLERANCE, TOLERANCE_OF_DRAWN = 1e-4, 1e-3
 TOLERANCE_OF_ADVICE = 0.1  # a guess at sweeps that were not taken; rounding is amplified in it
-HERE = {"jobs": 1, "PYTHONHASHSEED": "1", "TZ": "UTC", "LC_ALL": "C"}
 ELSEWHERE = {"jobs": 2, "PYTHONHASHSEED": "2", "TZ": "Pacific/Auckland", "LC_ALL": "C.UTF-8"}
 FINDING = re.compile(r"  (error|warning|note) +\S.*|[a-z0-9-]+")
 
 
-def in_a_process(
-    runs: Path, out: Path, jobs: int, **environment: str
-) -> subprocess.CompletedProcess:
-    """A run of its own, with every Python warning an error."""
-    command = ["-W", "error", "-m", "reportgen", "publish", str(runs), "--out", str(out)]
-    return subprocess.run(
-        [sys.executable, *command, "--jobs", str(jobs)],
-        env=os.environ | environment,
-        capture_output=True,
-        text=True,
-        check=False,
-    )
-
-
-@pytest.fixture(scope="module")
-def run(tmp_path_factory) -> tuple[subprocess.CompletedProcess, Path]:
-    out = tmp_path_factory.mktemp("first") / "published"
-    return in_a_process(EXAMPLE_RUNS, out, **HERE), out
-
-
-def test_all_published_and_nothing_said_but_findings(run) -> None:
-    done, out = run
+def test_all_published_and_nothing_said_but_findings(published) -> None:
+    done, out = published
     assert (done.returncode, done.stdout) == (
         0, f"{len(KEYS)} of {len(KEYS)} builds published; open {out / 'index.html'}\n"
     )  # fmt: skip
     assert [line for line in done.stderr.splitlines() if not FINDING.fullmatch(line)] == []
 
 
-def test_files_that_are_published(run) -> None:
+def test_files_that_are_published(published) -> None:
     files = {f"{key}/{name}" for key in KEYS for name in OF_A_BUILD}
-    assert set(contents(run[1])) == files | {
+    assert set(contents(published[1])) == files | {
         OUTPUT_MARKER, "index.html", "results.csv", "manifest.json"
     }  # fmt: skip
 
 
 @pytest.mark.parametrize("key", KEYS)
-def test_figures_are_those_kept(run, key: str) -> None:
-    found = golden_of(json.loads((run[1] / key / "results.json").read_bytes()))
+def test_figures_are_those_kept(published, key: str) -> None:
+    found = golden_of(json.loads((published[1] / key / "results.json").read_bytes()))
     kept = json.loads((GOLDENS / f"{key}.json").read_bytes())
     assert list(differences(found, kept)) == []
 
@@ -95,14 +75,14 @@ def test_the_comparison_of_figures_sees_a_difference() -> None:
     assert len(list(differences({"a": []}, kept))) == 1
 
 
-def test_builds_give_the_same_bytes_from_elsewhere(run, tmp_path: Path) -> None:
+def test_builds_give_the_same_bytes_from_elsewhere(published, tmp_path: Path) -> None:
     """Another folder, process, number of workers, hash seed, time zone and language."""
     runs, out = tmp_path / "copied here", tmp_path / "elsewhere"
     for build in ("alder", "cedar", "portable/elder"):
         shutil.copytree(EXAMPLE_RUNS / build, runs / build)
     shutil.copy(EXAMPLE_RUNS / "runs.toml", runs)
     assert in_a_process(runs, out, **ELSEWHERE).returncode == 0
-    first, second = contents(run[1]), contents(out)
+    first, second = contents(published[1]), contents(out)
     pages = [name for name in second if "/" in name]
     assert len(pages) == 3 * len(OF_A_BUILD)
     assert [name for name in pages if first[name] != second[name]] == []
@@ -121,7 +101,7 @@ def test_everything_is_the_same_bytes_from_elsewhere(tmp_path: Path) -> None:
 
 
 @pytest.mark.parametrize("name", ["index.html", *(f"{key}/report.html" for key in KEYS)])
-def test_pages_tell_nothing_of_the_machine(run, name: str) -> None:
-    text = (run[1] / name).read_text("utf-8")
+def test_pages_tell_nothing_of_the_machine(published, name: str) -> None:
+    text = (published[1] / name).read_text("utf-8")
     assert str(EXAMPLE_RUNS.parent) not in text
     assert not re.search(r"\b(nan|NaN|None|Infinity)\b", re.sub(r"data:[^\"]*", "", text))
