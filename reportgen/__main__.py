@@ -85,6 +85,7 @@ def _parser() -> argparse.ArgumentParser:
     _add_inspect(commands)
     _add_table(commands)
     _add_forecast(commands)
+    _add_follow(commands)
     _add_sidecar(commands)
     _add_schema(commands)
     return parser
@@ -153,6 +154,20 @@ def _add_forecast(commands: argparse._SubParsersAction[argparse.ArgumentParser])
     forecast = commands.add_parser("forecast", help=text, description=text)
     forecast.add_argument("build", metavar="BUILD", type=Path, help="a build folder")
     forecast.set_defaults(command=_forecast)
+
+
+def _add_follow(commands: argparse._SubParsersAction[argparse.ArgumentParser]) -> None:
+    text = "publish, and publish again when a file changes, until Ctrl-C"
+    follow = commands.add_parser("follow", help=text, description=text)
+    follow.add_argument("runs", metavar="RUNS", type=Path, help="folder of build folders")
+    follow.add_argument(
+        "--out",
+        type=Path,
+        default=Path("published"),
+        help="where the pages go (default: ./published)",
+    )
+    follow.add_argument("--baseline", metavar="KEY", help="build to compare with")
+    follow.set_defaults(command=_follow)
 
 
 def _add_sidecar(commands: argparse._SubParsersAction[argparse.ArgumentParser]) -> None:
@@ -288,6 +303,28 @@ def _forecast(options: argparse.Namespace) -> int:
             "units back to back, or one with its high side open and shorted"
         )
     print_forecast(_console(), forecast, runs.bench.locale)
+    return DONE
+
+
+def _follow(options: argparse.Namespace) -> int:
+    from reportgen.follow import Told, Watch, follow
+    from reportgen.pipeline import Request, publish
+
+    console = _console()
+
+    def publish_once(request: Request) -> Outcome:
+        with _progress(console) as announce:
+            return publish(request, announce)
+
+    # no workers: they would import everything anew each time, and each would hear Ctrl-C by itself
+    request = Request(runs=options.runs, out=options.out, baseline=options.baseline)
+    told = Told(console, request)
+    try:
+        told.line(f"publishing {options.runs}, and again after each change; Ctrl-C ends it")
+        watch = Watch(options.runs, tell=told.line)
+        follow(request, publish=publish_once, report=told.round, watch=watch)
+    except KeyboardInterrupt:
+        told.line("stopped; what was published stands")
     return DONE
 
 

@@ -16,7 +16,10 @@ TOP_LEVEL = {
 }  # fmt: skip
 # each layer may import those behind it; `reportgen` itself holds nothing but the version
 ARROWS = {
-    "__main__": {"pipeline", "sidecars", "pages", "output", "model", "errors", "reportgen"},
+    "__main__": {
+        "follow", "pipeline", "sidecars", "pages", "output", "model", "errors", "reportgen",
+    },
+    "follow": {"pipeline", "intake", "pages", "published", "model", "errors"},
     "sidecars": {"intake", "pages", "output", "physics", "model", "errors"},
     "pipeline": {
         "every_build", "index_files", "one_build", "intake", "output", "physics", "model",
