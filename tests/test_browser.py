@@ -56,7 +56,7 @@ def test_a_page_that_fetches_and_fails_is_noticed(context, tmp_path) -> None:
         "<p style='position:absolute;left:380px;white-space:nowrap'>reaches beyond</p>"
         "<p style='position:absolute;left:380px;white-space:nowrap'>lies upon it</p>"
         "<div style='width:9px;height:1.2em;overflow:hidden;white-space:nowrap'>too long</div>"
-        "<div class='unnamed' style='width:9px;height:99px;overflow:auto;white-space:nowrap'>too long</div>"
+        "<div class='unnamed' style='width:9px;overflow:auto;white-space:nowrap'>too long</div>"
     )
     bad = open_page(context, path)
     bad.show(width=390)

@@ -71,11 +71,36 @@ def _set_page(page: str, pictures: Mapping[str, str], paper: str) -> tuple[bytes
     with _complaints() as complaints:
         document = weasyprint.HTML(string=page, base_url=None, url_fetcher=fetcher)
         pdf = document.write_pdf(
-            stylesheets=styles, font_config=_font_configuration(), pdf_variant="pdf/ua-1"
+            stylesheets=styles,
+            font_config=_font_configuration(),
+            pdf_variant="pdf/ua-1",
+            finisher=_mend_tags,
         )
     if fetcher.refused:
         raise OutputError(f"the page asks for {fetcher.refused[0]!r}, which is not part of it")
     return bytes(pdf), complaints
+
+
+def _mend_tags(_: Any, pdf: Any) -> None:
+    """Heads of tables by their scope, and lists in lists where the renderer groups items.
+
+    Its own links from cells to heads go astray below a head that spans rows.
+    """
+    for element in pdf.objects:
+        kind = element.get("S") if isinstance(element, dict) else None
+        if kind == "/TH":
+            group = _parent(pdf, _parent(pdf, element))
+            element["A"]["Scope"] = "/Column" if group["S"] == "/THead" else "/Row"
+            element.pop("ID", None)
+        elif kind == "/TD":
+            element["A"].pop("Headers", None)
+        elif kind == "/Div" and _parent(pdf, element)["S"] == "/L":
+            element["S"] = "/L"
+
+
+def _parent(pdf: Any, element: Any) -> Any:
+    number, _, _ = element["P"].split()  # a reference: "12 0 R"
+    return pdf.objects[int(number)]
 
 
 @cache
