@@ -39,7 +39,7 @@ class Page(HTMLParser):
         assert self.open.pop() == tag
 
     def handle_data(self, data):
-        if "style" not in self.open and "svg" not in self.open:
+        if not {"style", "svg", "script"} & set(self.open):
             self.words.append(data)
 
     def all(self, tag: str) -> list[dict[str, str | None]]:

@@ -247,8 +247,8 @@ def test_index_shows_intervals_verdicts_and_limits():
     one = sure()
     comparison = samples.comparison(one, BASELINE, judged=True)
     text = Page(index(rows=[published(one, comparison), published(BASELINE)])).text
-    assert re.search(r"87\.\d\d ± 0\.\d\d 0\.\d\d\d ± 0\.0\d\d", text)
-    assert "better on 10 fail PDF" in text
+    assert re.search(r"87\.\d\d ± 0\.\d\d 8\d\.\d ± \d\.\d 10 m", text)
+    assert "better on 10 fail 10 m PDF" in text
     assert "is the baseline no limits PDF" in text
 
 

@@ -1,5 +1,7 @@
 """What every page must hold, and what none may."""
 
+import base64
+import hashlib
 import re
 from dataclasses import replace
 from itertools import pairwise
@@ -26,9 +28,10 @@ def test_elements_are_balanced(pages):
     assert all(page.open == [] for page in pages.values())
 
 
-def test_no_script_and_nothing_from_elsewhere(sources, pages):
+def test_nothing_from_elsewhere_and_no_script_but_that_of_the_index(sources, pages):
     for name, page in pages.items():
-        assert not {tag for tag, _ in page.elements} & {"script", "iframe", "object", "link", "img"}
+        assert not {tag for tag, _ in page.elements} & {"iframe", "object", "link", "img"}
+        assert page.all("script") == ([{}] if name == "index" else [])
         for tag, attributes in page.elements:
             for attribute, value in attributes.items():
                 assert not attribute.startswith("on"), (name, tag)
@@ -40,9 +43,18 @@ def test_no_script_and_nothing_from_elsewhere(sources, pages):
 
 def test_the_policy_forbids_what_is_not_needed(pages):
     expected = "default-src 'none'; img-src data:; style-src 'unsafe-inline'; font-src data:"
-    for page in pages.values():
-        metas = page.all("meta")
-        assert {"http-equiv": "Content-Security-Policy", "content": expected} in metas
+    for name, page in pages.items():
+        (policy,) = [one["content"] for one in page.all("meta") if "http-equiv" in one]
+        assert policy.startswith(expected)
+        assert (policy == expected) is (name != "index")
+
+
+def test_the_policy_of_the_index_names_its_one_script(sources, pages):
+    """CSP Level 3, section 2.3.1: the digest is of the text between the tags, base64."""
+    (script,) = re.findall(r"<script>(.*?)</script>", sources["index"], re.DOTALL)
+    digest = base64.b64encode(hashlib.sha256(script.encode()).digest()).decode()
+    (policy,) = [one["content"] for one in pages["index"].all("meta") if "http-equiv" in one]
+    assert policy.endswith(f"; script-src 'sha256-{digest}'")
 
 
 def test_no_placeholder_for_a_missing_figure_is_ever_printed(pages):

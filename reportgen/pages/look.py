@@ -52,7 +52,7 @@ DARK = Scheme(
 )
 
 # Strength of the heat colour behind a figure, least to most, per cent. Text stays above 4.5 to 1.
-TINTS = (0, 7, 13, 19, 26)
+TINTS = (0, 10, 20, 31, 42)
 
 
 def scheme_names() -> tuple[str, ...]:

@@ -26,6 +26,8 @@ _INVISIBLE_RANGES = (
     (0xFFA0, 0xFFA0),
     (0xE0000, 0xE0FFF),
 )
+# Most text: nothing in it needs a closer look, which takes long.
+_PLAIN = re.compile("[ -~\u00a0-\u00ac\u00ae-\u017f\u2007\u2009\u2013\u2212]*")
 _BLANKS = re.compile(r"[\t\r\n\f\v ]+")
 _LINE_END = re.compile(r"\r\n?|\n")
 _STACKED_MARKS = 3
@@ -41,6 +43,8 @@ def clean_text(text: str) -> str:
     """
     cut = text if len(text) <= LONGEST_TEXT else text[: LONGEST_TEXT - 1] + "…"
     composed = unicodedata.normalize("NFC", _BLANKS.sub(" ", cut))
+    if _PLAIN.fullmatch(composed):
+        return composed.strip(" ")
     return "".join(_visible(_unpiled(composed))).strip(" ")
 
 
