@@ -258,6 +258,7 @@ def test_all_that_is_out_of_use_in_a_build_can_be_used(tmp_path: Path) -> None:
     assert [part.quantity for part in sheet.part] == [1]
     assert sheet.record["operator"] == "bench 1"
     assert sheet.match.load_ohm == 3200
+    assert sheet.compensation.capacitor_pf == 82
     assert sheet.loads["main"].stray_pf == "fit"
 
 

@@ -40,9 +40,12 @@ _HEAD = (
     "with # and no blank is out of use: take the # away to use it."
 )
 _REPEATED = frozenset(Setup) - {Setup.ANTENNA, Setup.SPOT, Setup.THRU_CHECK}
+_CAPACITOR = (
+    "ENTER where there is a capacitor: without this table there is none, and one that is not said "
+    "can cost 0.2 dB"
+)
 _OPTIONAL: tuple[tuple[str, type[Sheet], str], ...] = (
     ("[core]", Core, "the ring: without it no flux, no surface heat and no permeability"),
-    ("[compensation]", Compensation, "the capacitor: without it there is none"),
     (
         "[match]",
         Match,
@@ -78,6 +81,7 @@ def build_starter(found: Found, bench: BenchSheet) -> Starter:
         *entry("name", _name(found.folder), "from the folder's name"),
         *optional_keys(BuildSheet, "summary", "measured_on", "notes"),
         *_winding(found, bench),
+        *optional_table("[compensation]", Compensation, _CAPACITOR),
         *(line for number, one in enumerate(found.sweeps, 1) for line in plan.sweep(one, number)),
         *(line for file in found.spots for line in plan.spot(file)),
         *plan.own_loads(),

@@ -79,6 +79,7 @@ def words_of(written: Written) -> Iterator[str]:
     for name, (_, words) in zip(names, rows, strict=True):
         yield f"  {name:<{width}}  {clean_text(words)}"
     yield f"to be entered: {', '.join(written.to_enter)}"
+    yield "and [compensation], where there is a capacitor"
     yield f"then: reportgen table {clean_text(str(written.path.parent))}"
     if not written.has_bench:
         yield (
