@@ -8,7 +8,7 @@ from pathlib import Path
 
 import pytest
 from hypothesis import settings
-from opened_pages import Opened, open_page
+from opened_pages import Opened, is_whole, open_page, pasted
 
 for name in ("OPENBLAS_NUM_THREADS", "OMP_NUM_THREADS", "MKL_NUM_THREADS"):
     os.environ.setdefault(name, "1")  # workers share the cores; before numpy is imported
@@ -69,8 +69,16 @@ def context(chromium):
 def pages(published, context) -> dict[str, Opened]:
     """Every page that was published, opened, by its path."""
     folder = published[1]
-    found = sorted(folder.rglob("*.html"))
+    found = [path for path in sorted(folder.rglob("*.html")) if is_whole(path)]
     return {path.relative_to(folder).as_posix(): open_page(context, path) for path in found}
+
+
+@pytest.fixture(scope="session")
+def listings(published, tmp_path_factory) -> dict[str, Path]:
+    """Pages with each listing that was published pasted into it, by the build."""
+    folder = tmp_path_factory.mktemp("pasted")
+    found = sorted(published[1].rglob("listing.html"))
+    return {path.parent.name: pasted(path, folder) for path in found}
 
 
 def missing(what: str) -> None:

@@ -28,6 +28,23 @@ class Opened:
         return self.page.evaluate(f"measures.{what}()")
 
 
+def is_whole(path: Path) -> bool:
+    """A page, and not a piece to be pasted into one."""
+    return path.read_text("utf-8").startswith("<!doctype html>")
+
+
+def pasted(piece: Path, into: Path) -> Path:
+    """A page of somebody else's with a piece pasted into it."""
+    page = into / f"{piece.parent.name}.html"
+    page.write_text(
+        '<!doctype html><html lang="en"><head><meta charset="utf-8"><title>Kit</title>'
+        '<meta name="viewport" content="width=device-width, initial-scale=1"></head>'
+        f"<body><main><h1>Kit</h1>{piece.read_text('utf-8')}</main></body></html>",
+        "utf-8",
+    )
+    return page
+
+
 def open_page(context: Any, path: Path) -> Opened:
     """A page once its letters are there; listened to from the start."""
     opened = Opened(page=context.new_page())

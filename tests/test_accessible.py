@@ -66,6 +66,12 @@ def test_no_rule_is_broken(pages, axe) -> None:
         assert violations(opened, axe, "tag", STANDARDS, color_contrast=False) == [], name
 
 
+def test_no_rule_is_broken_by_a_listing(listings, context, axe) -> None:
+    opened = open_page(context, listings["alder"])
+    assert violations(opened, axe, "tag", STANDARDS) == []
+    opened.page.close()
+
+
 def test_a_telephone_can_be_used(pages, axe) -> None:
     for name, opened in pages.items():
         opened.show(width=390)
