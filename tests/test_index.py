@@ -16,13 +16,12 @@ from reportgen.pages.heat_grid import heat_grid, tint_edges
 from reportgen.pages.look import TINTS
 from reportgen.pages.ranking import (
     FIGURES,
-    against_words,
     lines,
     ranked,
     shared_bands,
     shared_words,
-    standing,
 )
+from reportgen.pages.standing import against_words, standing
 
 
 @pytest.fixture(scope="module")

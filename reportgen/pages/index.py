@@ -14,20 +14,22 @@ from reportgen.pages.html import page_script, page_style
 from reportgen.pages.particulars import FindingText, finding_texts
 from reportgen.pages.ranking import (
     FIGURES,
-    JUDGEMENTS,
-    STANDINGS,
     Heading,
     Line,
-    limits_sentence,
     lines,
     mean_efficiency,
     mean_efficiency_text,
     ranked,
     shared_bands,
     shared_words,
-    standings_sentence,
 )
 from reportgen.pages.sentences import counted, listed
+from reportgen.pages.standing import (
+    JUDGEMENTS,
+    STANDINGS,
+    limits_sentence,
+    standings_sentence,
+)
 from reportgen.pages.templates import read_style, render
 from reportgen.published import PublishedBuild
 
@@ -115,7 +117,10 @@ def render_index_html(
     builds = ranked(rows, shared)
     baseline = next((build.name for build in builds if build.key == baseline_key), "")
     ranking = lines(builds, shared, baseline_key, bench.locale)
-    sentences = (standings_sentence(ranking, baseline), limits_sentence(ranking))
+    sentences = (
+        standings_sentence((line.standing for line in ranking), baseline),
+        limits_sentence(line.judgement for line in ranking),
+    )
     page = IndexPage(
         title=bench.title,
         publisher=bench.publisher,

@@ -2,15 +2,15 @@
 
 from __future__ import annotations
 
-from collections import Counter
 from collections.abc import Callable, Sequence
 from dataclasses import dataclass, replace
 
-from reportgen.model import Comparison, Judgement, Verdict
+from reportgen.model import Judgement
 from reportgen.pages.display import DASH, NOT_MEASURED, aligned, entered, with_unit
 from reportgen.pages.intervals import with_interval
 from reportgen.pages.limits import limits_short
 from reportgen.pages.sentences import listed
+from reportgen.pages.standing import against_words, standing
 from reportgen.pages.summary import (
     BandValue,
     interval_over_bands,
@@ -257,63 +257,3 @@ def _limits_shown(build: PublishedBuild) -> Shown:
     decisive = word in (Judgement.FAIL, Judgement.UNDECIDED)
     where = next(iter(found), "") if len(found) == 1 else f"{len(found)} of {every} bands"
     return Shown(text=word, note=where if decisive else "")
-
-
-# --- against the baseline ------------------------------------------------------------------------
-
-STANDINGS = {
-    "better": "better",
-    "mixed": "better here, worse there",
-    "same": "the same",
-    "worse": "worse",
-    "unknown": "not compared",
-}
-"""How a build may stand against the baseline: in a word, and as it is said."""
-
-JUDGEMENTS = ("pass", "pass in part", "undecided", "fail", "not judged", "no limits")
-"""What may be said of a build's limits."""
-
-_SAID = {Verdict.BETTER: "better", Verdict.SAME: "same", Verdict.WORSE: "worse"}
-
-
-def standing(comparison: Comparison | None) -> str:
-    """One of `STANDINGS`: better or worse on some band, and not the other on any."""
-    verdicts = {band.verdict for band in comparison.bands} if comparison else set()
-    better, worse = Verdict.BETTER in verdicts, Verdict.WORSE in verdicts
-    if better or worse:
-        return "mixed" if better and worse else "better" if better else "worse"
-    return "same" if Verdict.SAME in verdicts else "unknown"
-
-
-def against_words(comparison: Comparison | None) -> str:
-    """On how many bands a build is better, the same and worse."""
-    if comparison is None:
-        return "no baseline"
-    counts = Counter(band.verdict for band in comparison.bands)
-    if any(counts[verdict] for verdict in _SAID):
-        return ", ".join(
-            f"{word} on {counts[verdict]}" for verdict, word in _SAID.items() if counts[verdict]
-        )
-    differences = [band.heat_loss_db for band in comparison.bands if band.heat_loss_db is not None]
-    if not differences:
-        return "not comparable"
-    less = sum(difference < 0 for difference in differences)
-    return f"less loss on {less} of {len(differences)}, not judged"
-
-
-def standings_sentence(lines: Sequence[Line], baseline: str) -> str:
-    """How many builds stand how against the baseline; empty where none was compared."""
-    counts = Counter(line.standing for line in lines)
-    if not any(counts[one] for one in STANDINGS if one != "unknown"):
-        return ""
-    parts = [f"{counts[one]} {words}" for one, words in STANDINGS.items() if counts[one]]
-    return f"Against the baseline {baseline}: {', '.join(parts)}."
-
-
-def limits_sentence(lines: Sequence[Line]) -> str:
-    """How many builds keep to the workshop's limits; empty where it set none."""
-    counts = Counter(line.judgement for line in lines if line.judgement != "no limits")
-    if not counts:
-        return ""
-    parts = [f"{counts[one]} {one}" for one in JUDGEMENTS if counts[one]]
-    return f"Limits: {', '.join(parts)}."
