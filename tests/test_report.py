@@ -290,3 +290,13 @@ def test_foreign_names_in_both_sections_are_escaped():
     source = page_of(heat.with_split(found), told)
     assert "<script>alert" not in source
     assert source.count("&lt;script&gt;alert") >= 4
+
+
+def test_every_set_up_used_is_drawn_once(pages):
+    """With its name below and the same in words for those who do not see it."""
+    page = pages["full"]
+    drawn = [one for one in page.all("div") if one.get("class") == "circuit"]
+    used = {entry.entry.setup for entry in CASES["full"][0].build.measurements}
+    assert len(drawn) == len(used)
+    assert all(one["role"] == "img" and len(one["aria-label"]) > 40 for one in drawn)
+    assert page.text.index("Back to back") < page.text.index("Sweeps, and how they were taken.")

@@ -14,6 +14,7 @@ from reportgen.model import (
     Finding,
     Load,
     Measurement,
+    Setup,
     SweepEntry,
 )
 from reportgen.pages.display import bandwidth_range, entered, with_unit
@@ -49,6 +50,11 @@ def setups_table(build: Build, bench: BenchSheet) -> Table | None:
     rows = [_setup_row(measurement, bench) for measurement in build.measurements]
     labels = ("Set-up", "Unit", "Load", "Calibration")
     return _words_table("Sweeps, and how they were taken.", "File", labels, rows)
+
+
+def setups_of(build: Build) -> tuple[Setup, ...]:
+    """The set-ups used, each once, in the order of the sweeps."""
+    return tuple(dict.fromkeys(one.entry.setup for one in build.measurements))
 
 
 def _setup_row(measurement: Measurement, bench: BenchSheet) -> tuple[str, ...]:

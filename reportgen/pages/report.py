@@ -29,12 +29,14 @@ from reportgen.pages.particulars import (
     finding_texts,
     inputs_table,
     parts_table,
+    setups_of,
     setups_table,
 )
 from reportgen.pages.pdf import write_pdf
 from reportgen.pages.plain_text import text_lines
 from reportgen.pages.power import PowerPage, power_of, power_verdict
 from reportgen.pages.predictions import Predictions, predictions_of
+from reportgen.pages.setup_diagram import draw_setup, setup_picture
 from reportgen.pages.summary import is_simulated, limits_by_quantity
 from reportgen.pages.tables import Table
 from reportgen.pages.templates import render
@@ -86,6 +88,7 @@ class ReportPage:
     predictions: Predictions | None
     method_name: str
     method_words: str
+    circuits: tuple[Picture, ...]
     setups: Table | None
     fitted: tuple[str, ...]
     methods: Table | None
@@ -117,18 +120,25 @@ def render_report_html(
 ) -> str:
     """The report as one page that needs neither a network nor a script."""
     charts = _charts(result, baseline, bench, forecast)
-    pictures = {
-        name: Picture(
-            name=name,
-            title=chart.title,
-            alt=chart.alt,
-            wide=inline_svg(chart.svg, f"{name}-wide"),
-            narrow=inline_svg(chart.narrow_svg, f"{name}-narrow"),
-        )
-        for name, chart in charts.items()
-    }
+    pictures = {name: _inline(chart) for name, chart in charts.items()}
     page = _page(result, comparison, baseline, bench, pictures, program_version, forecast)
     return render("report.html", page=page, paper=False, style=page_style())
+
+
+def _inline(chart: Chart) -> Picture:
+    return Picture(
+        name=chart.name,
+        title=chart.title,
+        alt=chart.alt,
+        wide=inline_svg(chart.svg, f"{chart.name}-wide"),
+        narrow=inline_svg(chart.narrow_svg, f"{chart.name}-narrow"),
+    )
+
+
+def _fetched(chart: Chart) -> Picture:
+    """A chart that paper fetches by its name."""
+    nothing = Markup()
+    return Picture(name=chart.name, title=chart.title, alt=chart.alt, wide=nothing, narrow=nothing)
 
 
 def render_report_pdf(
@@ -148,13 +158,9 @@ def render_report_pdf(
         The page could not be set without a complaint.
     """
     charts = _charts(result, baseline, bench, forecast)
-    nothing = Markup()
-    pictures = {
-        name: Picture(name=name, title=chart.title, alt=chart.alt, wide=nothing, narrow=nothing)
-        for name, chart in charts.items()
-    }
+    pictures = {name: _fetched(chart) for name, chart in charts.items()}
     page = _page(result, comparison, baseline, bench, pictures, program_version, forecast)
-    text = render("report.html", page=page, paper=True, style=nothing)
+    text = render("report.html", page=page, paper=True, style=Markup())
     return write_pdf(text, {name: chart.svg for name, chart in charts.items()}, bench.paper)
 
 
@@ -192,6 +198,7 @@ def _page(
         ),
         method_name=METHOD_NAMES[result.chosen.method],
         method_words=_method_words(result, locale),
+        circuits=tuple(pictures[setup_picture(one)] for one in setups_of(result.build)),
         setups=setups_table(result.build, bench),
         fitted=tuple(fitted_sentence(one, locale) for one in result.fitted),
         methods=methods_table(result, locale),
@@ -256,7 +263,8 @@ def _charts(
 ) -> dict[str, Chart]:
     swr, efficiency = (_limits(result, bench, key) for key in ("swr", "efficiency_ratio"))
     capacitor = None if forecast is None else forecast.capacitor
-    return _drawn(result, baseline, swr, efficiency, capacitor, bench.locale)
+    charts = _drawn(result, baseline, swr, efficiency, capacitor, bench.locale)
+    return charts | {setup_picture(one): draw_setup(one) for one in setups_of(result.build)}
 
 
 def _limits(result: BuildResult, bench: BenchSheet, key: str) -> _Limits:

@@ -27,6 +27,11 @@ _ARC = {"low": (3, 5.0), "high": (4, 6.0)}
 Place = tuple[float, float]
 
 
+def setup_picture(setup: Setup) -> str:
+    """Name of the picture of a set-up."""
+    return f"setup-{setup.value}"
+
+
 @cache
 def draw_setup(setup: Setup) -> Chart:
     """The circuit of a set-up with a title and the same in words; wide and narrow are one."""
@@ -38,7 +43,7 @@ def draw_setup(setup: Setup) -> Chart:
     )
     title = SETUP_NAMES[setup]
     title = title[0].upper() + title[1:]
-    return Chart(name=f"setup-{setup.value}", title=title, alt=alt, svg=svg, narrow_svg=svg)
+    return Chart(name=setup_picture(setup), title=title, alt=alt, svg=svg, narrow_svg=svg)
 
 
 # --- pen ---------------------------------------------------------------------------------------
