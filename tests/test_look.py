@@ -14,6 +14,7 @@ from itertools import combinations
 import numpy as np
 import pytest
 
+from reportgen.pages import look
 from reportgen.pages.look import DARK, LIGHT, TINTS, Scheme, style_variables, tint
 
 SCHEMES = pytest.mark.parametrize("scheme", [LIGHT, DARK], ids=["light", "dark"])
@@ -101,6 +102,19 @@ def test_text_and_lines_stand_out(scheme: Scheme):
 def test_series_of_a_chart_differ_for_every_eye(scheme: Scheme, eye: str):
     colours = [getattr(scheme, name) for name in SERIES]
     assert min(distance(*pair, eye) for pair in combinations(colours, 2)) >= LEAST_DISTANCE
+
+
+@SCHEMES
+@pytest.mark.parametrize("eye", SEEN_BY)
+def test_builds_on_common_axes_differ_for_every_eye(scheme: Scheme, eye: str):
+    colours = [getattr(scheme, series.colour) for series in look.SERIES]
+    assert min(contrast(colour, scheme.paper) for colour in colours) >= 3
+    assert min(distance(*pair, eye) for pair in combinations(colours, 2)) >= LEAST_DISTANCE
+
+
+def test_builds_on_common_axes_differ_without_colour():
+    assert len({series.dash for series in look.SERIES}) == len(look.SERIES)
+    assert len({series.marker for series in look.SERIES}) == len(look.SERIES)
 
 
 @SCHEMES

@@ -28,6 +28,12 @@ class Scheme:
     heat: str
     match: str
     baseline: str
+    series_1: str
+    series_2: str
+    series_3: str
+    series_4: str
+    series_5: str
+    series_6: str
 
 
 LIGHT = Scheme(
@@ -39,6 +45,12 @@ LIGHT = Scheme(
     heat="#a8400f",
     match="#1e5f8c",
     baseline="#6a6e74",
+    series_1="#1e5f8c",
+    series_2="#a8400f",
+    series_3="#029d64",
+    series_4="#9070e1",
+    series_5="#3a2e09",
+    series_6="#64034d",
 )
 DARK = Scheme(
     paper="#16181a",
@@ -49,6 +61,34 @@ DARK = Scheme(
     heat="#f2995f",
     match="#74b9ea",
     baseline="#9ca1a7",
+    series_1="#74b9ea",
+    series_2="#f2995f",
+    series_3="#abd6aa",
+    series_4="#857ee7",
+    series_5="#877508",
+    series_6="#b7669a",
+)
+
+
+@dataclass(frozen=True, kw_only=True, slots=True)
+class Series:
+    """How one of several builds on common axes is drawn, each of the three by itself enough.
+
+    `colour` names a colour of the schemes; `dash` is on, off, on ... in line widths, empty: solid.
+    """
+
+    colour: str
+    dash: tuple[float, ...]
+    marker: str
+
+
+SERIES = (
+    Series(colour="series_1", dash=(), marker="o"),
+    Series(colour="series_2", dash=(5, 1.6), marker="s"),
+    Series(colour="series_3", dash=(1.2, 1.4), marker="^"),
+    Series(colour="series_4", dash=(7, 1.6, 1.2, 1.6), marker="D"),
+    Series(colour="series_5", dash=(2.6, 1.4), marker="v"),
+    Series(colour="series_6", dash=(9, 1.6, 1.2, 1.6, 1.2, 1.6), marker="X"),
 )
 
 # Strength of the heat colour behind a figure, least to most, per cent. Text stays above 4.5 to 1.
