@@ -171,7 +171,7 @@ def measure_folder(path: Path) -> tuple[Measured, Runs]:
     """
     from reportgen.physics.measure import measure
 
-    runs, folder = _find_build(path)
+    runs, folder = find_build(path)
     return measure(read_build(runs, folder), runs.bench, runs.bands), runs
 
 
@@ -218,7 +218,14 @@ def _refuse_tangle(out: Path, runs: Runs) -> None:
             raise UsageError(f"--out {out} lies in the build {folder.folder}; choose another")
 
 
-def _find_build(path: Path) -> tuple[Runs, BuildFolder]:
+def find_build(path: Path) -> tuple[Runs, BuildFolder]:
+    """The runs folder of a build folder, and its place in it.
+
+    Raises
+    ------
+    UsageError
+        It is no build folder.
+    """
     if not (path / "build.toml").is_file():
         raise UsageError(f"{path} holds no build.toml; name the folder of one build")
     place = path.resolve()
