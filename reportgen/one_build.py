@@ -162,10 +162,12 @@ def _not_drawn(error: OutputError) -> Finding:
 def _fault(error: Exception) -> Finding:
     """An error that nobody foresaw, told without a traceback."""
     frame = traceback.extract_tb(error.__traceback__)[-1]
+    # the text of the system's errors holds paths of this machine
+    words = error.strerror if isinstance(error, OSError) else str(error)
     return Finding(
         severity=Severity.ERROR,
         code="fault",
         message=f"a fault of this program: {type(error).__name__} in {Path(frame.filename).name}, "
-        f"line {frame.lineno}: {str(error)[:80]}",
+        f"line {frame.lineno}: {(words or '')[:80]}",
         remedy="please report it with this folder; the other builds are not touched",
     )

@@ -57,6 +57,8 @@ def test_readings_become_half_of_a_through_loss(tmp_path: Path) -> None:
         (b"frequency_mhz,through_loss_db\n7.1,nan\n", "spot-value", 2),
         (b"frequency_mhz,through_loss_db\n7.1,1\n7.1,2\n", "spot-value", 3),
         (b"frequency_mhz,through_loss_db\n-7.1,1\n", "spot-value", 2),
+        (b"frequency_mhz,through_loss_db\n1e-12,1\n", "spot-value", 2),
+        (b"frequency_mhz,through_loss_db\n1e10,1\n", "spot-value", 2),
         (b"", "empty-file", None),
     ],
 )

@@ -21,6 +21,7 @@ CLEAN = {
     "mixed line ends, blank lines": OPTION + "\r\n\n1 0.1 0.2 \r2 0.1 0.2\t\n\n",
     "no line end at the end": OPTION + one_port(1, 2).rstrip("\n"),
     "comment behind the values": OPTION + "1 0.1 0.2 ! first\n",
+    "control characters in a comment": "! \x1b[31m\u202e\x07\n" + OPTION + one_port(1),
     "forged comment": OPTION + "! [Version] 2.0\n! # GHz Z MA R 7\n" + one_port(1),
     "single point": OPTION + one_port(7),
     "minus infinity in DB is zero": "# MHz S DB R 50\n1 -inf 0\n",
@@ -254,6 +255,9 @@ ODD = {
         ["differ by up to 0.4", "at most 0.1"]),
     "0 Hz": (OPTION + one_port(0, 1), {}, "zero-frequency", NOTE, 2, ["0 Hz", "left out"]),
     "0 Hz alone": (OPTION + one_port(0), {}, "no-data", REJECT, 2, ["above 0 Hz"]),
+    "beyond every analyzer": (
+        "# GHz S RI R 50\n" + one_port(1, 1e7), {}, "absurd-frequency", REJECT, 3,
+        ["above 1000000 GHz", "line 3", "unit"]),
     "negative frequency": (
         OPTION + one_port(-1, 1), {}, "negative-frequency", REJECT, 2, ["below 0", "line 2"]),
     # --- one path

@@ -17,6 +17,8 @@ LARGEST_SHARE_OUT_OF_PLACE = 0.05
 LARGEST_SHARE_REPEATED = 0.1
 LARGEST_GAP = 0.1
 """Difference between two readings at one frequency that may be a seam [ratio]."""
+HIGHEST_HZ = 1e15
+"""Frequency above which nothing is swept: that of light [Hz]."""
 
 
 @dataclass(frozen=True, slots=True, eq=False)
@@ -62,7 +64,15 @@ def _holds_one(band: Band, frequency_hz: RealArray) -> bool:
 
 
 def points_above_zero(points: Points, remarks: Remarks) -> Points:
-    """The points without that at 0 Hz; a frequency below 0 is an error."""
+    """The points without that at 0 Hz; a frequency below 0, or one of light, is an error."""
+    beyond = points.lines[points.frequency_hz > HIGHEST_HZ]
+    if len(beyond):
+        remarks.error(
+            "absurd-frequency",
+            f"a frequency above {HIGHEST_HZ / 1e9:.0f} GHz in {listed_lines(beyond)}",
+            "see whether the unit on the option line is right",
+            int(beyond[0]),
+        )
     negative, zero = points.lines[points.frequency_hz < 0], points.lines[points.frequency_hz == 0]
     if len(negative):
         remarks.error(

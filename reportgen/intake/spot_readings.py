@@ -7,6 +7,7 @@ from collections.abc import Iterator
 
 import numpy as np
 
+from reportgen.intake.frequency_axis import HIGHEST_HZ
 from reportgen.intake.number_lines import read_number
 from reportgen.intake.remarks import Remarks, quoted
 from reportgen.intake.sweep_text import decode_text
@@ -79,7 +80,9 @@ def _readings(rows: list[list[str]], remarks: Remarks) -> Iterator[tuple[float, 
             )
             continue
         megahertz, loss_db = (float(value) for value in values if value is not None)
-        if not (0 < megahertz < np.inf and abs(loss_db) < _LOSS_LIMIT_DB) or megahertz in seen:
+        frequency_hz = round(megahertz * 1e6, 3) if abs(megahertz) < HIGHEST_HZ else np.inf
+        usable = 0 < frequency_hz <= HIGHEST_HZ and abs(loss_db) < _LOSS_LIMIT_DB
+        if not usable or frequency_hz in seen:
             remarks.error(
                 "spot-value",
                 f"found {quoted(','.join(row))}, expected a frequency above 0 that stands once, "
@@ -88,5 +91,5 @@ def _readings(rows: list[list[str]], remarks: Remarks) -> Iterator[tuple[float, 
                 line,
             )
             continue
-        seen.add(megahertz)
-        yield round(megahertz * 1e6, 3), loss_db
+        seen.add(frequency_hz)
+        yield frequency_hz, loss_db

@@ -4,6 +4,8 @@ from __future__ import annotations
 
 import csv
 import io
+import re
+import unicodedata
 from collections.abc import Iterator
 
 import pandas as pd
@@ -19,7 +21,9 @@ _OF_A_BAND = ("band", "from_hz", "to_hz", "status", "reason")
 LONG_COLUMNS = ("build", "name", "method", "unit", "chosen", *_OF_A_BAND, "quantity", *OF_A_FIGURE)
 LONG_HEAD = ",".join(LONG_COLUMNS) + "\n"
 
-_FORMULA_STARTS = ("=", "+", "-", "@", "\t", "\r")
+# of a cell, or of a part of one where a spreadsheet takes the semicolon for the separator
+_FORMULA_START = re.compile(r"(^|;)(?=\s*[=+\-@\uff1d\uff0b\uff0d\uff20]|[\t\r\n])")
+_UNSEEN = frozenset({"Cc", "Cf", "Cs", "Co", "Cn", "Zl", "Zp"})
 
 
 def bands_csv(result: BuildResult) -> bytes:
@@ -137,5 +141,9 @@ def _harmless(value: object) -> object:
     """Text in one line, a quote in front where it would start a formula; numbers as they are."""
     if not isinstance(value, str):
         return value
-    guarded = f"'{value}" if value.startswith(_FORMULA_STARTS) else value
-    return guarded.replace("\r", " ").replace("\n", " ")
+    guarded = _FORMULA_START.sub(r"\1'", value)
+    return "".join(" " if _unseen(letter) else letter for letter in guarded)
+
+
+def _unseen(letter: str) -> bool:
+    return letter != "\t" and unicodedata.category(letter) in _UNSEEN
