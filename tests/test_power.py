@@ -26,7 +26,7 @@ def table_of(table) -> dict[str, list[str]]:
 def test_the_answer_names_power_mode_band_bound_and_conditions() -> None:
     found = samples.result(samples.thermal(samples.permitted()))
     assert spaced(power_verdict(found, "en")) == (
-        "It stands 35 W of carrier, least on 80 m, where heat bounds it, with up to 40 °C around "
+        "It stands 35 W of carrier on every band, limited by heat on 80 m, with up to 40 °C around "
         "it and a load SWR of up to 2.5."
     )
     beyond = samples.result(samples.thermal(samples.permitted(extrapolated=True)))

@@ -85,12 +85,12 @@ def power_verdict(result: BuildResult, locale: str) -> str:
     permitted, least = thermal.permitted, thermal.permitted.limiting
     watts = with_unit(no_more_than(least.power_w, locale=locale), "W")
     mode = least.mode if least.duty_percent >= 100 else f"peak in {least.mode}"
-    where = f"least on {unbroken(least.band)}, where" if least.band else "in every band;"
+    where = f" on {unbroken(least.band)}" if least.band else ""
     beyond = " It is an extrapolation, more than twice what was logged." * least.extrapolated
     return (
-        f"It stands {watts} of {mode}, {where} {BOUND_WORDS[least.bound_by]} bounds it, with up "
-        f"to {_celsius(permitted.ambient_max_c, locale)} around it and a load SWR of up to "
-        f"{entered(permitted.load_swr, locale=locale)}.{beyond}"
+        f"It stands {watts} of {mode} on every band, limited by {BOUND_WORDS[least.bound_by]}"
+        f"{where}, with up to {_celsius(permitted.ambient_max_c, locale)} around it and a load SWR "
+        f"of up to {entered(permitted.load_swr, locale=locale)}.{beyond}"
     )
 
 
