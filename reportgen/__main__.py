@@ -85,6 +85,7 @@ def _parser() -> argparse.ArgumentParser:
     _add_inspect(commands)
     _add_table(commands)
     _add_forecast(commands)
+    _add_versus(commands)
     _add_follow(commands)
     _add_sidecar(commands)
     _add_schema(commands)
@@ -154,6 +155,19 @@ def _add_forecast(commands: argparse._SubParsersAction[argparse.ArgumentParser])
     forecast = commands.add_parser("forecast", help=text, description=text)
     forecast.add_argument("build", metavar="BUILD", type=Path, help="a build folder")
     forecast.set_defaults(command=_forecast)
+
+
+def _add_versus(commands: argparse._SubParsersAction[argparse.ArgumentParser]) -> None:
+    text = "put two to six builds on common axes, the others compared with the first"
+    versus = commands.add_parser("versus", help=text, description=text)
+    versus.add_argument("builds", metavar="BUILD", type=Path, nargs="+", help="a build folder")
+    versus.add_argument(
+        "--out",
+        type=Path,
+        default=Path("versus.html"),
+        help="the page, its PDF goes beside it (default: ./versus.html)",
+    )
+    versus.set_defaults(command=_versus)
 
 
 def _add_follow(commands: argparse._SubParsersAction[argparse.ArgumentParser]) -> None:
@@ -343,6 +357,14 @@ def _schema(options: argparse.Namespace) -> int:
     from reportgen.sidecars.schema import schema_text
 
     print(schema_text(options.of))
+    return DONE
+
+
+def _versus(options: argparse.Namespace) -> int:
+    from reportgen.versus import write_versus
+
+    page, pdf = write_versus(options.builds, options.out)
+    print(f"{page} and {pdf} written")
     return DONE
 
 

@@ -17,7 +17,12 @@ TOP_LEVEL = {
 # each layer may import those behind it; `reportgen` itself holds nothing but the version
 ARROWS = {
     "__main__": {
-        "follow", "pipeline", "sidecars", "pages", "output", "model", "errors", "reportgen",
+        "follow", "versus", "pipeline", "sidecars", "pages", "output", "model", "errors",
+        "reportgen",
+    },
+    "versus": {
+        "pipeline", "intake", "pages", "output", "physics", "published", "model", "errors",
+        "reportgen",
     },
     "follow": {"pipeline", "intake", "pages", "published", "model", "errors"},
     "sidecars": {"intake", "pages", "output", "physics", "model", "errors"},

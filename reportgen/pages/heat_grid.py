@@ -30,7 +30,7 @@ class Sign:
     words: str
 
 
-_SIGNS = {
+SIGNS = {
     Verdict.BETTER: Sign(glyph="\u25bc", words="less loss"),
     Verdict.SAME: Sign(glyph="=", words="the same within uncertainty"),
     Verdict.WORSE: Sign(glyph="\u25b2", words="more loss"),
@@ -96,7 +96,7 @@ def heat_grid(
         columns=tuple(band_column(name) for name in names),
         rows=rows,
         legend=_legend(edges, locale),
-        signs=tuple(sign for sign in _SIGNS.values() if sign in found),
+        signs=tuple(sign for sign in SIGNS.values() if sign in found),
     )
 
 
@@ -174,4 +174,4 @@ def _with_texts(row: GridRow, texts: Sequence[str]) -> GridRow:
 
 
 def _sign(compared: BandComparison | None) -> Sign | None:
-    return None if compared is None or compared.verdict is None else _SIGNS.get(compared.verdict)
+    return None if compared is None or compared.verdict is None else SIGNS.get(compared.verdict)

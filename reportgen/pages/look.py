@@ -84,11 +84,11 @@ class Series:
 
 SERIES = (
     Series(colour="series_1", dash=(), marker="o"),
-    Series(colour="series_2", dash=(5, 1.6), marker="s"),
-    Series(colour="series_3", dash=(1.2, 1.4), marker="^"),
-    Series(colour="series_4", dash=(7, 1.6, 1.2, 1.6), marker="D"),
-    Series(colour="series_5", dash=(2.6, 1.4), marker="v"),
-    Series(colour="series_6", dash=(9, 1.6, 1.2, 1.6, 1.2, 1.6), marker="X"),
+    Series(colour="series_2", dash=(5.5, 1.8), marker="s"),
+    Series(colour="series_3", dash=(1, 1.2), marker="^"),
+    Series(colour="series_4", dash=(5, 1.4, 1, 1.4), marker="D"),
+    Series(colour="series_5", dash=(2.2, 1.2), marker="v"),
+    Series(colour="series_6", dash=(5, 1.4, 1, 1.4, 1, 1.4), marker="X"),
 )
 
 # Strength of the heat colour behind a figure, least to most, per cent. Text stays above 4.5 to 1.
