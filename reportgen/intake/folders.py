@@ -98,7 +98,8 @@ def _no_sidecar(folder: str, names: list[str]) -> Finding:
     """The error about a folder with sweeps and no sidecar, in it or above."""
     count = sum(map(is_sweep, names))
     sweeps = "1 sweep file" if count == 1 else f"{count} sweep files"
-    meant = nearest(BUILD_FILE, [each for each in names if not is_sweep(each)])
+    others = [each for each in names if not is_sweep(each) and each != BENCH_FILE]
+    meant = nearest(BUILD_FILE, others)
     start = f"write {shown(folder)}/build.toml; `reportgen sidecar` writes a starter"
     return Finding(
         severity=Severity.ERROR,

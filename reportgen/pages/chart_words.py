@@ -47,9 +47,12 @@ def match_chart(result: BuildResult, baseline: BuildResult | None, locale: str) 
     """Title and alternative text of the match chart."""
     values = worsts(result.chosen, "swr")
     worst = worst_of(values, "swr")
-    assert worst is not None
     losses = worsts(result.chosen, "return_loss_db")
-    title = f"SWR is {spoken_with_interval('swr', worst, locale)} at worst, on {worst.band.name}"
+    title = (
+        "More comes back from the low side than went in"
+        if worst is None
+        else f"SWR is {spoken_with_interval('swr', worst, locale)} at worst, on {worst.band.name}"
+    )
     alt = (
         "Line chart of return loss over frequency, with the SWR that corresponds on the right. "
         f"Least return loss in each band: {_each(losses, 'return_loss_db', locale)}."

@@ -77,6 +77,9 @@ def _compared(one: Solved, best: Solved, drawn: Drawn) -> tuple[Agreement, list[
         band.band.name: _loss_db(one, ours, band) - _loss_db(one, theirs, band)
         for band in bands_with_loss(one.result.bands)
     }
+    if not all(np.isfinite(draws).all() for draws in differences.values()):
+        reason = "a loss is without bounds in some draws"
+        return _agreement(one.result, best.result, {}, reason), []
     found = _agreement(one.result, best.result, differences, None)
     return found, [disagreement(found, differences)] if found.agrees is False else []
 

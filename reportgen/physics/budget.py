@@ -78,7 +78,8 @@ def _of_band(band: MeasuredBand) -> RealArray:
 def _u95_db(ratio: RealArray, frequency_hz: RealArray, band: MeasuredBand) -> float:
     inside = np.isin(frequency_hz, _of_band(band))
     losses = decibel_loss(mean_ratio(frequency_hz[inside], ratio[:, inside]))
-    return COVERAGE_FACTOR * float(np.std(losses[np.isfinite(losses)]))
+    finite = losses[np.isfinite(losses)]
+    return COVERAGE_FACTOR * float(np.std(finite)) if finite.size else 0.0
 
 
 def find_budget(question: Question) -> tuple[BudgetLine, ...]:

@@ -96,10 +96,13 @@ def heat_split_of(group: Sequence[Solved], sheet: BuildSheet, power_w: float) ->
     load_ohm = sheet.nominal_load_ohm / sheet.winding.turns_ratio**2
     parts = _mean_parts([dissipated(arms, load_ohm) for arms in seen if arms is not None])
     draws = _mean_parts([dissipated(arms, load_ohm) for arms in drawn if arms is not None])
+    winding = _winding_figures([a for a in seen if a], [a for a in drawn if a], hz)
+    if not np.isfinite([*parts.total, winding.leakage_h.value, winding.coupling_ratio.value]).all():
+        return None
     bands = [band for band in first.result.bands if isinstance(band, MeasuredBand)]
     return HeatSplit(
         bands=tuple(_in_band(first, band, parts, draws, power_w) for band in bands),
-        winding=_winding_figures([a for a in seen if a], [a for a in drawn if a], hz),
+        winding=winding,
         permeability=_permeability([a for a in seen if a], [a for a in drawn if a], hz, sheet),
     )
 

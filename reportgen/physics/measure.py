@@ -183,7 +183,7 @@ def _fitted(build: Build, solved: Sequence[Solved]) -> tuple[Fitted, ...]:
 
 def _fitted_stray(name: str, stray_f: float, spread_f: float, one: Solved) -> Fitted:
     of = f"loads.{name}"
-    if spread_f > NOT_DETERMINED_PF * 1e-12:
+    if not (spread_f <= NOT_DETERMINED_PF * 1e-12 and np.isfinite(stray_f)):
         reason = "not determined: the range swept leaves no trace of a few picofarads in the data"
         return Fitted(quantity="stray_pf", of=of, value=None, reason=reason)
     drawn = one.spread.computed.strays.get(name)
