@@ -33,15 +33,20 @@ _SHOWN = 2.2
 """The scale ends at so many times the least worst SWR: beyond it nobody looks."""
 
 
-def draw_capacitors(found: CapacitorForecast, *, locale: str = "en") -> Chart:
-    """Worst SWR over the bands by capacitor [pF], the present and the best one marked."""
+def draw_capacitors(found: CapacitorForecast, *, locale: str = "en") -> Chart | None:
+    """Worst SWR over the bands by capacitor [pF], the present and the best one marked.
+
+    None where no capacitor gives any match.
+    """
+    if not np.isfinite(found.worst_swr[found.capacitor_pf > 0]).any():
+        return None
     drawings = [_draw(size, found, locale) for size in _SIZES]
     title, alt = _words(found, locale)
     return Chart(name="capacitors", title=title, alt=alt, svg=drawings[0], narrow_svg=drawings[1])
 
 
 def _draw(size: Size, found: CapacitorForecast, locale: str) -> str:
-    real = found.capacitor_pf > 0
+    real = (found.capacitor_pf > 0) & np.isfinite(found.worst_swr)
     farads, swr = found.capacitor_pf[real], found.worst_swr[real]
     top = max(_LEAST_TOP, _SHOWN * float(np.nanmin(swr)))
     figure, axes = new_figure(
