@@ -97,7 +97,7 @@ class BenchSheet(Sheet):
 
     schema: Literal[1] = 1
     title: Name = "Bench results"
-    publisher: Text = ""
+    publisher: Annotated[str, Len(0, 120)] = ""
     baseline: Name | None = None
     region: Literal[1, 2, 3] = 1
     bands: Annotated[tuple[Name, ...], Len(1, 100)] | None = None

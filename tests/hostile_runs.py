@@ -51,7 +51,7 @@ def write_hostile_runs(root: Path, port: int, local_file: Path, canary: Path) ->
     """Two builds that can be published, one that cannot, and what should not lie there at all."""
     text, name = text_payload(port, local_file), name_payload(port)
     root.mkdir(parents=True)
-    (root / "runs.toml").write_text(_bench(name, text), "utf-8")
+    (root / "runs.toml").write_text(_bench(name), "utf-8")
     # a folder's name may hold anything but a slash
     _write_build(root / "<zq7 zq8=1 onclick=zq()>", name, text)
     _write_build(root / "=zq7,'\"{{7*7}}", name, name)
@@ -66,9 +66,9 @@ def write_hostile_runs(root: Path, port: int, local_file: Path, canary: Path) ->
     return root
 
 
-def _bench(name: str, text: str) -> str:
+def _bench(name: str) -> str:
     return f"""title = {_toml(name)}
-publisher = {_toml(text)}
+publisher = {_toml(name)}
 baseline = "{BASELINE}"
 bands = [{_toml(name)}, "40 m"]
 locale = {_toml('"><zq7 zq8=1>')}
