@@ -11,10 +11,11 @@ import numpy as np
 from reportgen import __version__
 from reportgen.errors import InputRejected, NotMeasurable, UsageError
 from reportgen.intake.builds import BuildFolder, Runs, read_build
-from reportgen.model import BuildResult, Comparison
+from reportgen.model import BuildResult, Finding
 from reportgen.output.documents import results_document, rounded
 from reportgen.output.own_page import pdf_beside, place_page, refuse_foreign
-from reportgen.pages.versus import Rival, render_versus
+from reportgen.pages.versus import render_versus
+from reportgen.pages.versus_tables import Rival
 from reportgen.physics.compare import compare
 from reportgen.physics.measure import measure_build
 from reportgen.pipeline import find_build
@@ -73,7 +74,8 @@ def _measured(first: Runs, runs: Runs, folder: BuildFolder) -> BuildResult:
     return result if same else _with_draws_of_its_own(result)
 
 
-def _placed(rejected: InputRejected, folder: BuildFolder):  # type: ignore[no-untyped-def]
+def _placed(rejected: InputRejected, folder: BuildFolder) -> tuple[Finding, ...]:
+    """What is wrong with one of the builds, its folder named."""
     return tuple(
         replace(one, file=f"{folder.folder}/{one.file}" if one.file else folder.folder)
         for one in rejected.findings
@@ -89,7 +91,7 @@ def _with_draws_of_its_own(result: BuildResult) -> BuildResult:
 
 
 def _rival(place: int, result: BuildResult, reference: BuildResult) -> Rival:
-    comparison: Comparison | None = compare(result, reference) if place else None
+    comparison = compare(result, reference) if place else None
     document = results_document(result, comparison, program_version=__version__)
     published = replace(published_build(rounded(document)), key=str(place))
     return Rival(result=result, comparison=comparison, published=published)

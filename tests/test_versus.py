@@ -12,6 +12,7 @@ import pytest
 import result_samples as samples
 from hypothesis import given
 from hypothesis import strategies as st
+from opened_pages import open_page
 from page_reader import Page, published
 from small_runs import BENCH, contents, write_build, write_runs
 from sure_samples import sure
@@ -22,10 +23,11 @@ from reportgen.__main__ import main
 from reportgen.errors import InputRejected, NotMeasurable, UsageError
 from reportgen.model import BuildResult, MeasuredBand
 from reportgen.pages.look import SERIES
-from reportgen.pages.versus import Rival, render_versus
+from reportgen.pages.versus import render_versus
 from reportgen.pages.versus_charts import bands_of, chart_names, draw_versus
 from reportgen.pages.versus_curves import _parted
 from reportgen.pages.versus_heat import heat_at
+from reportgen.pages.versus_tables import Rival
 from reportgen.physics.compare import compare
 from reportgen.versus import write_versus
 
@@ -136,6 +138,25 @@ def test_the_pdf_is_tagged_and_the_same_each_time():
     first, second = (page_of(drawn(1.0, "Ash"), drawn(0.6, "Beech"))[1] for _ in range(2))
     assert first.startswith(b"%PDF-")
     assert first == second
+
+
+@pytest.mark.parametrize("width", [320, 1280])
+def test_everything_has_room_and_a_name(context, tmp_path: Path, width: int):
+    html, _ = render_versus(
+        rivals(drawn(1.0, "Ash"), drawn(0.6, "Beech"), samples.hostile(), samples.load_only()),
+        bench=samples.BENCH,
+        roots=2,
+        program_version="1.2.3",
+    )
+    (tmp_path / "x.html").write_text(html, encoding="utf-8")
+    opened = open_page(context, tmp_path / "x.html")
+    opened.show(width=width)
+    assert opened.measure("problems") == []
+    labels = "[...document.querySelectorAll('[role=region]')].map((one) => one.ariaLabel)"
+    found = opened.page.evaluate(labels)
+    assert len(set(found)) == len(found) >= 6
+    assert opened.complaints == []
+    opened.page.close()
 
 
 # --- how it is drawn -----------------------------------------------------------------------------

@@ -282,7 +282,7 @@ def _end(one: Drawn, axes: Axes, high_mhz: float) -> float:
     """Height of a curve's last point, in parts of the axes."""
     inside = one.value[one.mhz <= high_mhz]
     low, high = axes.get_ylim()
-    last = float(inside[-1]) if inside.size else low
+    last = inside[-1] if inside.size else low
     return float(np.clip((last - low) / (high - low), 0, 1))
 
 
@@ -296,6 +296,4 @@ def _parted(heights: Sequence[float], gap: float, low: float, high: float) -> li
     for place in range(len(found) - 2, -1, -1):
         found[place] = min(found[place], found[place + 1] - gap)
     found = found + max(0.0, low - found[0])
-    placed = np.empty_like(found)
-    placed[order] = found
-    return [float(height) for height in placed]
+    return [float(found[place]) for place in np.argsort(order)]
