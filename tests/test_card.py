@@ -141,7 +141,7 @@ def test_a_log_that_permits_none_names_none():
 def test_a_power_stands_with_its_whole_condition():
     text = page_text(card(with_power(power_samples.permitted())))
     assert (
-        "It stands 35 W of carrier, least on 80 m, where heat bounds it, with up to 40 °C around "
+        "It stands 35 W of carrier on every band, limited by heat on 80 m, with up to 40 °C around "
         "it and a load SWR of up to 2.5." in text
     )
 

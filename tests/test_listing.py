@@ -112,7 +112,7 @@ def test_without_loss_it_says_so_and_why(kind):
 @pytest.mark.parametrize("kind", RENDERERS)
 def test_a_power_stands_with_its_condition_or_not_at_all(kind):
     with_log = plain(with_power(power_samples.permitted()), kind)
-    assert "35 W of carrier, least on 80 m" in with_log
+    assert "35 W of carrier on every band" in with_log
     assert "with up to 40 °C around it and a load SWR of up to 2.5." in with_log
     assert not re.search(r"\d\s*W\b", plain(named("Alder"), kind))
 
