@@ -1,7 +1,8 @@
 """`manifest.json`: what went in, under which settings, what came out, and what did not.
 
 Beside it, while a run is under way, stands the journal: a line for each build that is finished. A
-run that was interrupted goes on from there.
+run that was interrupted goes on from there. The records are named tuples because `dataclasses` is
+slow to import.
 """
 
 from __future__ import annotations
@@ -11,10 +12,10 @@ import os
 import stat
 from collections import Counter
 from collections.abc import Iterable, Mapping, Sequence
-from dataclasses import dataclass, field
 from hashlib import sha256
 from pathlib import Path
-from typing import Any
+from types import MappingProxyType
+from typing import Any, NamedTuple
 
 from reportgen.output.fingerprints import hash_of_file
 
@@ -28,9 +29,10 @@ _OF_A_FINDING = ("severity", "code", "file", "line", "key", "message", "remedy")
 
 Document = dict[str, Any]
 
+_NONE: Mapping[str, Any] = MappingProxyType({})
 
-@dataclass(frozen=True, kw_only=True, slots=True)
-class OutputFile:
+
+class OutputFile(NamedTuple):
     """A file that was written, by path below the output folder, and its size [bytes]."""
 
     file: str
@@ -38,8 +40,7 @@ class OutputFile:
     bytes: int
 
 
-@dataclass(frozen=True, kw_only=True, slots=True)
-class BuildRecord:
+class BuildRecord(NamedTuple):
     """One build folder of a run: what was read of it, what was written for it, or why nothing.
 
     `fingerprint` : of all that decides what is published of it.
@@ -56,12 +57,11 @@ class BuildRecord:
     retry: bool = False
     inputs: tuple[Document, ...] = ()
     outputs: tuple[OutputFile, ...] = ()
-    findings: Mapping[str, int] = field(default_factory=dict)
+    findings: Mapping[str, int] = _NONE
     failure: tuple[Document, ...] = ()
 
 
-@dataclass(frozen=True, kw_only=True, slots=True)
-class Manifest:
+class Manifest(NamedTuple):
     """What a run leaves behind.
 
     `state` : fingerprint of the program, all inputs and settings; None: not everything is made.
@@ -69,7 +69,7 @@ class Manifest:
     `written_ns` : when it was written, by the clock of the file system [ns].
     """
 
-    builds: Mapping[str, BuildRecord] = field(default_factory=dict)
+    builds: Mapping[str, BuildRecord] = _NONE
     outputs: tuple[OutputFile, ...] = ()
     findings: tuple[Document, ...] = ()
     state: str | None = None

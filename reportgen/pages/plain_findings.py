@@ -5,16 +5,17 @@ from __future__ import annotations
 from collections.abc import Iterator, Mapping, Sequence
 from typing import Any
 
-from reportgen.pages.plain_text import clean_text
-
 SEVERITIES = ("error", "warning", "note")
 """Those of `model`, which is slow to import, the gravest first."""
 
 
 def finding_lines(heading: str, findings: Sequence[Mapping[str, Any]]) -> Iterator[str]:
     """Findings of one build, the gravest first, as `terminal` prints them; none: nothing."""
-    if findings:
-        yield clean_text(heading)
+    if not findings:
+        return
+    from reportgen.pages.plain_text import clean_text
+
+    yield clean_text(heading)
     for one in sorted(findings, key=lambda one: SEVERITIES.index(one["severity"])):
         line = f"line {one['line']}" if one["line"] else None
         place = ": ".join(part for part in (one["file"], line, one["key"]) if part)
