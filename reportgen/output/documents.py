@@ -24,6 +24,7 @@ from reportgen.model import (
     MeasuredBand,
     MethodResult,
     RealArray,
+    Thermal,
 )
 from reportgen.physics.forecast import Forecast
 from reportgen.physics.judge import overall
@@ -66,7 +67,7 @@ def results_document(
         "repeatability": [asdict(one) for one in result.repeatability],
         "heat_split": None if result.heat_split is None else _heat_split(result.heat_split),
         "stress": None if result.stress is None else asdict(result.stress),
-        "thermal": None,
+        "thermal": None if result.thermal is None else _thermal(result.thermal),
         "forecast": None if forecast is None else _plain(asdict(forecast)),
         "baseline": None if comparison is None else _comparison(comparison),
         "findings": [finding_document(one) for one in result.findings],
@@ -102,6 +103,13 @@ def _heat_split(split: HeatSplit) -> Document:
         if core is None
         else {name: _listed(getattr(core, name)) for name in core.__dataclass_fields__},
     }
+
+
+def _thermal(thermal: Thermal) -> Document:
+    """Everything but the rows of the log, which are in its file."""
+    document = asdict(thermal)
+    del document["warm_up"]
+    return document
 
 
 def _plain(value: Any) -> Any:
