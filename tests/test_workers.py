@@ -147,8 +147,9 @@ def test_a_build_that_ends_its_worker_fails_alone_and_is_tried_again(
         write_runs(tmp_path / "runs", "alder", "birch", "cedar", "dogwood"),
         tmp_path / "out",
     )
-    monkeypatch.setattr(every_build, "start", start_with_bad_builds)
-    outcome = publish(Request(runs=runs, out=out, jobs=2, patience_s=6.0), lambda *_: None)
+    with monkeypatch.context() as patch:
+        patch.setattr(every_build, "start", start_with_bad_builds)
+        outcome = publish(Request(runs=runs, out=out, jobs=2, patience_s=6.0), lambda *_: None)
     assert [one.key for one in outcome.made] == ["alder", "dogwood"]
     said = {one.key: one.findings[0].message for one in outcome.failed}
     assert said == {
