@@ -99,6 +99,25 @@ def test_tables_have_heads(document):
     assert {str(head.A.Scope) for head in heads} == {"/Column", "/Row"}
 
 
+GROUP = (
+    '<tbody><tr><th scope="row" rowspan="2">{0}</th><td>mean {0}</td></tr>'
+    "<tr><td>worst {0}</td></tr></tbody>"
+)
+TABLE = (
+    '<div style="height:{}pt"></div><table class="figures-table"><caption>c</caption>'
+    '<thead><tr><th scope="col">Band</th><th scope="col">x</th></tr></thead>{}</table>'
+)
+
+
+@pytest.mark.parametrize("above", range(660, 740, 6))
+def test_rows_of_one_group_stay_on_one_page(above):
+    body = TABLE.format(above, "".join(GROUP.format(name) for name in "abc"))
+    with pikepdf.open(io.BytesIO(write_pdf(PAGE.format(body), {}, "A4"))) as opened:
+        assert 1 <= len(opened.pages) <= 2
+        for group in of_kind(opened, "/TBody"):
+            assert len(group.K) == 2
+
+
 def test_sections_are_in_the_outline(document):
     with document.open_outline() as outline:
         titles = [item.title for item in outline.root[0].children]
