@@ -10,7 +10,7 @@ from pathlib import Path
 
 import pytest
 from published_examples import HERE, in_a_process
-from small_runs import contents, write_runs
+from small_runs import BENCH, contents, write_build, write_runs
 from write_goldens import EXAMPLE_RUNS, GOLDENS, golden_of
 
 from reportgen.model import OUTPUT_MARKER
@@ -92,11 +92,20 @@ def test_builds_give_the_same_bytes_from_elsewhere(published, tmp_path: Path) ->
 
 
 def test_everything_is_the_same_bytes_from_elsewhere(tmp_path: Path) -> None:
+    """And where an earlier run had made one build already, and another of other sweeps."""
+    bench = 'baseline = "alder"\n' + BENCH
     found = []
     for name, settings in (("here", HERE), ("elsewhere", ELSEWHERE)):
-        runs = write_runs(tmp_path / name / "runs", "alder", "birch")
-        assert in_a_process(runs, tmp_path / name / "out", **settings).returncode == 0
-        found.append(contents(tmp_path / name / "out"))
+        runs, out = tmp_path / name / "runs", tmp_path / name / "out"
+        write_runs(runs, "alder", "birch", bench=bench)
+        if name == "elsewhere":
+            write_build(runs / "birch", "Birch as it was before")
+            assert in_a_process(runs, out, **settings).returncode == 0
+            write_build(runs / "birch", "Birch")
+        done = in_a_process(runs, out, **settings)
+        assert done.returncode == 0
+        found.append(contents(out))
+    assert "1 of them unchanged" in done.stdout
     assert found[0] == found[1]
 
 
