@@ -656,8 +656,10 @@ class HeatSplit:
 class StressBand:
     """Stress in one band at the rated power; None: not asked for, or not known.
 
-    `heat_w` is the upper end of the heat's interval; `surface_rise_k` the range of two published
-    formulas for a bare surface in free air [K]. Volts and amperes in rms.
+    `heat_w` is the upper end of the heat's interval at the worst frequency and, where the method
+    knows it, the worst load of the SWR; `matched_heat_w` the same into the nominal load.
+    `surface_rise_k` is the range of two published formulas for a bare surface in free air [K].
+    Volts and amperes in rms.
     """
 
     band: str
@@ -665,24 +667,33 @@ class StressBand:
     capacitor_v: float | None
     capacitor_a: float | None
     heat_w: float | None
+    matched_heat_w: float | None
     surface_rise_k: tuple[float, float] | None
 
 
 @dataclass(frozen=True, kw_only=True, slots=True)
 class FirstLimit:
-    """The limit that is met first, and the power at which it is [W]; `band` None: in all."""
+    """The limit that is met first, and the power at which it is [W]; `band` None: in all.
+
+    `limit` : as given, flux [mT] or volts [V].
+    """
 
     what: str
     band: str | None
     power_w: float
+    limit: float | None = None
 
 
 @dataclass(frozen=True, kw_only=True, slots=True)
 class Stress:
-    """Largest volts and amperes (rms) at the rated power for the load SWR of the rating."""
+    """Largest volts and amperes (rms) at the rated power for the load SWR of the rating.
+
+    `heat_load_swr` : the SWR that the heat holds for, 1 where other loads are not known.
+    """
 
     power_w: float
     load_swr: float
+    heat_load_swr: float
     low_side_v: float
     low_side_a: float
     high_side_v: float
@@ -715,13 +726,15 @@ class ThermalFit:
 class ThermalBand:
     """What heat permits in one band.
 
-    `continuous_w` : power that ends at the limit in the hottest surroundings [W]; None: `reason`.
+    `continuous_w` : power that ends at the limit in the hottest surroundings, into the worst load
+    of the SWR that heat is known for [W]; None: `reason`. `matched_w` : into the nominal load.
     `extrapolated` : that is beyond what the log covers.
     `minutes_to_limit` : from cold at the rated power, sent without a pause; None: never.
     """
 
     band: str
     continuous_w: float | None
+    matched_w: float | None = None
     extrapolated: bool = False
     minutes_to_limit: float | None = None
     reason: str | None = None
@@ -731,12 +744,14 @@ class ThermalBand:
 class PermittedMode:
     """Peak envelope power that a mode may have over all bands [W], and what bounds it there.
 
+    `high_side_v` : the most across the high side then, rms, for the load SWR of the rating.
     `bound_by` : "heat", or the limit of `FirstLimit` that is met before; `band` None: in all.
     """
 
     mode: str
     duty_percent: float
     power_w: float
+    high_side_v: float
     band: str | None
     bound_by: str
     extrapolated: bool
@@ -747,13 +762,15 @@ class Permitted:
     """The power that a build stands for a load SWR and surroundings that the rating names.
 
     `limit_of` : what the lowest temperature limit is of, "core", "wire" or "enclosure". `modes`
-    begins with the mode that may have least.
+    begins with the mode that may have least. `load_swr` is the SWR that volts and flux hold for,
+    `heat_load_swr` the one of the heat.
     """
 
     limit_c: float
     limit_of: str
     ambient_max_c: float
     load_swr: float
+    heat_load_swr: float
     bands: tuple[ThermalBand, ...]
     modes: tuple[PermittedMode, ...]
 

@@ -28,6 +28,7 @@ def stress(first_limit: FirstLimit | None = None) -> Stress:
     return Stress(
         power_w=60,
         load_swr=2.5,
+        heat_load_swr=2.5,
         low_side_v=86.6,
         low_side_a=1.732,
         high_side_v=692.8,
@@ -39,6 +40,7 @@ def stress(first_limit: FirstLimit | None = None) -> Stress:
                 capacitor_v=86.6,
                 capacitor_a=amperes,
                 heat_w=heat_w,
+                matched_heat_w=heat_w / 2,
                 surface_rise_k=(10 * heat_w, 14.4 * heat_w),
             )
             for band, flux_t, amperes, heat_w in (
@@ -80,10 +82,11 @@ def warm_up() -> WarmUp:
     )
 
 
-def permitted(*, extrapolated: bool = False) -> Permitted:
+def permitted(*, extrapolated: bool = False, heat_load_swr: float = 2.5) -> Permitted:
     def mode(name: str, duty: float, power_w: float, band: str | None, bound_by: str):
         return PermittedMode(
             mode=name, duty_percent=duty, power_w=power_w, band=band, bound_by=bound_by,
+            high_side_v=692.8 * (power_w / 60) ** 0.5,
             extrapolated=extrapolated and bound_by == "heat",
         )  # fmt: skip
 
@@ -92,8 +95,9 @@ def permitted(*, extrapolated: bool = False) -> Permitted:
         limit_of="core",
         ambient_max_c=40,
         load_swr=2.5,
+        heat_load_swr=heat_load_swr,
         bands=(
-            ThermalBand(band="80 m", continuous_w=35.9, minutes_to_limit=12.8),
+            ThermalBand(band="80 m", continuous_w=35.9, matched_w=71.8, minutes_to_limit=12.8),
             ThermalBand(
                 band="40 m", continuous_w=83.0, extrapolated=extrapolated, minutes_to_limit=None
             ),

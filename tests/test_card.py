@@ -141,8 +141,8 @@ def test_a_log_that_permits_none_names_none():
 def test_a_power_stands_with_its_whole_condition():
     text = page_text(card(with_power(power_samples.permitted())))
     assert (
-        "It stands 35 W of carrier on every band, limited by heat on 80 m, with up to 40 °C around "
-        "it and a load SWR of up to 2.5." in text
+        "Handles 35 W of carrier on every band, limited by core heating on 80 m, with up to 40 °C "
+        "around it and any load up to SWR 2.5." in text
     )
 
 
@@ -153,12 +153,12 @@ def test_the_lesser_of_heat_and_stress_is_named(stress_w, bound_by):
         result.build.sheet, core=replace(result.build.sheet.core, temperature_limit_c=90)
     )
     fit = replace(power_samples.fit(), resistance_k_per_w=Interval(value=9, low95=8, high95=10))
+    flux = FirstLimit(what="flux", band="160 m", power_w=stress_w)
     permitted = permitted_of(
-        fit, result.chosen.bands, sheet, FirstLimit(what="flux", band="160 m", power_w=stress_w),
-        rated_w=60, duty_percent={"carrier": 100.0, "voice": 20.0},
-    )  # fmt: skip
+        fit, power_samples.stress(flux), sheet, {"carrier": 100.0, "voice": 20.0}
+    )
     assert permitted.limiting.bound_by == bound_by
-    watts = re.search(r"It stands (\d+)\u00a0W", power_of(with_power(permitted)))
+    watts = re.search(r"Handles (\d+)\u00a0W", power_of(with_power(permitted)))
     assert float(watts[1]) <= min(stress_w, permitted.limiting.power_w)
     assert (watts[1] == "17") == (bound_by == "flux")
 
@@ -167,7 +167,7 @@ def test_the_lesser_of_heat_and_stress_is_named(stress_w, bound_by):
 def test_the_condition_of_a_power_is_never_cut(draw):
     drawing = draw(words_of(RESULTS["power"]), "en")
     drawn = " ".join(text.get_text() for text in drawing.figure.texts)
-    assert "a load SWR of up to 2.5. It is an extrapolation, more than twice what was" in drawn
+    assert "any load up to SWR 2.5. It is an extrapolation, more than twice what was" in drawn
 
 
 def test_a_power_whose_condition_has_no_room_is_left_to_the_report():

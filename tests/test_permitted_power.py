@@ -5,15 +5,14 @@ from dataclasses import replace
 import pytest
 
 from reportgen.model import (
-    Band,
     BuildSheet,
     Core,
-    Figure,
     FirstLimit,
     Interval,
-    MeasuredBand,
     Permitted,
     Rating,
+    Stress,
+    StressBand,
     ThermalBand,
     ThermalFit,
     Winding,
@@ -44,19 +43,17 @@ FIT = ThermalFit(
 )
 
 
-def band(low: float | None, worst_low: float | None = None, name: str = "40 m") -> MeasuredBand:
-    return MeasuredBand(
-        band=Band(name=name, from_hz=7e6, to_hz=7.2e6),
-        covered_hz=(7e6, 7.2e6),
-        points=9,
-        interpolated=False,
-        figures={
-            "efficiency_ratio": Figure(
-                mean=0.9, worst=0.89, centre=0.9, worst_at_hz=7e6, low95=low,
-                worst_low95=worst_low,
-            )
-        },
-    )  # fmt: skip
+def band(heat_w: float | None, name: str = "40 m", matched_w: float | None = None) -> StressBand:
+    """Heat at 100 W."""
+    return StressBand(
+        band=name,
+        peak_flux_t=None,
+        capacitor_v=None,
+        capacitor_a=None,
+        heat_w=heat_w,
+        matched_heat_w=matched_w,
+        surface_rise_k=None,
+    )
 
 
 def sheet(core_c: float | None = 90.0, wire_c: float | None = None, box_c: float | None = None):
@@ -69,48 +66,54 @@ def sheet(core_c: float | None = 90.0, wire_c: float | None = None, box_c: float
 
 
 def permitted(
-    *bands: MeasuredBand, limit_c=90.0, rated_w=60.0, duty=None, first_limit=None
+    *bands: StressBand, limit_c=90.0, rated_w=100.0, duty=None, first_limit=None
 ) -> Permitted | None:
-    return permitted_of(
-        FIT, bands, sheet(limit_c), first_limit, rated_w=rated_w,
-        duty_percent=duty or {"carrier": 100},
+    heat = [
+        one if one.heat_w is None else replace(one, heat_w=one.heat_w * rated_w / 100)
+        for one in bands
+    ]
+    stress = Stress(
+        power_w=rated_w, load_swr=2, heat_load_swr=2, low_side_v=1, low_side_a=1, high_side_v=500,
+        high_side_a=1, bands=tuple(heat), first_limit=first_limit,
     )  # fmt: skip
+    return permitted_of(FIT, stress, sheet(limit_c), duty or {"carrier": 100})
 
 
-def in_band(one: MeasuredBand, **settings) -> ThermalBand:
+def in_band(one: StressBand, **settings) -> ThermalBand:
     (found,) = permitted(one, **settings).bands
     return found
 
 
-def test_continuous_power_of_the_worst_efficiency_at_its_lower_end() -> None:
-    assert in_band(band(0.9, 0.875)).continuous_w == pytest.approx(50 / 8 / 0.125)
-    assert in_band(band(0.9)).continuous_w == pytest.approx(62.5)
+def test_continuous_power_ends_at_the_limit() -> None:
+    assert in_band(band(10)).continuous_w == pytest.approx(50 / 8 / 0.10)
+    found = in_band(band(12.5, matched_w=6.25))
+    assert (found.continuous_w, found.matched_w) == (pytest.approx(50), pytest.approx(100))
 
 
 def test_at_that_power_the_limit_is_never_reached_and_above_it_is() -> None:
-    assert in_band(band(0.9), rated_w=62.5).minutes_to_limit is None
-    assert in_band(band(0.9), rated_w=62.6).minutes_to_limit == pytest.approx(
+    assert in_band(band(10), rated_w=62.5).minutes_to_limit is None
+    assert in_band(band(10), rated_w=62.6).minutes_to_limit == pytest.approx(
         10 * 6.437, rel=1e-3
     )  # tau ln(62.6/0.1)
-    assert in_band(band(0.9), rated_w=125).minutes_to_limit == pytest.approx(6.93147)
+    assert in_band(band(10), rated_w=125).minutes_to_limit == pytest.approx(6.93147)
 
 
 def test_surroundings_at_the_limit_permit_nothing() -> None:
-    found = in_band(band(0.9), limit_c=40)
+    found = in_band(band(10), limit_c=40)
     assert (found.continuous_w, found.minutes_to_limit) == (0, 0)
     assert minutes_to_limit(-5, 0, 600) == 0
 
 
 def test_marked_beyond_twice_the_logged_power_or_heat() -> None:
-    assert not in_band(band(0.9)).extrapolated
-    assert in_band(band(0.95)).extrapolated  # 125 W, logged 50 W
-    assert not in_band(band(0.937)).extrapolated  # 99 W
-    assert in_band(band(0.9), limit_c=121).extrapolated  # 10.1 W of heat, logged 5 W
+    assert not in_band(band(10)).extrapolated
+    assert in_band(band(5)).extrapolated  # 125 W, logged 50 W
+    assert not in_band(band(6.3)).extrapolated  # 99 W
+    assert in_band(band(10), limit_c=121).extrapolated  # 10.1 W of heat, logged 5 W
 
 
 def test_modes_share_one_mean_power_and_the_least_comes_first() -> None:
     duty = {"voice": 20, "carrier": 100, "silence": 0}
-    found = permitted(band(0.9), band(0.95, name="20 m"), duty=duty)
+    found = permitted(band(10), band(5, name="20 m"), duty=duty)
     assert [(one.mode, one.band) for one in found.modes] == [("carrier", "40 m"), ("voice", "40 m")]
     assert [one.power_w for one in found.modes] == [pytest.approx(62.5), pytest.approx(312.5)]
     assert found.limiting.mode == "carrier"
@@ -119,18 +122,17 @@ def test_modes_share_one_mean_power_and_the_least_comes_first() -> None:
 
 def test_no_mode_may_have_more_than_volts_and_flux_let_it() -> None:
     flux = FirstLimit(what="flux", band="160 m", power_w=200)
-    carrier, voice = permitted(
-        band(0.9), duty={"voice": 20, "carrier": 100}, first_limit=flux
-    ).modes
+    carrier, voice = permitted(band(10), duty={"voice": 20, "carrier": 100}, first_limit=flux).modes
     assert (carrier.power_w, carrier.bound_by) == (pytest.approx(62.5), "heat")
     assert (voice.power_w, voice.band, voice.bound_by) == (200, "160 m", "flux")
+    assert voice.high_side_v == pytest.approx(500 * 2**0.5)
 
 
 def test_the_lowest_of_core_wire_and_enclosure_counts() -> None:
     assert lowest_limit(sheet(90, 105, 70)) == ("enclosure", 70)
     assert lowest_limit(sheet(90, 85)) == ("wire", 85)
     assert lowest_limit(sheet(None)) is None
-    assert permitted(band(0.9), limit_c=None) is None
+    assert permitted(band(10), limit_c=None) is None
 
 
 def test_the_workshop_overrides_the_table() -> None:
@@ -140,10 +142,10 @@ def test_the_workshop_overrides_the_table() -> None:
     }  # fmt: skip
 
 
-@pytest.mark.parametrize("one", [band(None), band(1.0), band(1.02), replace(band(0.9), figures={})])
-def test_no_power_without_a_known_heat(one: MeasuredBand) -> None:
+@pytest.mark.parametrize("one", [band(None), band(0.0), band(-2.0)])
+def test_no_power_without_a_known_heat(one: StressBand) -> None:
     assert permitted(one) is None
-    unknown, known = permitted(one, band(0.9, name="20 m")).bands
+    unknown, known = permitted(one, band(10, name="20 m")).bands
     assert unknown.continuous_w is None
     assert unknown.reason == "no heat known in this band"
     assert known.continuous_w is not None

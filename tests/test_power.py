@@ -8,7 +8,7 @@ from reportgen.pages.display import DASH
 from reportgen.pages.power import counted_minutes, power_of, power_verdict
 from reportgen.pages.warm_up_chart import draw_warm_up
 
-FLUX = FirstLimit(what="flux", band="160 m", power_w=68.5)
+FLUX = FirstLimit(what="flux", band="160 m", power_w=68.5, limit=20)
 
 
 def spaced(text: str) -> str:
@@ -26,13 +26,18 @@ def table_of(table) -> dict[str, list[str]]:
 def test_the_answer_names_power_mode_band_bound_and_conditions() -> None:
     found = samples.result(samples.thermal(samples.permitted()))
     assert spaced(power_verdict(found, "en")) == (
-        "It stands 35 W of carrier on every band, limited by heat on 80 m, with up to 40 °C around "
-        "it and a load SWR of up to 2.5."
+        "Handles 35 W of carrier on every band, limited by core heating on 80 m, with up to 40 °C "
+        "around it and any load up to SWR 2.5."
     )
     beyond = samples.result(samples.thermal(samples.permitted(extrapolated=True)))
     assert power_verdict(beyond, "en").endswith(
         "2.5. It is an extrapolation, more than twice what was logged."
     )
+
+
+def test_heat_that_is_known_for_the_nominal_load_alone_is_said_so() -> None:
+    found = samples.result(samples.thermal(samples.permitted(heat_load_swr=1.0)))
+    assert "its nominal load; the heat into others is not known." in power_verdict(found, "en")
 
 
 def test_no_power_without_a_log_or_a_limit() -> None:
@@ -48,18 +53,20 @@ def test_no_power_without_a_log_or_a_limit() -> None:
 def test_powers_are_rounded_down_and_marked_beyond_the_log() -> None:
     page = power_of(samples.result(samples.thermal(samples.permitted(extrapolated=True))), "en")
     assert table_of(page.modes) == {
-        "Carrier": ["100", "35*", "heat", "80 m"],
-        "Voice": ["20", "68", "flux in the core", "160 m"],
+        "Carrier": ["100", "35*", "758", "core heating", "80 m"],
+        "Voice": ["20", "68", "1047", "flux in the core", "160 m"],
     }
     assert "more than twice what was logged" in page.modes.caption
     rows = table_of(page.bands)
     assert rows["Continuous power, W"] == ["35", "83*", DASH]
+    assert rows["the same, nominal load"] == ["71", DASH, DASH]
     assert rows["Minutes to the limit at 60 W".replace(" W", "\u00a0W")] == ["12", "never", DASH]
 
 
 def test_stress_in_every_band() -> None:
     rows = table_of(power_of(samples.result(None, FLUX), "en").bands)
     assert rows["Heat, W"] == ["8.9", "8.9", "7.8"]
+    assert rows["Heat, nominal load, W"] == ["4.5", "4.5", "3.9"]
     assert rows["Peak flux, mT"] == ["19.4", "9.7", "2.4"]
     assert rows["Capacitor current, A"] == ["0.17", "0.32", "1.32"]
     assert rows["Rise of a bare core, K"] == [f"89{DASH}128", f"89{DASH}129", f"78{DASH}112"]
@@ -72,10 +79,10 @@ def test_sentences_name_volts_capacitor_and_the_first_limit() -> None:
         "89 to 129 K above the air.",
         "At 60 W and a load SWR of 2.5 the low side carries up to 87 V and 1.73 A, the high side "
         "693 V and 0.22 A (980 V peak), in rms values.",
-        "The capacitor has up to 122 V peak across it and 1.32 A on 10 m; what it stands of both "
+        "The capacitor has up to 122 V peak across it and 1.32 A on 10 m; what it bears of both "
         "at radio frequency decides.",
-        "Of the volts and flux given as limits the first is met at 68 W peak: flux in the core on "
-        "160 m.",
+        "Of the limits given for volts and flux the first is met at 68 W peak: flux in the core, "
+        "20 mT on 160 m.",
     ]
 
 

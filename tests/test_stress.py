@@ -23,7 +23,16 @@ SHEET = BuildSheet(
     compensation=Compensation(capacitor_pf=100, rated_v=500),
     rating=Rating(load_swr=2.0),
 )
-HEAT = Figure(mean=10, worst=12, centre=10, worst_at_hz=3.6e6, low95=9, high95=11)
+HEAT = Figure(
+    mean=10,
+    worst=12,
+    centre=10,
+    worst_at_hz=3.6e6,
+    low95=9,
+    high95=11,
+    worst_low95=10.5,
+    worst_high95=13.5,
+)
 
 
 def band(name: str, low_hz: float, high_hz: float) -> MeasuredBand:
@@ -47,7 +56,8 @@ def test_each_band_by_its_worst_edge() -> None:
     assert 1e3 * low.peak_flux_t == pytest.approx(28.034 * 2**0.5, rel=1e-3)
     assert high.peak_flux_t == pytest.approx(low.peak_flux_t * 1.8 / 28)
     assert high.capacitor_a == pytest.approx(100 * 2 * 3.14159265 * 29.7e6 * 100e-12)
-    assert low.heat_w == 11
+    assert (low.heat_w, low.matched_heat_w) == (13.5, 13.5)
+    assert found.heat_load_swr == 1
     assert low.surface_rise_k[0] < low.surface_rise_k[1]
 
 
@@ -74,3 +84,11 @@ def test_nothing_is_judged_without_a_limit() -> None:
 def test_capacitor_across_the_high_side_sees_its_volts() -> None:
     high = replace(SHEET, compensation=Compensation(capacitor_pf=5, side="high"))
     assert stress_of(high, BANDS, 100).bands[0].capacitor_v == pytest.approx(700)
+
+
+def test_heat_into_the_worst_load_counts_where_it_is_known_everywhere() -> None:
+    found = stress_of(SHEET, BANDS, 100, {"160 m": 0.2, "10 m": 0.3})
+    assert [one.heat_w for one in found.bands] == pytest.approx([20, 30])
+    assert [one.matched_heat_w for one in found.bands] == [13.5, 13.5]
+    assert found.heat_load_swr == 2
+    assert stress_of(SHEET, BANDS, 100, {"160 m": 0.2}).heat_load_swr == 1

@@ -5,7 +5,7 @@ from __future__ import annotations
 from collections.abc import Iterator
 from dataclasses import dataclass
 
-from reportgen.model import BuildResult, Permitted, Stress, ThermalFit
+from reportgen.model import BuildResult, FirstLimit, Permitted, Stress, ThermalFit
 from reportgen.pages.display import entered, no_more_than, number, with_unit
 from reportgen.pages.intervals import scaled_with_interval
 from reportgen.pages.power_tables import (
@@ -25,13 +25,14 @@ _LIMIT_WORDS = {
     "enclosure": "the core's surface, held to the limit of the enclosure,",
 }
 _STRESS_WORDS = (
-    "Volts, amperes and flux are the most that the load's SWR can bring about at any length of "
-    "line, losses left out. Only limits that the sidecar gives are judged; sweeps at a fraction "
+    "Volts, amperes and flux are the most that a load of that SWR can bring about at any length "
+    "of line, losses left out. Only limits that build.toml gives are judged; sweeps at a fraction "
     "of a milliwatt know nothing of saturation or breakdown."
 )
 _HEAT_WORDS = (
-    "Heat counts at the upper end of its 95\u00a0% interval, in the hottest surroundings that the "
-    "rating names, for the lowest temperature limit given. The log knows the core's surface; "
+    "Heat counts at the upper end of its 95\u00a0% interval, at the worst frequency of a band and "
+    "into the worst load of that SWR where the sweeps tell it, in the hottest surroundings named "
+    "and for the lowest temperature limit given. The log knows the core's surface; "
     "inside it is hotter. Loss changes when a core is hot, so nothing here may be scaled up. Duty "
     "is that of sending without a pause (OET Bulletin 65, Supplement B, or the bench's own)."
 )
@@ -84,14 +85,21 @@ def power_verdict(result: BuildResult, locale: str) -> str:
         return f"No power is named: {thermal.reason}."
     permitted, least = thermal.permitted, thermal.permitted.limiting
     watts = with_unit(no_more_than(least.power_w, locale=locale), "W")
-    mode = least.mode if least.duty_percent >= 100 else f"peak in {least.mode}"
+    mode = f"{least.mode}" if least.duty_percent >= 100 else f"peak in {least.mode}"
     where = f" on {unbroken(least.band)}" if least.band else ""
     beyond = " It is an extrapolation, more than twice what was logged." * least.extrapolated
     return (
-        f"It stands {watts} of {mode} on every band, limited by {BOUND_WORDS[least.bound_by]}"
-        f"{where}, with up to {_celsius(permitted.ambient_max_c, locale)} around it and a load SWR "
-        f"of up to {entered(permitted.load_swr, locale=locale)}.{beyond}"
+        f"Handles {watts} of {mode} on every band, limited by {BOUND_WORDS[least.bound_by]}"
+        f"{where}, with up to {_celsius(permitted.ambient_max_c, locale)} around it and "
+        f"{_load_words(permitted, locale)}.{beyond}"
     )
+
+
+def _load_words(permitted: Permitted, locale: str) -> str:
+    """The loads that the power holds for; a method may know heat into the nominal load alone."""
+    if permitted.heat_load_swr < permitted.load_swr:
+        return "its nominal load; the heat into others is not known"
+    return f"any load up to SWR {entered(permitted.load_swr, locale=locale)}"
 
 
 def _celsius(degrees: float, locale: str) -> str:
@@ -116,9 +124,17 @@ def _words(result: BuildResult, stress: Stress, locale: str) -> Iterator[str]:
         first = stress.first_limit
         watts = with_unit(no_more_than(first.power_w, locale=locale), "W")
         where = f" on {unbroken(first.band)}" if first.band else ""
-        yield f"Of the volts and flux given as limits the first is met at {watts} peak: " + (
-            f"{BOUND_WORDS[first.what]}{where}."
+        yield (
+            f"Of the limits given for volts and flux the first is met at {watts} peak: "
+            f"{BOUND_WORDS[first.what]}{_given_limit(first, locale)}{where}."
         )
+
+
+def _given_limit(first: FirstLimit, locale: str) -> str:
+    if first.limit is None:
+        return ""
+    unit = "mT" if first.what == "flux" else "V"
+    return f", {with_unit(entered(first.limit, locale=locale), unit)}"
 
 
 def _limit_sentence(result: BuildResult, permitted: Permitted, locale: str) -> str:
@@ -193,6 +209,6 @@ def _capacitor_sentence(result: BuildResult, stress: Stress, locale: str) -> str
     text = f"The capacitor has up to {peak} peak across it and {current} on {unbroken(band)}"
     rated_v = result.build.sheet.compensation.rated_v
     if rated_v is None:
-        return f"{text}; what it stands of both at radio frequency decides."
+        return f"{text}; what it bears of both at radio frequency decides."
     volts = with_unit(entered(rated_v, locale=locale), "V")
-    return f"{text}; its {volts} are DC, what it stands of both at radio frequency decides."
+    return f"{text}. Its {volts} is a DC rating: current and derating at radio frequency decide."

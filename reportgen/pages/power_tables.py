@@ -24,7 +24,11 @@ from reportgen.pages.tables import (
     with_points_aligned,
 )
 
-BOUND_WORDS = {"heat": "heat", "flux": "flux in the core", "capacitor volts": "capacitor volts"}
+BOUND_WORDS = {
+    "heat": "core heating",
+    "flux": "flux in the core",
+    "capacitor volts": "capacitor volts",
+}
 _MARK = "*"
 
 
@@ -43,11 +47,12 @@ def modes_table(permitted: Permitted, locale: str) -> Table:
     marked = any(mode.extrapolated for mode in permitted.modes)
     note = f" {_MARK} more than twice what was logged." if marked else ""
     table = Table(
-        caption=f"Peak envelope power that each mode may have in every band.{note}",
+        caption=f"Peak envelope power that each mode may have on every band.{note}",
         corner="Mode",
         columns=(
             Column(label="Duty", unit="%"),
             Column(label="Power", unit="W"),
+            Column(label="High side", unit="V peak"),
             Column(label="Bound by", words=True),
             Column(label="First on", words=True),
         ),
@@ -58,10 +63,11 @@ def modes_table(permitted: Permitted, locale: str) -> Table:
 
 def _mode_row(mode: PermittedMode, locale: str) -> Row:
     power = no_more_than(mode.power_w, locale=locale) + (_MARK if mode.extrapolated else "")
+    volts = number(2**0.5 * mode.high_side_v, 0, locale=locale)
     return Row(
         head=mode.mode[:1].upper() + mode.mode[1:],
         cells=(
-            *figures([entered(mode.duty_percent, locale=locale), power]),
+            *figures([entered(mode.duty_percent, locale=locale), power, volts]),
             Cell(text=BOUND_WORDS[mode.bound_by], look="words"),
             Cell(text=unbroken(mode.band) if mode.band else "every band", look="words"),
         ),
@@ -77,8 +83,9 @@ def stress_table(
     marked = permitted is not None and any(band.extrapolated for band in permitted.bands)
     note = f" {_MARK} more than twice what was logged." if marked else ""
     heat = "What heat permits, and upper bounds" if permitted else "Upper bounds"
+    loads = f"for any load up to SWR {entered(stress.load_swr, locale=locale)}"
     return Table(
-        caption=f"{heat} at {power} in each band.{note}",
+        caption=f"{heat} at {power} {loads}.{note}",
         corner="At most",
         columns=tuple(band_column(band.band) for band in stress.bands),
         groups=(tuple(rows),),
@@ -90,19 +97,22 @@ def _thermal_rows(permitted: Permitted | None, power: str, locale: str) -> Itera
     if permitted is None:
         return
     bands = permitted.bands
-    yield Row(
-        head="Continuous power, W", cells=figures([_continuous(band, locale) for band in bands])
-    )
+    continuous = [(band.continuous_w, band.extrapolated) for band in bands]
+    yield Row(head="Continuous power, W", cells=figures(_powers(continuous, locale)))
+    if permitted.heat_load_swr > 1:
+        matched = [(band.matched_w, band.extrapolated) for band in bands]
+        yield Row(head="the same, nominal load", cells=figures(_powers(matched, locale)))
     yield Row(
         head=f"Minutes to the limit at {power}",
         cells=figures([_minutes(band, locale) for band in bands]),
     )
 
 
-def _continuous(band: ThermalBand, locale: str) -> str:
-    if band.continuous_w is None:
-        return DASH
-    return no_more_than(band.continuous_w, locale=locale) + (_MARK if band.extrapolated else "")
+def _powers(powers: Sequence[tuple[float | None, bool]], locale: str) -> list[str]:
+    return [
+        DASH if power is None else no_more_than(power, locale=locale) + _MARK * extrapolated
+        for power, extrapolated in powers
+    ]
 
 
 def _minutes(band: ThermalBand, locale: str) -> str:
@@ -119,8 +129,12 @@ def _minutes(band: ThermalBand, locale: str) -> str:
 
 def _stress_rows(stress: Stress, permitted: Permitted | None, locale: str) -> Iterator[Row]:
     bands = stress.bands
-    columns = {
-        "Heat, W": ([band.heat_w for band in bands], 1.0, 1),
+    heat = {"Heat, W": ([band.heat_w for band in bands], 1.0, 1)}
+    if stress.heat_load_swr > 1:
+        heat["Heat, nominal load, W"] = ([band.matched_heat_w for band in bands], 1.0, 1)
+    else:
+        heat = {"Heat, nominal load, W": heat["Heat, W"]}
+    columns = heat | {
         "Peak flux, mT": ([band.peak_flux_t for band in bands], 1e3, 1),
         "Capacitor current, A": ([band.capacitor_a for band in bands], 1.0, 2),
     }

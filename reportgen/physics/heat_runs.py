@@ -12,7 +12,6 @@ from reportgen.model import (
     Finding,
     HeatRun,
     Interval,
-    MeasuredBand,
     MethodResult,
     Severity,
     Stress,
@@ -83,25 +82,13 @@ def _not_known(run: HeatRun) -> Finding:
 
 
 def thermal_of(
-    fits: Sequence[Fitted],
-    build: Build,
-    bench: BenchSheet,
-    bands: Sequence[MeasuredBand],
-    stress: Stress | None,
-    rated_w: float,
+    fits: Sequence[Fitted], build: Build, bench: BenchSheet, stress: Stress | None
 ) -> Thermal | None:
     """The log that warms most for its heat, and the power that follows from it; None: no log."""
-    if not fits:
+    if not fits or stress is None:
         return None
     fit, warm_up = max(fits, key=lambda one: one[0].resistance_k_per_w.value)
-    permitted = permitted_of(
-        fit,
-        bands,
-        build.sheet,
-        None if stress is None else stress.first_limit,
-        rated_w=rated_w,
-        duty_percent=duty_table(bench.duty),
-    )
+    permitted = permitted_of(fit, stress, build.sheet, duty_table(bench.duty))
     reason = _NO_LIMIT if lowest_limit(build.sheet) is None else _NO_HEAT
     return Thermal(
         fits=tuple(one for one, _ in fits),

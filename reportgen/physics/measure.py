@@ -36,6 +36,7 @@ from reportgen.physics.judge import judge
 from reportgen.physics.loads import find_load_sweeps
 from reportgen.physics.lots import find_repeatability, lot_of
 from reportgen.physics.methods import NOT_DETERMINED_PF
+from reportgen.physics.mismatch import most_heat_ratios
 from reportgen.physics.solve import Solved, bands_with_loss, loss_draws_db, solve_all
 from reportgen.physics.stress import stress_of
 from reportgen.physics.uncertainty import DRAWS, half_width
@@ -89,7 +90,8 @@ def measure(build: Build, bench: BenchSheet, known: Sequence[Band]) -> Measured:
     checked = check_findings(build.measurements, drawn)
     methods = tuple(one.result for one in solved)
     fits, of_logs = fit_heat_runs(build, chosen, units)
-    stress = stress_of(build.sheet, measured_bands(chosen.bands), power_w)
+    most_heat = most_heat_ratios(group, build.sheet, chosen.bands)
+    stress = stress_of(build.sheet, measured_bands(chosen.bands), power_w, most_heat)
     result = BuildResult(
         build=build,
         power_w=power_w,
@@ -103,7 +105,7 @@ def measure(build: Build, bench: BenchSheet, known: Sequence[Band]) -> Measured:
         agreements=agreements,
         limits=judge(chosen.bands, bench),
         stress=stress,
-        thermal=thermal_of(fits, build, bench, measured_bands(chosen.bands), stress, power_w),
+        thermal=thermal_of(fits, build, bench, stress),
         heat_split=heat_split_of(group, build.sheet, power_w),
         lot=lot_of(units),
         repeatability=find_repeatability(build.measurements),

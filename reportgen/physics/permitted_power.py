@@ -19,10 +19,10 @@ import numpy as np
 
 from reportgen.model import (
     BuildSheet,
-    FirstLimit,
-    MeasuredBand,
     Permitted,
     PermittedMode,
+    Stress,
+    StressBand,
     ThermalBand,
     ThermalFit,
 )
@@ -47,13 +47,7 @@ def duty_table(own: Mapping[str, float]) -> dict[str, float]:
 
 
 def permitted_of(
-    fit: ThermalFit,
-    bands: Sequence[MeasuredBand],
-    sheet: BuildSheet,
-    first_limit: FirstLimit | None,
-    *,
-    rated_w: float,
-    duty_percent: Mapping[str, float],
+    fit: ThermalFit, stress: Stress, sheet: BuildSheet, duty_percent: Mapping[str, float]
 ) -> Permitted | None:
     """What the build stands by band and mode; None: no temperature limit, or no heat, is known.
 
@@ -61,14 +55,10 @@ def permitted_of(
     ----------
     fit : ThermalFit
         From a log of this build, in its enclosure.
-    bands : sequence of MeasuredBand
-        The heat taken is that of the band's least efficiency, the lower end of its interval.
+    stress : Stress
+        Its heat counts, at most, and its first limit of volts or flux: no mode may have more.
     sheet : BuildSheet
         Names the temperature limits and the hottest surroundings.
-    first_limit : FirstLimit, optional
-        Of volts or flux, at peak envelope power: no mode may have more.
-    rated_w : float
-        Power asked about, entering the low side [W].
     duty_percent : mapping
         By mode, see `duty_table`.
 
@@ -83,15 +73,16 @@ def permitted_of(
         return None
     limit_of, limit_c = lowest
     room_k = limit_c - sheet.rating.ambient_max_c
-    found = tuple(_in_band(fit, band, room_k, rated_w) for band in bands)
-    modes = _modes(found, first_limit, duty_percent)
+    found = tuple(_in_band(fit, band, room_k, stress.power_w) for band in stress.bands)
+    modes = _modes(found, stress, duty_percent)
     if not modes:
         return None
     return Permitted(
         limit_c=limit_c,
         limit_of=limit_of,
         ambient_max_c=sheet.rating.ambient_max_c,
-        load_swr=sheet.rating.load_swr,
+        load_swr=stress.load_swr,
+        heat_load_swr=stress.heat_load_swr,
         bands=found,
         modes=modes,
     )
@@ -112,28 +103,20 @@ def lowest_limit(sheet: BuildSheet) -> tuple[str, float] | None:
     return min(given, key=lambda one: one[1], default=None)
 
 
-def _in_band(fit: ThermalFit, band: MeasuredBand, room_k: float, rated_w: float) -> ThermalBand:
-    name = band.band.name
-    heat_ratio = _heat_ratio(band)
-    if heat_ratio is None or heat_ratio <= 0:
-        return ThermalBand(band=name, continuous_w=None, reason="no heat known in this band")
-    k_per_w = fit.resistance_k_per_w.value * heat_ratio
-    continuous_w = max(room_k, 0.0) / k_per_w
+def _in_band(fit: ThermalFit, band: StressBand, room_k: float, rated_w: float) -> ThermalBand:
+    if band.heat_w is None or band.heat_w <= 0:
+        reason = "no heat known in this band"
+        return ThermalBand(band=band.band, continuous_w=None, reason=reason)
+    rise_k = fit.resistance_k_per_w.value * band.heat_w
+    continuous_w = max(room_k, 0.0) / rise_k * rated_w
+    matched_w = band.matched_heat_w
     return ThermalBand(
-        band=name,
+        band=band.band,
         continuous_w=continuous_w,
-        extrapolated=_is_extrapolated(fit, continuous_w, heat_ratio),
-        minutes_to_limit=minutes_to_limit(room_k, k_per_w * rated_w, fit.time_constant_s.value),
+        matched_w=continuous_w * band.heat_w / matched_w if matched_w and matched_w > 0 else None,
+        extrapolated=_is_extrapolated(fit, continuous_w, band.heat_w / rated_w),
+        minutes_to_limit=minutes_to_limit(room_k, rise_k, fit.time_constant_s.value),
     )
-
-
-def _heat_ratio(band: MeasuredBand) -> float | None:
-    """Upper end of the heat over the power, where the band is worst [ratio]."""
-    efficiency = band.figures.get("efficiency_ratio")
-    if efficiency is None:
-        return None
-    low = efficiency.low95 if efficiency.worst_low95 is None else efficiency.worst_low95
-    return None if low is None else 1 - low
 
 
 def _is_extrapolated(fit: ThermalFit, power_w: float, heat_ratio: float) -> bool:
@@ -145,7 +128,7 @@ def _is_extrapolated(fit: ThermalFit, power_w: float, heat_ratio: float) -> bool
 
 
 def _modes(
-    bands: Sequence[ThermalBand], first_limit: FirstLimit | None, duty_percent: Mapping[str, float]
+    bands: Sequence[ThermalBand], stress: Stress, duty_percent: Mapping[str, float]
 ) -> tuple[PermittedMode, ...]:
     """What each mode may have in every band, least first; modes without duty know no heat."""
     known = [(band.continuous_w, band) for band in bands if band.continuous_w is not None]
@@ -153,7 +136,7 @@ def _modes(
         return ()
     continuous_w, hottest = min(known, key=lambda one: one[0])
     modes = [
-        _mode(mode, duty, 100 * continuous_w / duty, hottest, first_limit)
+        _mode(mode, duty, 100 * continuous_w / duty, hottest, stress)
         for mode, duty in duty_percent.items()
         if duty > 0
     ]
@@ -161,8 +144,9 @@ def _modes(
 
 
 def _mode(
-    mode: str, duty_percent: float, by_heat_w: float, hottest: ThermalBand, limit: FirstLimit | None
+    mode: str, duty_percent: float, by_heat_w: float, hottest: ThermalBand, stress: Stress
 ) -> PermittedMode:
+    limit = stress.first_limit
     if limit is not None and limit.power_w < by_heat_w:
         power_w, band, bound_by, extrapolated = limit.power_w, limit.band, limit.what, False
     else:
@@ -172,6 +156,7 @@ def _mode(
         mode=mode,
         duty_percent=duty_percent,
         power_w=power_w,
+        high_side_v=stress.high_side_v * float(np.sqrt(power_w / stress.power_w)),
         band=band,
         bound_by=bound_by,
         extrapolated=extrapolated,

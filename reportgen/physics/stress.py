@@ -13,7 +13,7 @@ References
 
 from __future__ import annotations
 
-from collections.abc import Sequence
+from collections.abc import Mapping, Sequence
 
 import numpy as np
 
@@ -29,7 +29,12 @@ from reportgen.physics.core import effective_parameters, surface_m2
 _TESLA_PER_MT = 1e-3
 
 
-def stress_of(sheet: BuildSheet, bands: Sequence[MeasuredBand], power_w: float) -> Stress | None:
+def stress_of(
+    sheet: BuildSheet,
+    bands: Sequence[MeasuredBand],
+    power_w: float,
+    most_heat_ratio: Mapping[str, float] | None = None,
+) -> Stress | None:
     """Stress in every band, and the power at which the first given limit is met.
 
     Parameters
@@ -40,6 +45,9 @@ def stress_of(sheet: BuildSheet, bands: Sequence[MeasuredBand], power_w: float) 
         Those with figures.
     power_w : float
         Power at the low side, its peak envelope [W].
+    most_heat_ratio : mapping of str to float, optional
+        Heat over power in each band into the worst load of the rating's SWR; without it heat is
+        that into the nominal load.
 
     Notes
     -----
@@ -50,10 +58,16 @@ def stress_of(sheet: BuildSheet, bands: Sequence[MeasuredBand], power_w: float) 
     """
     if not bands:
         return None
-    found = tuple(_in_band(sheet, band, power_w) for band in bands)
+    most = most_heat_ratio or {}
+    known = all(band.band.name in most for band in bands if "heat_w" in band.figures)
+    found = tuple(
+        _in_band(sheet, band, power_w, most.get(band.band.name) if known else None)
+        for band in bands
+    )
     return Stress(
         power_w=power_w,
         load_swr=sheet.rating.load_swr,
+        heat_load_swr=sheet.rating.load_swr if known and most else 1.0,
         low_side_v=side_v(power_w, sheet.match.source_ohm, sheet.rating.load_swr),
         low_side_a=side_a(power_w, sheet.match.source_ohm, sheet.rating.load_swr),
         high_side_v=side_v(power_w, sheet.nominal_load_ohm, sheet.rating.load_swr),
@@ -88,15 +102,17 @@ def surface_rise_k(heat_w: float, surface_m2_: float) -> tuple[float, float]:
     return min(rises), max(rises)
 
 
-def _in_band(sheet: BuildSheet, band: MeasuredBand, power_w: float) -> StressBand:
+def _in_band(
+    sheet: BuildSheet, band: MeasuredBand, power_w: float, most_heat_ratio: float | None
+) -> StressBand:
     low_hz, high_hz = band.covered_hz
     swr, core, capacitor = sheet.rating.load_swr, sheet.core, sheet.compensation
     low_v = side_v(power_w, sheet.match.source_ohm, swr)
     across_ohm = sheet.match.source_ohm if capacitor.side == "low" else sheet.nominal_load_ohm
     capacitor_v = side_v(power_w, across_ohm, swr)
     farad = capacitor.capacitor_pf * 1e-12
-    heat = band.figures.get("heat_w")
-    heat_w = None if heat is None else (heat.mean if heat.high95 is None else heat.high95)
+    matched_w = _matched_heat_w(band)
+    heat_w = matched_w if most_heat_ratio is None else power_w * most_heat_ratio
     flux_t = rise = None
     if core is not None:
         area_m2 = effective_parameters(core).area_m2
@@ -108,8 +124,18 @@ def _in_band(sheet: BuildSheet, band: MeasuredBand, power_w: float) -> StressBan
         capacitor_v=capacitor_v if farad else None,
         capacitor_a=capacitor_v * 2 * np.pi * high_hz * farad if farad else None,
         heat_w=heat_w,
+        matched_heat_w=matched_w,
         surface_rise_k=rise,
     )
+
+
+def _matched_heat_w(band: MeasuredBand) -> float | None:
+    """Upper end of the heat at the worst frequency, into the nominal load [W]."""
+    heat = band.figures.get("heat_w")
+    if heat is None:
+        return None
+    ends = (heat.worst_high95, heat.high95, heat.worst, heat.mean)
+    return next((end for end in ends if end is not None), None)
 
 
 def _first_limit(
@@ -121,11 +147,20 @@ def _first_limit(
     for band in bands:
         if flux_limit_mt is not None and band.peak_flux_t is not None:
             share = band.peak_flux_t / (flux_limit_mt * _TESLA_PER_MT)
-            limits.append(FirstLimit(what="flux", band=band.band, power_w=power_w / share**2))
+            limits.append(
+                FirstLimit(
+                    what="flux", band=band.band, power_w=power_w / share**2, limit=flux_limit_mt
+                )
+            )
     rated_v = sheet.compensation.rated_v
     if rated_v is not None and bands[0].capacitor_v is not None:
         share = np.sqrt(2) * bands[0].capacitor_v / rated_v
         limits.append(
-            FirstLimit(what="capacitor volts", band=None, power_w=float(power_w / share**2))
+            FirstLimit(
+                what="capacitor volts",
+                band=None,
+                power_w=float(power_w / share**2),
+                limit=rated_v,
+            )
         )
     return min(limits, key=lambda one: one.power_w, default=None)

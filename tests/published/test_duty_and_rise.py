@@ -10,11 +10,10 @@ import numpy as np
 import pytest
 
 from reportgen.model import (
-    Band,
     BuildSheet,
-    Figure,
     Interval,
-    MeasuredBand,
+    Stress,
+    StressBand,
     ThermalFit,
     ThermalLog,
     Winding,
@@ -51,16 +50,16 @@ def test_duty_is_of_the_sending_alone() -> None:
         file="", unit="A", frequency_hz=7e6, power_w=200, heat_w=one, rise_k=one, start_k=0,
         time_constant_s=one, resistance_k_per_w=one, span_s=1,
     )  # fmt: skip
-    half = Figure(mean=0.5, worst=0.5, centre=0.5, worst_at_hz=7e6, low95=0.5)
-    band = MeasuredBand(
-        band=Band(name="40 m", from_hz=7e6, to_hz=7.2e6), covered_hz=(7e6, 7.2e6), points=3,
-        interpolated=False, figures={"efficiency_ratio": half},
+    band = StressBand(
+        band="40 m", peak_flux_t=None, capacitor_v=None, capacitor_a=None, heat_w=50.0,
+        matched_heat_w=50.0, surface_rise_k=None,
+    )  # fmt: skip
+    stress = Stress(
+        power_w=100, load_swr=1, heat_load_swr=1, low_side_v=0, low_side_a=0, high_side_v=0,
+        high_side_a=0, bands=(band,), first_limit=None,
     )  # fmt: skip
     winding = Winding(low_turns=3, high_turns=24, temperature_limit_c=140)
-    found = permitted_of(
-        fit, (band,), BuildSheet(name="Alder", winding=winding), None, rated_w=100,
-        duty_percent=DUTY_PERCENT,
-    )  # fmt: skip
+    found = permitted_of(fit, stress, BuildSheet(name="Alder", winding=winding), DUTY_PERCENT)
     assert found is not None
     power_w = {one.mode: one.power_w for one in found.modes}
     assert power_w["telegraphy"] == pytest.approx(500)
