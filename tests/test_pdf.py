@@ -110,12 +110,15 @@ TABLE = (
 
 
 @pytest.mark.parametrize("above", range(660, 740, 6))
-def test_rows_of_one_group_stay_on_one_page(above):
-    body = TABLE.format(above, "".join(GROUP.format(name) for name in "abc"))
+def test_rows_of_one_group_stay_on_one_page_and_no_group_alone(above):
+    body = TABLE.format(above, "".join(GROUP.format(name) for name in "abcd"))
     with pikepdf.open(io.BytesIO(write_pdf(PAGE.format(body), {}, "A4"))) as opened:
         assert 1 <= len(opened.pages) <= 2
-        for group in of_kind(opened, "/TBody"):
-            assert len(group.K) == 2
+        assert all(len(group.K) == 2 for group in of_kind(opened, "/TBody"))
+        tables = of_kind(opened, "/Table")
+        assert [len([part for part in table.K if part.S == "/TBody"]) for table in tables] in (
+            [4], [2, 2],
+        )  # fmt: skip
 
 
 def test_sections_are_in_the_outline(document):

@@ -30,6 +30,7 @@ _METRES = re.compile(r"(\d+) m")
 _LABEL_GAP = 4.0
 _MOST_LABEL_ROWS = 3
 _BOTTOM_LINES = 2.0
+_LEAST_LIMIT = 11.0  # pt
 DASHES = (0, (4, 2.2))
 
 
@@ -54,7 +55,7 @@ def frequency_figure(
 
 
 def _name_frequency_axis(figure: Figure, size: Size) -> None:
-    x = (size.width - size.right + 5) / size.width
+    x = (size.width - size.right + 8) / size.width
     y = (_BOTTOM_LINES * size.letters - 4) / size.height
     figure.text(x, y, "MHz", va="top", **label_style(size))
 
@@ -198,8 +199,15 @@ def add_baseline(axes: Axes, frequency_mhz: RealArray, value: RealArray) -> None
 
 
 def add_limits(axes: Axes, segments: Sequence[tuple[float, float, float]]) -> None:
-    """Acceptance limits: a dotted line across each band that has one."""
+    """Acceptance limits: a dotted line across each band that has one, long enough to be seen."""
     if segments:
-        lines = [[(low, level), (high, level)] for low, high, level in segments]
-        drawn = LineCollection(lines, color=LIGHT.ink, linewidth=1.2, linestyle=":", zorder=2.5)
+        low, high = axes.get_xlim()
+        least = _log_ratio(high, low) * _LEAST_LIMIT / size_of(axes).plot_width
+        lines = [_widened(*segment, math.exp(least / 2)) for segment in segments]
+        drawn = LineCollection(lines, color=LIGHT.ink, linewidth=1.4, linestyle=":", zorder=2.5)
         axes.add_collection(drawn, autolim=False)
+
+
+def _widened(low: float, high: float, level: float, factor: float) -> list[tuple[float, float]]:
+    centre = math.sqrt(low * high)
+    return [(min(low, centre / factor), level), (max(high, centre * factor), level)]
