@@ -25,9 +25,9 @@ def _pieces(text: str, room: float, measure: Measure) -> Iterator[str]:
     for word in text.split(" "):
         rest = word
         while len(rest) > 1 and measure(rest) > room:
-            kept = next(
-                (count for count in range(len(rest) - 1, 1, -1) if measure(rest[:count]) <= room), 1
-            )
+            kept = 1
+            while measure(rest[: kept + 1]) <= room:
+                kept += 1
             yield rest[:kept]
             rest = rest[kept:]
         if rest:
