@@ -16,9 +16,10 @@ TOP_LEVEL = {
 }  # fmt: skip
 # each layer may import those behind it; `reportgen` itself holds nothing but the version
 ARROWS = {
+    "arguments": {"reportgen"},
     "__main__": {
-        "follow", "versus", "pipeline", "sidecars", "pages", "output", "model", "errors",
-        "reportgen",
+        "arguments", "follow", "versus", "pipeline", "sidecars", "pages", "output", "model",
+        "errors", "reportgen",
     },
     "versus": {
         "pipeline", "intake", "pages", "output", "physics", "published", "model", "errors",
