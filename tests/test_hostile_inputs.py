@@ -57,6 +57,7 @@ from reportgen.intake.sidecar import parse_bench, parse_build
 from reportgen.intake.spot_readings import parse_spot_readings
 from reportgen.model import BenchSheet, Finding
 from reportgen.output.csv_tables import _harmless
+from reportgen.pages.line_breaks import columns_of, kept_text
 
 HEAD = 'name = "x"\n[winding]\nlow_turns = 3\nhigh_turns = 24\n'
 SECONDS = 10.0  # what is measured takes a tenth of a second to one; it took minutes
@@ -407,3 +408,11 @@ def test_hash_is_of_what_was_read(tmp_path: Path, monkeypatch) -> None:
 def test_cell_is_no_formula_for_anybody(cell: str, shown: str) -> None:
     """OWASP, CSV injection: full-width forms too, and cells that another separator would make."""
     assert _harmless(cell) == shown
+
+
+def test_word_without_an_end_is_broken_at_once() -> None:
+    began = time.perf_counter()
+    kept, lines = kept_text("[U+202E]" * 2000, 2, 50.0, columns_of)
+    assert time.perf_counter() - began < SECONDS
+    assert lines == 2
+    assert kept.endswith("\u2026")

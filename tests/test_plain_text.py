@@ -34,6 +34,10 @@ def test_long_text_is_cut_and_says_so():
     assert cut.endswith("\u2026")
 
 
+def test_text_that_grows_by_being_shown_is_cut_too():
+    assert len(clean_text("\u202e" * LONGEST_TEXT)) == LONGEST_TEXT
+
+
 def test_piles_of_marks_are_cut():
     assert len(clean_text("a" + "\u0316" * 50)) == 4
 
