@@ -41,11 +41,14 @@ def clean_text(text: str) -> str:
     become visible, runs of blanks one space, piles of combining marks are cut at three. What is
     longer than 2000 characters is cut, marked by an ellipsis.
     """
-    cut = text if len(text) <= LONGEST_TEXT else text[: LONGEST_TEXT - 1] + "…"
-    composed = unicodedata.normalize("NFC", _BLANKS.sub(" ", cut))
+    composed = unicodedata.normalize("NFC", _BLANKS.sub(" ", _cut(text)))
     if _PLAIN.fullmatch(composed):
         return composed.strip(" ")
-    return "".join(_visible(_unpiled(composed))).strip(" ")
+    return _cut("".join(_visible(_unpiled(composed))).strip(" "))
+
+
+def _cut(text: str) -> str:
+    return text if len(text) <= LONGEST_TEXT else text[: LONGEST_TEXT - 1] + "…"
 
 
 def text_lines(text: str) -> tuple[str, ...]:
