@@ -10,6 +10,7 @@ import math
 import unicodedata
 from collections.abc import Callable
 from dataclasses import asdict
+from pathlib import Path
 
 import numpy as np
 
@@ -27,10 +28,8 @@ MOST_POINTS = 2000
 LONGEST_MESSAGE = 500  # a foreign text is cut at 80 characters, and few are quoted at once
 UNITS = (None, "Hz", "kHz", "MHz", "GHz")
 DECIMALS = (None, ".", ",")
-BENCH = parse_bench(
-    b"[loads.main]\nresistance_ohm = 3200\n[calibrations.evening]\n[calibrations.morning]\n",
-    file="runs.toml",
-)
+EXAMPLES = Path(__file__).parents[2] / "example_runs"
+BENCH = parse_bench((EXAMPLES / "runs.toml").read_bytes(), file="runs.toml")
 _UNSEEN = {"Cc", "Cf", "Cs", "Co", "Cn", "Zl", "Zp"}
 
 
