@@ -12,6 +12,7 @@ from pathlib import Path
 import pikepdf
 import pytest
 import result_samples as samples
+from conftest import missing
 
 from reportgen.errors import OutputError
 from reportgen.pages import pdf as pdf_pages
@@ -70,7 +71,7 @@ def page_text(data: bytes) -> str:
             ["pdftotext", "-layout", "-", "-"], input=data, capture_output=True, check=True
         )
     except FileNotFoundError:
-        pytest.skip("pdftotext is not installed")
+        missing("pdftotext is not installed: apt-get install poppler-utils")
     return re.sub(r"\s+", " ", done.stdout.decode())
 
 
