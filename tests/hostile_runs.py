@@ -11,6 +11,7 @@ from small_runs import SWEEP
 
 MARK = "zq7"
 BASELINE = "zq7-7-7"
+FOLDERS = ("<zq7 zq8=1 onclick=zq()>", "=zq7,'\"{{7*7}}")
 UNSEEN = "\u202e\u200b\u0007\u001b[31m\u0085"
 FORMULA = '=HYPERLINK("http://127.0.0.1","x")'
 
@@ -53,8 +54,8 @@ def write_hostile_runs(root: Path, port: int, local_file: Path, canary: Path) ->
     root.mkdir(parents=True)
     (root / "runs.toml").write_text(_bench(name), "utf-8")
     # a folder's name may hold anything but a slash
-    _write_build(root / "<zq7 zq8=1 onclick=zq()>", name, text)
-    _write_build(root / "=zq7,'\"{{7*7}}", name, name)
+    for folder, words in zip(FOLDERS, (text, name), strict=True):
+        _write_build(root / folder, name, words)
     broken = root / "broken <zq7 zq8=1>"
     broken.mkdir()
     (broken / "build.toml").write_text(
