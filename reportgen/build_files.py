@@ -49,7 +49,7 @@ def build_files(
         program_version=__version__,
         forecast=forecast,
     )
-    words = kit_words(result, comparison, bench, __version__)
+    words = kit_words(result, bench, __version__)
     wide, square = card_pictures(words, bench.locale)
     return {
         "report.html": html.encode("utf-8"),

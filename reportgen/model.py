@@ -145,6 +145,11 @@ PORTS_OF_SETUP = {
 }
 
 
+SETUPS_WITHOUT_UNIT = frozenset(
+    {Setup.LOAD_CHECK, Setup.RESISTOR_CHECK, Setup.THRU_CHECK, Setup.ANTENNA}
+)
+
+
 @dataclass(frozen=True, kw_only=True, slots=True)
 class Winding(Sheet):
     """The turns of both sides."""
@@ -864,6 +869,8 @@ class BandComparison:
     heat_loss_db: float | None
     heat_w: float | None
     heat_loss_u95_db: float | None = None
+    heat_loss_low95_db: float | None = None
+    heat_loss_high95_db: float | None = None
     verdict: Verdict | None = None
     reason: str | None = None
 

@@ -223,6 +223,8 @@ def _band_comparison(document: Document) -> BandComparison:
         heat_loss_db=_maybe(_number, document["heat_loss_db"]["difference"]),
         heat_w=_maybe(_number, document["heat_w"]["difference"]),
         heat_loss_u95_db=_maybe(_number, document["heat_loss_db"]["u95"]),
+        heat_loss_low95_db=_maybe(_number, document["heat_loss_db"]["low95"]),
+        heat_loss_high95_db=_maybe(_number, document["heat_loss_db"]["high95"]),
         verdict=_maybe(Verdict, document["verdict"]),
         reason=_maybe(_text, document["reason"]),
     )

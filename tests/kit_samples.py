@@ -5,7 +5,7 @@ from dataclasses import replace
 import power_samples
 import result_samples as samples
 
-from reportgen.model import BenchSheet, BuildResult, Comparison, Permitted
+from reportgen.model import BenchSheet, BuildResult, Permitted
 from reportgen.pages.kit_words import KitWords, kit_words
 
 LONG_NAME = (
@@ -50,11 +50,9 @@ def hostile_bench(**bench) -> BenchSheet:
     return replace(samples.BENCH, publisher=samples.HOSTILE, **bench)
 
 
-def words_of(
-    result: BuildResult, bench: BenchSheet = samples.BENCH, comparison: Comparison | None = None
-) -> KitWords:
+def words_of(result: BuildResult, bench: BenchSheet = samples.BENCH) -> KitWords:
     """What a card and a listing say of it."""
-    return kit_words(result, comparison, bench, "1.2.3")
+    return kit_words(result, bench, "1.2.3")
 
 
 RESULTS = {

@@ -82,7 +82,7 @@ def test_every_key_that_others_rely_on(result: BuildResult) -> None:
         assert one.keys() == {"file", "sha256", "points"}
     for one in document["baseline"]["bands"]:
         assert one.keys() >= {"band", "heat_loss_db", "heat_w", "verdict"}
-        assert one["heat_loss_db"].keys() == {"difference", "u95"}
+        assert one["heat_loss_db"].keys() == {"difference", "u95", "low95", "high95"}
 
 
 @pytest.mark.parametrize("result", ALL.values(), ids=ALL)

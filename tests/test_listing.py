@@ -90,17 +90,6 @@ def test_band_table_holds_every_band_with_its_interval(kind):
 
 
 @pytest.mark.parametrize("kind", RENDERERS)
-def test_the_baseline_takes_one_line(kind):
-    baseline = samples.full(1.2, "Birch", "birch")
-    result = named("Alder")
-    compared = samples.comparison(result, baseline, judged=True)
-    words = words_of(result, comparison=compared)
-    text = RENDERERS[kind](words).decode()
-    assert "Against the baseline, Birch: better on all 10 bands." in text
-    assert "baseline" not in listing(result, kind)
-
-
-@pytest.mark.parametrize("kind", RENDERERS)
 def test_without_loss_it_says_so_and_why(kind):
     text = plain(samples.load_only(), kind)
     assert "Efficiency: not measured." in text

@@ -36,7 +36,8 @@ def test_nothing_from_elsewhere_and_no_script_but_that_of_the_index(sources, pag
             for attribute, value in attributes.items():
                 assert not attribute.startswith("on"), (name, tag)
                 if attribute in ("href", "src", "xlink:href"):
-                    assert re.fullmatch(r"(#[\w-]+|[a-z0-9-]+/report\.(html|pdf))", value), value
+                    ours = r"(#[\w-]+|[a-z0-9-]+/(report|card)\.(html|pdf))"
+                    assert re.fullmatch(ours, value), value
         addresses = set(re.findall(r'url\((?!#)["\']?([a-z]+:[^,"\')]*)', sources[name]))
         assert addresses == {"data:font/ttf;base64"}
 
@@ -101,7 +102,7 @@ def test_cautions_stand_on_every_page(pages):
             "Exposure.",
             "Licence.",
             "nothing of saturation, of breakdown",
-            "One unit is not a lot.",
+            "One unit is no production batch.",
         ):
             assert words in page.text
 

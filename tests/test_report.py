@@ -81,7 +81,7 @@ def test_figures_without_interval_have_the_places_of_the_table(sources):
 
 def test_intervals_set_the_digits_and_are_shown(pages):
     text = pages["judged"].text
-    assert "After \u00b1 stands half of the 95 % interval" in text
+    assert "After \u00b1 stands the half-width of the 95 % interval" in text
     assert "0.623 \u00b1 0.019" in text
     assert "\u22120.126 \u00b1 0.021" in text
     assert "Against the baseline, Birch: better on all 10 bands." in text
@@ -256,10 +256,10 @@ def test_neighbours_into_another_load_and_further_ones_are_left_out():
 @pytest.mark.parametrize(
     ("found", "said"),
     [
-        (heat.capacitor(then=2.4), "No capacitor gives a lower worst SWR than the 68 pF that is"),
+        (heat.capacitor(then=2.4), "No other value is sure to give a lower worst SWR than the"),
         (
             heat.capacitor(then=2.4, present_pf=0.0),
-            "No capacitor gives a lower worst SWR than none.",
+            "No other value is sure to give a lower worst SWR than none.",
         ),
         (heat.capacitor(best_pf=0.0), "Without the 68 pF across the low side the worst SWR would"),
         (heat.capacitor(present_pf=0.0), "With 150 pF instead of none across the low side"),

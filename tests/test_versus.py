@@ -75,8 +75,8 @@ def page() -> Page:
 
 def test_the_first_build_is_what_the_others_meet(page):
     assert "Beech and Cherry against Ash" in page.text
-    assert "Ash One ring of 36 mm" in page.text
-    assert re.search(r"Ash One ring .{60,160} is the reference", page.text)
+    assert "Ash 3200 Ω. One ring of 36 mm" in page.text
+    assert re.search(r"Ash 3200 Ω. One ring .{60,160} is the reference", page.text)
     assert "better on 10" in page.text
     assert "The most efficient is Beech:" in page.text
     assert "over the 10 bands that all share" in page.text
@@ -106,7 +106,7 @@ def test_particulars_stand_side_by_side():
     text = page_of(one, other)[0].text.partition("Side by side")[2]
     assert "Winding 3 turns to 24, one tapped winding, wire 0.8 mm 3 turns to 24" in text
     assert "operator bench 2 bench 9" in text
-    assert "temperature_c 21.5 \u2013 " in text
+    assert "temperature c 21.5 \u2013 " in text
 
 
 def test_the_page_stands_alone(page):

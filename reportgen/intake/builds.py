@@ -16,7 +16,7 @@ from reportgen.intake.folders import (
     stray_files,
 )
 from reportgen.intake.paths import read_bytes
-from reportgen.intake.plausibility import check_dates, check_sweep
+from reportgen.intake.plausibility import check_dates, check_sweep, without_answered
 from reportgen.intake.remarks import shortened
 from reportgen.intake.scan import STANDARD_LIMITS, is_sweep, scan_runs
 from reportgen.intake.sidecar import completed_entry, parse_bench, parse_build
@@ -28,6 +28,7 @@ from reportgen.intake.touchstone import parse_touchstone
 from reportgen.model import (
     OUTPUT_MARKER,
     PORTS_OF_SETUP,
+    SETUPS_WITHOUT_UNIT,
     Band,
     BenchSheet,
     Build,
@@ -44,10 +45,6 @@ from reportgen.model import (
 from reportgen.physics.allocations import known_bands
 
 __all__ = ["BuildFolder", "Runs", "open_runs", "read_build"]
-
-_NOT_OF_A_UNIT = frozenset(
-    {Setup.LOAD_CHECK, Setup.RESISTOR_CHECK, Setup.THRU_CHECK, Setup.ANTENNA}
-)
 
 
 @dataclass(frozen=True, kw_only=True, slots=True)
@@ -209,7 +206,7 @@ class _Reading:
 
     def build(self) -> Build:
         """The build, when at least one sweep of a unit is left."""
-        if all(each.entry.setup in _NOT_OF_A_UNIT for each in self.measurements):
+        if all(each.entry.setup in SETUPS_WITHOUT_UNIT for each in self.measurements):
             raise InputRejected((*shortened(self.findings), _nothing_left(self.sheet)))
         return Build(
             key=self.folder.key,
@@ -218,7 +215,7 @@ class _Reading:
             measurements=tuple(self.measurements),
             heat_runs=tuple(self.heat_runs),
             inputs=tuple(self.inputs),
-            findings=shortened(self.findings),
+            findings=shortened(without_answered(self.findings, self.measurements)),
         )
 
 

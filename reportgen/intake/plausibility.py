@@ -7,7 +7,7 @@ handheld sweeps; they are common practice, not taken from a standard.
 from __future__ import annotations
 
 import math
-from collections.abc import Iterable, Iterator
+from collections.abc import Iterable, Iterator, Sequence
 from datetime import date
 
 import numpy as np
@@ -42,6 +42,16 @@ _FEWEST_FOR_SPIKES = 21
 _FEWEST_IN_BAND = 5
 _LISTED = 5
 _FIRST_YEAR = 2010
+
+
+def without_answered(
+    findings: Sequence[Finding], measurements: Sequence[Measurement]
+) -> tuple[Finding, ...]:
+    """Findings without the call for the other path of pairs that were swept both ways round."""
+    pairs = [one for one in measurements if one.entry.setup is Setup.BACK_TO_BACK]
+    ways = {one.entry.pair for one in pairs}
+    both = {one.sweep.file for one in pairs if one.entry.pair[::-1] in ways}
+    return tuple(one for one in findings if one.code != "one-path" or one.file not in both)
 
 
 def check_sweep(measurement: Measurement, bands: Iterable[Band]) -> tuple[Finding, ...]:

@@ -204,7 +204,12 @@ def _comparison(comparison: Comparison) -> Document:
 def _band_comparison(band: BandComparison) -> Document:
     return {
         "band": band.band,
-        "heat_loss_db": {"difference": band.heat_loss_db, "u95": band.heat_loss_u95_db},
+        "heat_loss_db": {
+            "difference": band.heat_loss_db,
+            "u95": band.heat_loss_u95_db,
+            "low95": band.heat_loss_low95_db,
+            "high95": band.heat_loss_high95_db,
+        },
         "heat_w": {"difference": band.heat_w},
         "verdict": None if band.verdict is None else band.verdict.value,
         "reason": band.reason,

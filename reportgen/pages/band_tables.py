@@ -31,7 +31,7 @@ _EFFICIENCY = (
     " Efficiency is power into the load over power entering the low side; heat loss is the same "
     "in decibels."
 )
-_INTERVALS = " After \u00b1 stands half of the 95\u00a0% interval; all digits follow it."
+_INTERVALS = " After \u00b1 stands the half-width of the 95\u00a0% interval."
 _WITH_INTERVAL = ("efficiency_ratio", "heat_loss_db", "return_loss_db")
 
 

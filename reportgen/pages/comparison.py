@@ -6,15 +6,17 @@ from collections.abc import Sequence
 
 from reportgen.model import BandComparison, BuildResult, Comparison, MethodResult, Verdict
 from reportgen.pages.band_tables import heat_loss_text
-from reportgen.pages.display import number, plus_minus
+from reportgen.pages.display import interval, number, plus_minus
 from reportgen.pages.sentences import counted, listed
 from reportgen.pages.tables import Cell, Column, Row, Table, with_points_aligned
+from reportgen.pages.wording import ohms
 
 _CAPTION = "Mean heat loss in each band; a negative difference is less."
 _JUDGED = (
     " A build is better or worse where the 95\u00a0% interval of the difference leaves out zero; "
     "what a shared calibration leaves cancels in it."
 )
+_LIKE_LOADS = 0.05
 _JUDGEMENTS = (Verdict.BETTER, Verdict.WORSE, Verdict.SAME)
 
 
@@ -36,6 +38,17 @@ def comparison_sentence(comparison: Comparison | None) -> str:
         f"On {fewer} of {bands} its mean heat loss is below that of {name}. "
         "The uncertainty of the difference is not known, so no band is judged."
     )
+
+
+def loads_sentence(result: BuildResult, baseline: BuildResult | None, locale: str) -> str:
+    """That the two were measured into unlike loads; empty where they were not, or nearly so."""
+    if baseline is None:
+        return ""
+    ours, theirs = result.chosen.load_ohm, baseline.chosen.load_ohm
+    if abs(ours - theirs) <= _LIKE_LOADS * theirs:
+        return ""
+    loads = [ohms(round(load), locale) for load in (ours, theirs)]
+    return f"Mind that it is for {loads[0]}, the baseline for {loads[1]}."
 
 
 def _counts(verdicts: Sequence[Verdict | None]) -> str:
@@ -81,7 +94,7 @@ def _comparison_row(
         )
         return Row(head=band.band, words=words or "not comparable", words_columns=columns)
     cells = [Cell(text=heat_loss_text(side, band.band, locale)) for side in sides]
-    cells += [Cell(text=_difference_db(band.heat_loss_db, band.heat_loss_u95_db, locale))]
+    cells += [Cell(text=difference_db(band, locale))]
     cells += [Cell(text=number(band.heat_w, 1, locale=locale, signed=True))]
     if judged:
         look = "words soft" if band.verdict is Verdict.SAME else "words"
@@ -89,7 +102,15 @@ def _comparison_row(
     return Row(head=band.band, cells=tuple(cells))
 
 
-def _difference_db(difference: float, u95: float | None, locale: str) -> str:
-    if u95 is None:
+def difference_db(band: BandComparison, locale: str) -> str:
+    """The difference with its interval; both ends where half of it would belie the verdict."""
+    difference, u95 = band.heat_loss_db, band.heat_loss_u95_db
+    if difference is None or u95 is None:
         return number(difference, 2, locale=locale, signed=True)
-    return plus_minus(difference, u95, 2, locale=locale)
+    if (abs(difference) <= u95) == (band.verdict is Verdict.SAME):
+        return plus_minus(difference, u95, 2, locale=locale)
+    figure = number(difference, 2, u95=u95, locale=locale, signed=True)
+    low, high = band.heat_loss_low95_db, band.heat_loss_high95_db
+    assert low is not None
+    assert high is not None
+    return f"{figure} ({interval(low, high, 2, locale=locale)})"

@@ -163,7 +163,7 @@ def _draw_curves(
     if other is not None:
         samples.append(Sample(text="baseline", colour=LIGHT.baseline, dash=DASHES))
     if segments:
-        samples.append(Sample(text="limit", colour=LIGHT.ink, dash=":", width=1.4))
+        samples.append(Sample(text="limit", colour=LIGHT.ink, dash="-", width=2.2))
     add_key(figure, size, samples, from_left=0.14 * size.width if size.head_lines == 1 else 0.0)
     return svg_text(figure)
 

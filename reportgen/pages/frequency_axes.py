@@ -199,12 +199,12 @@ def add_baseline(axes: Axes, frequency_mhz: RealArray, value: RealArray) -> None
 
 
 def add_limits(axes: Axes, segments: Sequence[tuple[float, float, float]]) -> None:
-    """Acceptance limits: a dotted line across each band that has one, long enough to be seen."""
+    """Acceptance limits: a line across each band that has one, long enough to be seen."""
     if segments:
         low, high = axes.get_xlim()
         least = _log_ratio(high, low) * _LEAST_LIMIT / size_of(axes).plot_width
         lines = [_widened(*segment, math.exp(least / 2)) for segment in segments]
-        drawn = LineCollection(lines, color=LIGHT.ink, linewidth=1.4, linestyle=":", zorder=2.5)
+        drawn = LineCollection(lines, color=LIGHT.ink, linewidth=2.2, zorder=2.5)
         axes.add_collection(drawn, autolim=False)
 
 

@@ -9,17 +9,16 @@ from collections.abc import Iterator
 from dataclasses import dataclass, replace
 
 from reportgen.model import (
+    SETUPS_WITHOUT_UNIT,
     BandResult,
     BenchSheet,
     BuildResult,
     BuildSheet,
-    Comparison,
     MeasuredBand,
     Method,
     NotMeasured,
 )
 from reportgen.pages.band_tables import band_note
-from reportgen.pages.comparison import comparison_sentence
 from reportgen.pages.display import (
     NOT_MEASURED,
     aligned,
@@ -115,7 +114,6 @@ class KitWords:
     parts: tuple[str, ...]
     method: str
     measured_on: str
-    comparison: str
     provenance: str
 
     @property
@@ -124,9 +122,7 @@ class KitWords:
         return any(band.low95 is not None and band.high95 is not None for band in self.bands)
 
 
-def kit_words(
-    result: BuildResult, comparison: Comparison | None, bench: BenchSheet, program_version: str
-) -> KitWords:
+def kit_words(result: BuildResult, bench: BenchSheet, program_version: str) -> KitWords:
     """What the result says of the build, for somebody who thinks of building it."""
     sheet, locale = result.build.sheet, bench.locale
     lossy = bool(means(result.chosen, "efficiency_ratio"))
@@ -153,7 +149,6 @@ def kit_words(
         parts=tuple(_parts(sheet, locale)),
         method=_method_words(result),
         measured_on=sheet.measured_on.isoformat() if sheet.measured_on else "",
-        comparison=comparison_sentence(comparison),
         provenance=_provenance(result, program_version),
     )
 
@@ -286,7 +281,10 @@ def _core_words(sheet: BuildSheet, locale: str) -> str:
         entered(one, locale=locale) for one in (core.outer_mm, core.inner_mm, core.height_mm)
     )
     rings = f"{counted(core.stack, 'ring')}, {size}\u00a0mm"
-    return f"{rings}, {core.material}" if core.material else rings
+    parts = [rings, core.material]
+    if core.initial_permeability is not None:
+        parts.append(f"initial permeability {entered(core.initial_permeability, locale=locale)}")
+    return ", ".join(part for part in parts if part)
 
 
 def _parts(sheet: BuildSheet, locale: str) -> Iterator[str]:
@@ -306,5 +304,8 @@ def _method_words(result: BuildResult) -> str:
 
 
 def _provenance(result: BuildResult, program_version: str) -> str:
-    sweeps = counted(len(result.build.measurements), "sweep")
+    of_units = [
+        one for one in result.build.measurements if one.entry.setup not in SETUPS_WITHOUT_UNIT
+    ]
+    sweeps = counted(len(of_units), "sweep")
     return f"Computed from {sweeps} by reportgen {program_version}."

@@ -82,7 +82,6 @@ def listing_facts(words: KitWords) -> tuple[tuple[str, str], ...]:
         ("Worst SWR", f"{words.worst_swr}."),
         ("Power", words.power),
         ("How measured", f"{words.method}{on}{by}."),
-        ("", words.comparison),
     )
     return tuple((label, text) for label, text in facts if text)
 

@@ -6,6 +6,7 @@ from collections.abc import Sequence
 from dataclasses import dataclass
 
 from reportgen.model import (
+    SETUPS_WITHOUT_UNIT,
     Bandwidth,
     BenchSheet,
     Build,
@@ -15,6 +16,7 @@ from reportgen.model import (
     Load,
     Measurement,
     Setup,
+    Severity,
     SweepEntry,
 )
 from reportgen.pages.display import bandwidth_range, entered, with_unit
@@ -22,6 +24,7 @@ from reportgen.pages.sentences import counted, listed, rated_power
 from reportgen.pages.tables import Cell, Column, Row, Table
 from reportgen.pages.wording import SETUP_NAMES, criterion_words, ohms
 
+_LONGEST_DOUBT = 160
 _HASH_LETTERS = 12
 _TIMES = "\u00d7"
 
@@ -73,6 +76,8 @@ def units_words(entry: SweepEntry) -> str:
     """The units in a sweep: one, or the pair."""
     if entry.units is not None or entry.setup.value == "back-to-back":
         return " to ".join(entry.pair)
+    if entry.setup in SETUPS_WITHOUT_UNIT:
+        return entry.unit or "none"
     return entry.unit or "A"
 
 
@@ -153,6 +158,18 @@ def _finding_text(finding: Finding) -> FindingText:
     )
 
 
+def doubts_words(findings: Sequence[Finding]) -> str:
+    """The first of the errors and warnings, and how many more there are; empty: none."""
+    grave = [one for one in findings if one.severity is not Severity.NOTE]
+    if not grave:
+        return ""
+    first = min(grave, key=lambda one: list(Severity).index(one.severity))
+    message = f"{first.file}: {first.message}" if first.file else first.message
+    others = len(grave) - 1
+    more = f" {others} more under Findings." if others else ""
+    return f"{message[:_LONGEST_DOUBT]}{'...' * (len(message) > _LONGEST_DOUBT)}.{more}"
+
+
 # --- the build -----------------------------------------------------------------------------------
 
 
@@ -164,10 +181,13 @@ def build_facts(result: BuildResult, locale: str) -> tuple[tuple[str, str], ...]
         ("Core", _core_words(sheet, locale)),
         ("Capacitor", _capacitor_words(sheet, locale)),
         ("Meant for", _match_words(sheet, locale)),
-        ("Rated", _rating_words(result, locale)),
+        ("Design power", _rating_words(result, locale)),
         ("Measured on", sheet.measured_on.isoformat() if sheet.measured_on else "not stated"),
     ]
-    facts += [(name, _record_words(value, locale)) for name, value in sheet.record.items()]
+    facts += [
+        (name.replace("_", " "), _record_words(value, locale))
+        for name, value in sheet.record.items()
+    ]
     return tuple(facts)
 
 

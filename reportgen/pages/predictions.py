@@ -2,15 +2,13 @@
 
 from __future__ import annotations
 
-from collections.abc import Iterator, Sequence
+from collections.abc import Sequence
 from dataclasses import dataclass
 
-from reportgen.model import Interval
+from reportgen.model import BenchSheet, Interval
 from reportgen.pages.display import DASH, entered, number, quantity_number, with_unit
 from reportgen.pages.intervals import half_width, with_interval
-from reportgen.pages.sentences import counted
 from reportgen.pages.tables import (
-    Cell,
     Column,
     Row,
     Table,
@@ -18,14 +16,12 @@ from reportgen.pages.tables import (
     figures,
     with_points_aligned,
 )
+from reportgen.pages.winding_predictions import promising_sentence, windings_table
 from reportgen.pages.wording import ohms
 from reportgen.physics.antennas import AntennaBand, AntennaForecast
-from reportgen.physics.forecast import CapacitorForecast, Forecast, WindingForecast
+from reportgen.physics.forecast import CapacitorForecast, Forecast
 from reportgen.physics.outcomes import Outcome
 from reportgen.physics.quantities import BY_KEY
-
-_NEAR_TURNS = 1.5
-"""Ratios shown differ by fewer turns of the high side than this."""
 
 
 @dataclass(frozen=True, kw_only=True, slots=True)
@@ -41,6 +37,7 @@ class Predictions:
     """Everything that a page says of a forecast."""
 
     capacitor: str
+    promising: str
     bands: Table | None
     windings: Table
     loads: Table
@@ -49,15 +46,17 @@ class Predictions:
 
 
 def predictions_of(
-    forecast: Forecast | None, winding: tuple[float, float], locale: str
+    forecast: Forecast | None, winding: tuple[float, float], bench: BenchSheet
 ) -> Predictions | None:
     """A forecast in words; `winding` is the turns of both sides as they are."""
     if forecast is None:
         return None
+    locale = bench.locale
     return Predictions(
         capacitor=_capacitor_sentences(forecast.capacitor, locale),
         bands=_bands_table(forecast.capacitor, locale) if forecast.capacitor.better else None,
-        windings=_winding_table(forecast, winding, locale),
+        windings=windings_table(forecast, winding, bench),
+        promising=promising_sentence(forecast, winding, bench),
         loads=_loads_table(forecast.loads, locale),
         antennas=tuple(
             Antenna(file=one.file, table=_antenna_table(one, locale)) for one in forecast.antennas
@@ -82,7 +81,8 @@ def _worst_swr_sentence(found: CapacitorForecast, locale: str) -> str:
     now, then = (_figure("swr", one.swr, locale) for one in (found.now, found.then))
     if not found.better or now == then:
         kept = f"the {_farads(found.present_pf, locale)} that is there"
-        return f"No capacitor gives a lower worst SWR than {kept if found.present_pf else 'none'}."
+        lower = f"lower worst SWR than {kept if found.present_pf else 'none'}"
+        return f"No other value is sure to give a {lower}."
     change = f"With {_farads(found.best_pf, locale)} instead of {_farads(found.present_pf, locale)}"
     if not found.best_pf:
         change = f"Without the {_farads(found.present_pf, locale)}"
@@ -152,68 +152,6 @@ def _figure(key: str, found: Interval | None, locale: str) -> str:
     return with_interval(BY_KEY[key], found.value, found.low95, found.high95, locale=locale)
 
 
-# --- windings and stacks -------------------------------------------------------------------------
-
-
-def _winding_table(forecast: Forecast, winding: tuple[float, float], locale: str) -> Table:
-    found = forecast.capacitor
-    present = [_row(_turns(*winding, locale), "as it is", found.present_pf, found.now, locale)]
-    if found.better:
-        row = _row(_turns(*winding, locale), "other capacitor", found.best_pf, found.then, locale)
-        present.append(row)
-    groups = (present, *_neighbours(forecast, winding, locale))
-    table = Table(
-        caption=_caption(found.now.load_ohm, locale),
-        corner="Turns",
-        columns=(
-            Column(label="Change", words=True),
-            Column(label="Capacitor", unit="pF"),
-            Column(label="Worst SWR"),
-            Column(label="Mean heat loss", unit="dB"),
-        ),
-        groups=tuple(tuple(rows) for rows in groups if rows),
-    )
-    return with_points_aligned(table, locale)
-
-
-def _caption(load_ohm: float, locale: str) -> str:
-    return (
-        f"Predicted, not measured, into {ohms(load_ohm, locale)}: worst SWR in any band and mean "
-        "heat loss over all, with the capacitor that gives the least worst SWR. After \u00b1 "
-        "stands half of the 95\u00a0% interval."
-    )
-
-
-def _neighbours(
-    forecast: Forecast, winding: tuple[float, float], locale: str
-) -> Iterator[list[Row]]:
-    yield [_winding_row(one, "same ratio", locale) for one in forecast.turns]
-    yield [
-        _winding_row(one, "other ratio", locale)
-        for one in forecast.ratios
-        if not one.own_load and abs(one.high_turns - winding[1]) < _NEAR_TURNS
-    ]
-    yield [
-        _winding_row(one, f"stack of {counted(one.stack or 1, 'ring')}", locale)
-        for one in forecast.stacks
-    ]
-
-
-def _winding_row(one: WindingForecast, change: str, locale: str) -> Row:
-    turns = _turns(one.low_turns, one.high_turns, locale)
-    return _row(turns, change, one.best_pf, one.best_capacitor, locale)
-
-
-def _turns(low: float, high: float, locale: str) -> str:
-    return "\u00a0:\u00a0".join(entered(one, locale=locale) for one in (low, high))
-
-
-def _row(turns: str, change: str, capacitor_pf: float, then: Outcome, locale: str) -> Row:
-    farads = entered(capacitor_pf, locale=locale) if capacitor_pf else "none"
-    texts = [_figure("swr", then.swr, locale), _figure("heat_loss_db", then.heat_loss_db, locale)]
-    return Row(head=turns, cells=(Cell(text=change, look="words"), *figures([farads, *texts])))
-
-
 # --- antennas ------------------------------------------------------------------------------------
 
 _ANTENNA_FIGURES = ("efficiency_ratio", "swr", "delivered_ratio")
@@ -222,8 +160,8 @@ _ANTENNA_FIGURES = ("efficiency_ratio", "swr", "delivered_ratio")
 def _antenna_table(antenna: AntennaForecast, locale: str) -> Table:
     table = Table(
         caption=(
-            "Predicted, not measured: mean efficiency, worst SWR that the source sees, and mean "
-            "of what is delivered."
+            "Predicted, not measured, for this one antenna: mean efficiency, worst SWR that the "
+            "source sees, and mean of what is delivered."
         ),
         corner="Band",
         columns=(

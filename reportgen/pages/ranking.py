@@ -19,6 +19,7 @@ from reportgen.pages.summary import (
     worst_of,
     worsts,
 )
+from reportgen.pages.wording import ohms
 from reportgen.physics.quantities import BY_KEY, Better
 from reportgen.published import PublishedBuild
 
@@ -94,9 +95,10 @@ def shared_words(shared: Sequence[str]) -> str:
     if not shared:
         return "Figures of each build are over its own bands: the builds share none."
     if len(shared) <= _MOST_LISTED:
-        return f"Figures are over what all builds share: {listed(shared)}."
+        return f"Figures are over what all with a loss share: {listed(shared)}."
     first, last = (name.replace(" ", "\u00a0") for name in (shared[0], shared[-1]))
-    return f"Figures are over the {len(shared)} bands that all share, from {first} to {last}."
+    bands = f"{len(shared)} bands that all with a loss share"
+    return f"Figures are over the {bands}, from {first} to {last}."
 
 
 def mean_efficiency(build: PublishedBuild, shared: Sequence[str]) -> float | None:
@@ -237,7 +239,7 @@ def _line(
         place=str(places[1]) if places[1] else DASH,
         key=build.key,
         name=build.name,
-        summary=build.summary,
+        summary=f"{ohms(round(build.load_ohm), locale)}. {build.summary}",
         figures=tuple(one.shown(build, shared, locale) for one in FIGURES),
         against="is the baseline" if is_baseline else against_words(build.comparison),
         standing="baseline" if is_baseline else standing(build.comparison),

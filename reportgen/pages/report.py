@@ -11,7 +11,7 @@ from reportgen.model import BenchSheet, BuildResult, Comparison, Method
 from reportgen.pages import sentences
 from reportgen.pages.band_tables import band_table, missing_quantities
 from reportgen.pages.charts import Chart, draw_charts
-from reportgen.pages.comparison import comparison_sentence, comparison_table
+from reportgen.pages.comparison import comparison_sentence, comparison_table, loads_sentence
 from reportgen.pages.heat_parts import heat_parts_sentences, heat_parts_table
 from reportgen.pages.html import inline_svg, page_style
 from reportgen.pages.limits import limits_table, limits_words
@@ -26,6 +26,7 @@ from reportgen.pages.particulars import (
     bandwidth_table,
     build_facts,
     chosen_units_words,
+    doubts_words,
     finding_texts,
     inputs_table,
     parts_table,
@@ -174,6 +175,9 @@ def _page(
     forecast: Forecast | None,
 ) -> ReportPage:
     sheet, locale = result.build.sheet, bench.locale
+    against = (
+        f"{comparison_sentence(comparison)} {loads_sentence(result, baseline, locale)}".strip()
+    )
     return ReportPage(
         name=sheet.name,
         publisher=bench.publisher,
@@ -181,20 +185,20 @@ def _page(
         summary=sheet.summary,
         simulated=is_simulated(result),
         verdict=sentences.verdict(result, locale),
-        brief=_brief(result, comparison, bench),
+        brief=_brief(result, against, bench),
         coverage=sentences.coverage_sentence(result),
         key_figures=sentences.key_figures(result, locale),
         bands=band_table(result, bench),
         missing=missing_quantities(result),
         pictures=pictures,
         comparison=comparison_table(result, comparison, baseline, locale),
-        comparison_words=comparison_sentence(comparison),
+        comparison_words=against,
         limits=limits_table(result.limits, locale),
         heat_parts=heat_parts_table(result, locale),
         heat_parts_words=heat_parts_sentences(result, locale),
         power=power_of(result, locale),
         predictions=predictions_of(
-            forecast, (sheet.winding.low_turns, sheet.winding.high_turns), locale
+            forecast, (sheet.winding.low_turns, sheet.winding.high_turns), bench
         ),
         method_name=METHOD_NAMES[result.chosen.method],
         method_words=_method_words(result, locale),
@@ -220,16 +224,13 @@ def _page(
     )
 
 
-def _brief(
-    result: BuildResult, comparison: Comparison | None, bench: BenchSheet
-) -> tuple[tuple[str, str], ...]:
-    """What the rest of the page says at length, in a line each: limits, baseline, power."""
+def _brief(result: BuildResult, against: str, bench: BenchSheet) -> tuple[tuple[str, str], ...]:
+    """What the rest of the page says at length, in a line each."""
     lines = {
         "Limits": " ".join(limits_words(result.limits)).strip(),
-        "Baseline": _IS_BASELINE
-        if bench.baseline == result.build.key
-        else comparison_sentence(comparison),
+        "Baseline": _IS_BASELINE if bench.baseline == result.build.key else against,
         "Power": "" if result.stress is None else power_verdict(result, bench.locale),
+        "Doubts": doubts_words(result.findings),
     }
     return tuple((label, words) for label, words in lines.items() if words)
 

@@ -131,7 +131,7 @@ def key_figures(result: BuildResult, locale: str) -> tuple[KeyFigure, ...]:
 def _efficiency_key(result: BuildResult, locale: str) -> KeyFigure:
     mean = _mean_efficiency(result)
     if mean is None:
-        return KeyFigure(label="Efficiency", figure=NOT_MEASURED, where="", accent="ink")
+        return KeyFigure(label="Efficiency", figure=NOT_MEASURED, where="", accent="none")
     bands = counted(len(means(result.chosen, "efficiency_ratio")), "band")
     return _key("Mean efficiency", "efficiency_ratio", mean, f"over {bands}", "ink", locale)
 
@@ -139,9 +139,10 @@ def _efficiency_key(result: BuildResult, locale: str) -> KeyFigure:
 def _match_key(result: BuildResult, locale: str) -> KeyFigure:
     worst = worst_of(worsts(result.chosen, "swr"), "swr")
     if worst is None:
-        return KeyFigure(label="Match", figure=NOT_MEASURED, where="", accent="match")
+        return KeyFigure(label="Match", figure=NOT_MEASURED, where="", accent="none")
     places = "" if worst.at_hz is None else megahertz(worst.at_hz, locale=locale, places=3)
     where = f"on {worst.band.name}" + (f", at {places}\u00a0MHz" if places else "")
+    where += _interpolated(result, worst)
     return _key("Worst SWR in a band", "swr", worst, where, "match", locale)
 
 
@@ -149,8 +150,15 @@ def _heat_key(result: BuildResult, locale: str) -> KeyFigure:
     most = worst_of(means(result.chosen, "heat_w"), "heat_w")
     label = f"Most heat at {rated_power(result, locale)}"
     if most is None:
-        return KeyFigure(label=label, figure=NOT_MEASURED, where="", accent="heat")
-    return _key(label, "heat_w", most, f"on {most.band.name}", "heat", locale)
+        return KeyFigure(label=label, figure=NOT_MEASURED, where="", accent="none")
+    where = f"on {most.band.name}{_interpolated(result, most)}"
+    return _key(label, "heat_w", most, where, "heat", locale)
+
+
+def _interpolated(result: BuildResult, one: BandValue) -> str:
+    """Said of a figure that rests on few points, or none, in its band."""
+    few = {band.band.name for band in measured_bands(result.chosen) if band.interpolated}
+    return ", interpolated" if one.band.name in few else ""
 
 
 def _key(label: str, key: str, one: BandValue, where: str, accent: str, locale: str) -> KeyFigure:

@@ -6,7 +6,8 @@ from collections.abc import Sequence
 from dataclasses import dataclass, replace
 
 from reportgen.model import BandComparison, BuildResult, Comparison, MeasuredBand
-from reportgen.pages.display import DASH, NOT_MEASURED, number, plus_minus
+from reportgen.pages.comparison import difference_db
+from reportgen.pages.display import DASH, NOT_MEASURED, number
 from reportgen.pages.heat_grid import SIGNS
 from reportgen.pages.intervals import mean_with_interval
 from reportgen.pages.particulars import build_facts
@@ -95,8 +96,7 @@ def _difference(rival: Rival, band: str, locale: str) -> Cell:
         return Cell(text=NOT_MEASURED if found is None else _why_not(found), look="soft")
     if found.heat_loss_u95_db is None or found.verdict not in SIGNS:
         return Cell(text=number(found.heat_loss_db, 2, locale=locale, signed=True))
-    figure = plus_minus(found.heat_loss_db, found.heat_loss_u95_db, 2, locale=locale)
-    return Cell(text=f"{figure}\u00a0{SIGNS[found.verdict].glyph}")
+    return Cell(text=f"{difference_db(found, locale)}\u00a0{SIGNS[found.verdict].glyph}")
 
 
 def _why_not(found: BandComparison) -> str:

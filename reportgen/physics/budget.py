@@ -70,6 +70,13 @@ class Question:
         ratio = np.mean([one for one in ratios if one is not None], axis=0)
         return {band.band.name: _u95_db(ratio, hz, band) for band in self.bands}
 
+    def stated_u95_db(self, name: str) -> float | None:
+        """Half of the interval that the result states for a band's mean heat loss [dB]."""
+        figure = next(band.figures["heat_loss_db"] for band in self.bands if band.band.name == name)
+        if figure.low95 is None or figure.high95 is None:
+            return None
+        return (figure.high95 - figure.low95) / 2
+
 
 def _of_band(band: MeasuredBand) -> RealArray:
     return np.linspace(*band.covered_hz, _POINTS)
@@ -103,7 +110,8 @@ def find_advice(question: Question) -> tuple[Advice, ...]:
     """Further sweeps that would shrink the interval, each tried with a made-up sweep.
 
     The sweep is what an analyzer without faults would show of the unit as it was computed; the
-    draws then are those of the real sweeps.
+    draws then are those of the real sweeps. Few draws tell by which factor the interval shrinks;
+    the factor is applied to the interval that is stated.
     """
     now = question.u95_db(question.plans, ALL)
     found = []
@@ -111,7 +119,9 @@ def find_advice(question: Question) -> tuple[Advice, ...]:
         then = _u95_with(question, extra)
         band = max(then, key=lambda name: now[name] - then[name], default=None)
         if band is not None and then[band] < _WORTH_A_SWEEP * now[band]:
-            found.append(Advice(sweep=words, band=band, u95_db=now[band], u95_then_db=then[band]))
+            stated = question.stated_u95_db(band) or now[band]
+            shrunk = stated * then[band] / now[band]
+            found.append(Advice(sweep=words, band=band, u95_db=stated, u95_then_db=shrunk))
     return tuple(sorted(found, key=lambda one: one.u95_then_db / one.u95_db))
 
 

@@ -53,33 +53,33 @@ def _compare_band(
         who = "this build" if losses[0] is None else "the baseline"
         return _without(name, Verdict.NOT_COMPARABLE, f"the loss of {who} was not measured")
     difference_db = losses[0][0] - losses[1][0]
-    u95_db, verdict = _judged(result.loss_draws_db.get(name), baseline.loss_draws_db.get(name))
+    (low_db, high_db), verdict = _judged(
+        result.loss_draws_db.get(name), baseline.loss_draws_db.get(name)
+    )
     return BandComparison(
         band=name,
         heat_loss_db=difference_db,
         heat_w=losses[0][1] - losses[1][1],
-        heat_loss_u95_db=u95_db,
+        heat_loss_u95_db=None if low_db is None or high_db is None else (high_db - low_db) / 2,
+        heat_loss_low95_db=low_db,
+        heat_loss_high95_db=high_db,
         verdict=verdict,
     )
 
 
 def _judged(
     ours_db: RealArray | None, theirs_db: RealArray | None
-) -> tuple[float | None, Verdict | None]:
-    """Half of the difference's 95 % interval [dB], and on which side of zero it lies.
+) -> tuple[tuple[float | None, float | None], Verdict | None]:
+    """Ends of the difference's 95 % interval [dB], and on which side of zero it lies.
 
     Draws of one calibration are common to both builds, so what it leaves cancels.
     """
     if ours_db is None or theirs_db is None:
-        return None, None
-    difference = ours_db - theirs_db
-    low, high = interval(difference)
+        return (None, None), None
+    low, high = interval(ours_db - theirs_db)
     if low is None or high is None or low <= 0 <= high:
-        verdict = Verdict.SAME
-    else:
-        verdict = Verdict.BETTER if high < 0 else Verdict.WORSE
-    width = None if low is None or high is None else (high - low) / 2
-    return width, verdict
+        return (low, high), Verdict.SAME
+    return (low, high), Verdict.BETTER if high < 0 else Verdict.WORSE
 
 
 def _without(name: str, verdict: Verdict, reason: str) -> BandComparison:

@@ -56,8 +56,9 @@ class CapacitorForecast:
 
     @property
     def better(self) -> bool:
-        """True when the best value is predicted to beat the capacitor that is there."""
-        return self.then.swr.value < self.now.swr.value
+        """True when the best value is sure to beat the one that is there: its whole interval."""
+        then = self.then.swr
+        return (then.value if then.high95 is None else then.high95) < self.now.swr.value
 
 
 @dataclass(frozen=True, kw_only=True, slots=True)

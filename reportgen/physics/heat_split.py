@@ -8,6 +8,7 @@ from dataclasses import dataclass, replace
 import numpy as np
 
 from reportgen.model import (
+    BandResult,
     BuildSheet,
     HeatSplit,
     HeatSplitBand,
@@ -73,7 +74,9 @@ def dissipated(arms: Arms, load_ohm: Impedance) -> Dissipated:
     return Dissipated(winding / entering, core / entering, capacitor / entering)
 
 
-def heat_split_of(group: Sequence[Solved], sheet: BuildSheet, power_w: float) -> HeatSplit | None:
+def heat_split_of(
+    group: Sequence[Solved], bands: Sequence[BandResult], sheet: BuildSheet, power_w: float
+) -> HeatSplit | None:
     """Where the heat of the result goes; None where its method does not tell the winding apart.
 
     Parameters
@@ -81,6 +84,8 @@ def heat_split_of(group: Sequence[Solved], sheet: BuildSheet, power_w: float) ->
     group : sequence of Solved
         The result's method, once for each pair or unit; those swept over another range than the
         first are left out.
+    bands : sequence of BandResult
+        The result's bands: their heat is what is divided.
     sheet : BuildSheet
         Turns, load, core.
     power_w : float
@@ -99,9 +104,9 @@ def heat_split_of(group: Sequence[Solved], sheet: BuildSheet, power_w: float) ->
     winding = _winding_figures([a for a in seen if a], [a for a in drawn if a], hz)
     if not np.isfinite([*parts.total, winding.leakage_h.value, winding.coupling_ratio.value]).all():
         return None
-    bands = [band for band in first.result.bands if isinstance(band, MeasuredBand)]
+    measured = [band for band in bands if isinstance(band, MeasuredBand)]
     return HeatSplit(
-        bands=tuple(_in_band(first, band, parts, draws, power_w) for band in bands),
+        bands=tuple(_in_band(first, band, parts, draws, power_w) for band in measured),
         winding=winding,
         permeability=_permeability([a for a in seen if a], [a for a in drawn if a], hz, sheet),
     )
@@ -126,11 +131,15 @@ def _in_band(
 
     share = mean(draws.core) / mean(draws.total)
     low, high = interval(share)
+    total = float(mean(parts.total))
+    heat = band.figures.get("heat_w")
+    measured_w = None if heat is None else heat.mean
+    watts = (power_w * total if measured_w is None else measured_w) / total
     return HeatSplitBand(
         band=band.band.name,
-        winding_w=power_w * float(mean(parts.winding)),
-        core_w=power_w * float(mean(parts.core)),
-        capacitor_w=power_w * float(mean(parts.capacitor)),
+        winding_w=watts * float(mean(parts.winding)),
+        core_w=watts * float(mean(parts.core)),
+        capacitor_w=watts * float(mean(parts.capacitor)),
         core_share=Interval(
             value=float(mean(parts.core) / mean(parts.total)), low95=low, high95=high
         ),

@@ -18,6 +18,7 @@ from reportgen.model import (
     Limits,
     MeasuredBand,
 )
+from reportgen.physics.outcomes import Outcome
 from reportgen.physics.quantities import BY_KEY, Better
 
 
@@ -65,6 +66,20 @@ def _judgement(figure: Figure | None, key: str, limit: float) -> Judgement:
     if high <= limit:
         return Judgement.PASS
     return Judgement.FAIL if low > limit else Judgement.UNDECIDED
+
+
+def predicted_misses(outcome: Outcome, bench: BenchSheet) -> tuple[str, ...]:
+    """Bands on which a prediction misses a limit: worst SWR, and efficiency by the mean loss."""
+    return tuple(
+        band.band
+        for band in outcome.bands
+        if any(
+            band.swr.value > limit
+            if key == "swr"
+            else 10 ** (-band.heat_loss_db.value / 10) < limit
+            for key, limit in limits_of_band(bench, band.band)
+        )
+    )
 
 
 def overall(limits: Sequence[LimitResult]) -> Judgement | None:

@@ -106,7 +106,7 @@ def measure(build: Build, bench: BenchSheet, known: Sequence[Band]) -> Measured:
         limits=judge(chosen.bands, bench),
         stress=stress,
         thermal=thermal_of(fits, build, bench, stress),
-        heat_split=heat_split_of(group, build.sheet, power_w),
+        heat_split=heat_split_of(group, chosen.bands, build.sheet, power_w),
         lot=lot_of(units),
         repeatability=find_repeatability(build.measurements),
         **_budget_and_advice(build, bench, group, chosen),

@@ -76,7 +76,7 @@ BENCH_SHEET = BenchSheet(
         "40 m": Limits(swr=2.0, efficiency_percent=88),
         "20 m": Limits(swr=2.0, efficiency_percent=88),
     },
-    own_band=(OwnBand(name="Marine 6 MHz", from_mhz=6.2, to_mhz=6.525),),
+    own_band=(OwnBand(name="Marine", from_mhz=6.2, to_mhz=6.525),),
     duty={"voice, processed": 50},
     calibrations={
         "september": Calibration(grade="handheld", performed_on=date(2026, 9, 12)),
