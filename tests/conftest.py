@@ -5,6 +5,7 @@ import shutil
 import subprocess
 from collections.abc import Iterator
 from pathlib import Path
+from typing import Any
 
 import pytest
 from hypothesis import settings
@@ -17,11 +18,17 @@ settings.register_profile("suite", max_examples=50, deadline=None, derandomize=T
 settings.load_profile("suite")
 
 
-def pytest_collection_modifyitems(items: list[pytest.Item]) -> None:
-    """One worker for all tests of what the example runs publish, one for each other file."""
-    for item in items:
-        shared = "published" in getattr(item, "fixturenames", ())
-        item.add_marker(pytest.mark.xdist_group("published" if shared else item.path.stem))
+@pytest.hookimpl(optionalhook=True)
+def pytest_xdist_make_scheduler(config: pytest.Config, log: Any) -> Any:
+    """With -n: a file to a worker, and all files about what is published to one."""
+    from xdist.scheduler import LoadFileScheduling
+
+    class Scheduling(LoadFileScheduling):
+        def _split_scope(self, nodeid: str) -> str:
+            file = super()._split_scope(nodeid)
+            return "published" if "test_published_" in file else file
+
+    return Scheduling(config, log)
 
 
 @pytest.fixture(scope="module")
@@ -34,7 +41,11 @@ def few_draws() -> Iterator[None]:
 
 @pytest.fixture(scope="session")
 def published(tmp_path_factory) -> tuple[subprocess.CompletedProcess, Path]:
-    """The example runs as published by a process of its own, and the folder they are in."""
+    """The example runs as published by a process of its own, and the folder they are in.
+
+    Takes a minute: files that ask for it are named `test_published_...`, so that one worker has
+    them all.
+    """
     from published_examples import HERE, in_a_process
     from write_goldens import EXAMPLE_RUNS
 
