@@ -200,28 +200,19 @@ def computed(runs_folder: Path, most: int) -> bytes:
 
 
 def get_ready(pickled: bytes) -> None:
+    """Nothing but what is drawn: no results as JSON or CSV."""
+    from reportgen.output import csv_tables, documents
+
     _ready[:] = pickle.loads(pickled)
+    csv_tables.bands_csv = csv_tables.curves_csv = lambda *_: b""
+    documents.results_document = lambda *_, **__: {}
 
 
 def draw_pages(count: int) -> None:
-    """Everything that is drawn of one build; see `build_files`."""
-    from reportgen.pages.card import card_pictures, render_card_pdf
-    from reportgen.pages.kit_words import kit_words
-    from reportgen.pages.report import render_report_html, render_report_pdf
+    """Every page and picture of one build."""
+    from reportgen.build_files import build_files
 
-    result, comparison, baseline, bench, forecast = _ready[count % len(_ready)]
-    for render in (render_report_html, render_report_pdf):
-        render(
-            result,
-            comparison=comparison,
-            baseline=baseline,
-            bench=bench,
-            program_version="0",
-            forecast=forecast,
-        )
-    words = kit_words(result, comparison, bench, "0")
-    card_pictures(words, bench.locale)
-    render_card_pdf(words, bench, "0")
+    build_files(*_ready[count % len(_ready)])
 
 
 def draw_all(pickled: bytes, builds: int, jobs: int) -> None:
@@ -245,8 +236,8 @@ def rows(folder: Path, builds: int, jobs: int) -> Iterator[str]:
         full = timed(publish(runs, out, jobs))
     pickled = computed(runs, min(builds, 7))
     floor = timed(lambda: draw_all(pickled, builds, jobs))
-    yield f"{builds} builds, {size_mb(runs):.1f} MB of sweeps, {size_mb(out):.1f} MB of pages, "
-    yield f"{jobs} workers; {full.wall_s / builds:.2f} s a build\n"
+    sizes = f"{size_mb(runs):.1f} MB of sweeps, {size_mb(out):.1f} MB of pages"
+    yield f"{builds} builds, {sizes}, {jobs} workers; {full.wall_s / builds:.2f} s a build\n"
     yield "| | took | floor | ratio | target |"
     yield "|---|---|---|---|---|"
     yield line("full run", full, floor)
@@ -269,6 +260,8 @@ def fast_rows(folder: Path, jobs: int, full: Took) -> Iterator[str]:
     one = sorted(path.parent for path in runs.glob("birch*/build.toml"))[0]
     alone = folder / "alone"
     (alone / one.name).mkdir(parents=True)
+    bench = (runs / "runs.toml").read_text()
+    (alone / "runs.toml").write_text(bench.replace('baseline = "alder"\n', ""))
     changed_took, alone_took = [], []
     for count in range(3):
         sidecar = one / "build.toml"

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from collections.abc import Callable
 from dataclasses import dataclass, replace
 
 import numpy as np
@@ -90,10 +91,17 @@ def fit_circuit(halved: Halved, frame: Frame, frequency_hz: RealArray) -> Circui
 
     def misfit(parameters: RealArray) -> RealArray:
         off = _reflections(*open_and_short_ohm(arms_of(parameters, frame, few_hz))) - seen
-        return np.concatenate([_weighted(off), (parameters - START) / SPREAD])
+        return np.concatenate([_weighted(off), (parameters - START) / SPREAD], axis=-1)
 
     bounds = (START - _BOUND_SPREADS * SPREAD, START + _BOUND_SPREADS * SPREAD)
-    found = least_squares(misfit, START, bounds=bounds, x_scale=SPREAD, max_nfev=200)
+    found = least_squares(
+        misfit,
+        START,
+        jac=lambda parameters: _slope(misfit, parameters, bounds),
+        bounds=bounds,
+        x_scale=SPREAD,
+        max_nfev=200,
+    )
     left = found.fun[: -START.size] / _weight(few_hz.size)
     return Circuit(
         frame=frame,
@@ -102,6 +110,17 @@ def fit_circuit(halved: Halved, frame: Frame, frequency_hz: RealArray) -> Circui
         points_hz=few_hz,
         gain=np.linalg.pinv(found.jac),
     )
+
+
+def _slope(
+    misfit: Callable[[RealArray], RealArray], at: RealArray, bounds: tuple[RealArray, RealArray]
+) -> RealArray:
+    """(M, 12) slope of the misfit by forward differences, all parameters moved in one call."""
+    step = np.sqrt(np.finfo(float).eps) * np.where(at >= 0, 1.0, -1.0) * np.maximum(1.0, abs(at))
+    outside = (at + step < bounds[0]) | (at + step > bounds[1])
+    step = np.where(outside, -step, step)
+    moved = misfit(np.vstack([at, at + np.diag(step)]))
+    return np.asarray(((moved[1:] - moved[0]) / ((at + step) - at)[:, None]).T)
 
 
 def _reflections(z_open_ohm: ComplexArray, z_short_ohm: ComplexArray) -> ComplexArray:
