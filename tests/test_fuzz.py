@@ -87,6 +87,11 @@ FINDS = {
         "build",
         b'\0name = "x"\n[winding]\nlow_turns = 1e-300\nhigh_turns = 24\n',
     ),
+    # warnings that stood between a hundred errors and the last one were counted as errors
+    "warnings among errors": (
+        "touchstone",
+        b"\1# Z " + b"x " * 100 + b"\ntext\n1 0 0\nR 0\n",
+    ),
     # a hundred errors on a second option line, of which nobody wanted to know
     "second option line": ("touchstone", b"\0#MHz S RI R 50\n# " + b"x " * 200 + b"\n1 0 0\n"),
 }

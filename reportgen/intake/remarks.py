@@ -36,6 +36,7 @@ class Remarks:
         self.file = file
         self.most_errors = most_errors
         self._found: list[Finding] = []
+        self._errors = 0
 
     @property
     def findings(self) -> tuple[Finding, ...]:
@@ -45,7 +46,7 @@ class Remarks:
     @property
     def rejected(self) -> bool:
         """Whether one of them is an error."""
-        return any(finding.severity is Severity.ERROR for finding in self._found)
+        return self._errors > 0
 
     def note(self, code: str, message: str, remedy: str, line: int | None = None) -> None:
         """Something worth knowing."""
@@ -63,7 +64,8 @@ class Remarks:
         InputRejected
             There were too many before.
         """
-        if len(self._found) >= self.most_errors:
+        self._errors += 1
+        if self._errors > self.most_errors:
             message = f"more than {self.most_errors} mistakes; the others are not told"
             self._add(Severity.ERROR, "too-many-mistakes", message, "is this the right file?", line)
             raise InputRejected(self.findings)

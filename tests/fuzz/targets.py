@@ -25,6 +25,7 @@ from reportgen.model import Finding, Severity
 from reportgen.physics.allocations import amateur_bands
 
 MOST_POINTS = 2000
+MOST_WARNINGS = 40  # each kind is told once
 LONGEST_MESSAGE = 500  # a foreign text is cut at 80 characters, and few are quoted at once
 UNITS = (None, "Hz", "kHz", "MHz", "GHz")
 DECIMALS = (None, ".", ",")
@@ -134,7 +135,9 @@ def _check_rejection(rejected: InputRejected) -> None:
 
 
 def _check_findings(findings: tuple[Finding, ...]) -> None:
-    assert len(findings) <= MOST_ERRORS + 1
+    errors = [finding for finding in findings if finding.severity is Severity.ERROR]
+    assert len(errors) <= MOST_ERRORS + 1
+    assert len(findings) - len(errors) <= MOST_WARNINGS
     for finding in findings:
         assert finding.code
         assert finding.message
