@@ -299,6 +299,7 @@ def test_filters_leave_what_fits_in_every_table(opened):
     assert opened.page.locator(".grid tbody tr:visible").count() == 1
     assert said(opened).startswith("1 of 4 builds shown.")
     opened.page.get_by_role("button", name="Show all").click()
+    opened.page.wait_for_function("document.querySelector('[role=status]').textContent[0] == '4'")
     assert len(order(opened)) == 4
     opened.page.get_by_label("Against the baseline").select_option("worse")
     assert order(opened) == ["Beech"]
