@@ -48,6 +48,7 @@ USUAL_STRAY_F = 4e-12
 _SMALLEST_SHARE = 0.1
 _WORTH_A_SWEEP = 0.8
 _POINTS = 3
+_MOST_SWEEPS = 20
 _WITHOUT_LOSS = (Method.HALVING, Method.LOAD_ONLY)
 
 
@@ -111,8 +112,11 @@ def find_advice(question: Question) -> tuple[Advice, ...]:
 
     The sweep is what an analyzer without faults would show of the unit as it was computed; the
     draws then are those of the real sweeps. Few draws tell by which factor the interval shrinks;
-    the factor is applied to the interval that is stated.
+    the factor is applied to the interval that is stated. Nothing is tried of a build with very
+    many sweeps: each trial computes all of them anew.
     """
+    if len(question.build.measurements) > _MOST_SWEEPS:
+        return ()
     now = question.u95_db(question.plans, ALL)
     found = []
     for words, extra in _candidates(question):
