@@ -14,6 +14,7 @@ from small_runs import BENCH, contents, write_build, write_runs
 from write_goldens import EXAMPLE_RUNS, GOLDENS, golden_of
 
 from reportgen.model import OUTPUT_MARKER
+from reportgen.output.baseline import BASELINE_FILE
 
 KEYS = sorted(path.stem for path in GOLDENS.glob("*.json"))
 OF_A_BUILD = {
@@ -37,7 +38,7 @@ def test_all_published_and_nothing_said_but_findings(published) -> None:
 def test_files_that_are_published(published) -> None:
     files = {f"{key}/{name}" for key in KEYS for name in OF_A_BUILD}
     assert set(contents(published[1])) == files | {
-        OUTPUT_MARKER, "index.html", "results.csv", "manifest.json"
+        OUTPUT_MARKER, BASELINE_FILE, "index.html", "results.csv", "manifest.json"
     }  # fmt: skip
 
 
