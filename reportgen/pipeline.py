@@ -83,13 +83,16 @@ def publish(request: Request, announce: Announce) -> Outcome:
     OutputError
         The pages cannot be written.
     """
-    seen = request.seen or look_at(request.runs) or {}
+    seen = look_at(request.runs) if request.seen is None else request.seen
     runs = _opened(request)
     _refuse_tangle(request.out, runs)
     with open_output(request.out):
-        publishing = Publishing(runs, seen, request.out, only=request.only, force=request.force)
+        publishing = Publishing(
+            runs, seen or {}, request.out, only=request.only, force=request.force or seen is None
+        )
         publishing.make_all(Crew(request.jobs, request.patience_s), announce)
-        state = None if publishing.stale else state_of(seen, request.runs, request.baseline)
+        known = seen is not None and not publishing.stale
+        state = state_of(seen or {}, request.runs, request.baseline) if known else None
         return _concluded(publishing, state)
 
 

@@ -307,6 +307,16 @@ def test_what_failed_by_a_fault_is_tried_again_what_was_rejected_is_not(
     assert read == ["birch"]
 
 
+def test_a_folder_with_more_than_is_looked_at_is_made_anew_each_time(
+    here: Path, monkeypatch
+) -> None:
+    monkeypatch.setattr(fingerprints, "ENTRIES", 5)
+    assert made(publish_here(here / "runs", here / "out")) == ALL
+    assert json.loads((here / "out" / "manifest.json").read_bytes())["state"] is None
+    monkeypatch.undo()
+    assert "all unchanged" not in run_of_its_own(here).stdout
+
+
 # --- interrupted ---------------------------------------------------------------------------------
 
 

@@ -12,12 +12,13 @@ import sys
 from collections.abc import Iterable, Iterator, Mapping
 from functools import cache
 from hashlib import sha256
+from itertools import islice
 
 MARKER = ".reportgen-output"
 """Name of the file that marks an output folder; the same as in `model`, which is slow to import."""
 
-DEPTH, FILES, FILE_BYTES, ALL_BYTES = 12, 10_000, 64 * 2**20, 2 * 2**30
-"""How much of a runs folder is looked at; what lies beyond is no input either (`intake.scan`)."""
+DEPTH, ENTRIES, FILE_BYTES, ALL_BYTES = 12, 20_000, 64 * 2**20, 2 * 2**30
+"""How much of a runs folder is looked at; `intake.scan` reads nothing beyond either."""
 
 LIBRARIES = (
     "fonttools", "font_source_sans_pro", "jinja2", "matplotlib", "numpy", "pandas", "pydyf",
@@ -54,12 +55,12 @@ def seen_files(root: str | os.PathLike[str]) -> Seen:
     Raises
     ------
     OSError
-        The runs folder cannot be read.
+        The runs folder cannot be read, or holds more than is looked at.
     """
     walk = _Walk(os.fspath(root))
     waiting = [""]
-    while waiting and len(walk.seen) < FILES:
-        waiting += reversed(list(walk.enter(waiting.pop())))
+    while waiting:
+        waiting += walk.enter(waiting.pop())
     return walk.seen
 
 
@@ -67,19 +68,15 @@ class _Walk:
     def __init__(self, root: str) -> None:
         self.root = root
         self.seen: dict[str, str] = {}
+        self.entries = 0
         self.bytes = 0
 
     def enter(self, folder: str) -> Iterator[str]:
         """Note what a folder holds; the folders in it are returned."""
         try:
-            with os.scandir(f"{self.root}/{folder}") as listing:
-                entries = sorted(listing, key=lambda entry: entry.name)
-        except OSError:
-            if not folder:
-                raise
+            entries = self.listed(folder)
+        except PermissionError:
             self.seen[folder] = "unreadable"
-            return
-        if any(entry.name == MARKER for entry in entries):
             return
         for entry in entries:
             if entry.name.startswith("."):
@@ -90,6 +87,15 @@ class _Walk:
             else:
                 self.seen[path] = self.hash_or_kind(entry)
 
+    def listed(self, folder: str) -> list[os.DirEntry[str]]:
+        """What a folder holds; nothing where it is an output folder."""
+        with os.scandir(f"{self.root}/{folder}") as listing:
+            entries = list(islice(listing, ENTRIES))
+        self.entries += len(entries)
+        if self.entries >= ENTRIES:
+            raise OSError("more than is looked at")
+        return [] if any(entry.name == MARKER for entry in entries) else entries
+
     def hash_or_kind(self, entry: os.DirEntry[str]) -> str:
         """SHA-256 of a regular file; of any other, what it is."""
         if entry.is_symlink():
@@ -98,10 +104,10 @@ class _Walk:
             return "folder" if entry.is_dir(follow_symlinks=False) else "special"
         try:
             data = _content(entry.path, min(FILE_BYTES, ALL_BYTES - self.bytes))
+            if data is None:
+                return f"{entry.stat(follow_symlinks=False).st_size} bytes"
         except OSError:
             return "unreadable"
-        if data is None:
-            return f"{entry.stat(follow_symlinks=False).st_size} bytes"
         self.bytes += len(data)
         return sha256(data).hexdigest()
 
