@@ -72,7 +72,7 @@ def test_the_sentence_names_what_keeps_where_the_build_does_not() -> None:
     assert promising_sentence(found, WINDING, bench(100.0)) == ""
     assert promising_sentence(found, WINDING, bench()) == ""
     assert promising_sentence(found, WINDING, bench(1.1)) == (
-        "None of the changes below is predicted to keep to all limits."
+        "No change below is predicted to keep to all limits."
     )
     words = promising_sentence(found, WINDING, bench(2.0)).replace("\u00a0", " ")
     assert words.startswith("To keep to all limits, wind ")

@@ -72,7 +72,7 @@ def promising_sentence(forecast: Forecast, winding: tuple[float, float], bench: 
         key=lambda one: one.then.heat_loss_db.value,
     )
     if not keep:
-        return "None of the changes below is predicted to keep to all limits."
+        return "No change below is predicted to keep to all limits."
     names = listed([_named(one, bench.locale) for one in keep[:_MOST_NAMED]])
     return f"To keep to all limits, wind {names.replace(' and ', ' or ')}."
 
