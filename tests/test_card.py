@@ -142,7 +142,7 @@ def test_a_power_stands_with_its_whole_condition():
     text = page_text(card(with_power(power_samples.permitted())))
     assert (
         "Handles 35 W of carrier on every band, limited by core heating on 80 m, with up to 40 °C "
-        "around it and any load up to SWR 2.5." in text
+        "around it (sealed box) and any load within SWR 2.5 of 3200 Ω." in text
     )
 
 
@@ -167,7 +167,10 @@ def test_the_lesser_of_heat_and_stress_is_named(stress_w, bound_by):
 def test_the_condition_of_a_power_is_never_cut(draw):
     drawing = draw(words_of(RESULTS["power"]), "en")
     drawn = " ".join(text.get_text() for text in drawing.figure.texts)
-    assert "any load up to SWR 2.5. It is an extrapolation, more than twice what was" in drawn
+    assert (
+        "any load within SWR 2.5 of 3200\u00a0Ω. It is an extrapolation, more than twice what was"
+        in drawn
+    )
 
 
 def test_a_power_whose_condition_has_no_room_is_left_to_the_report():

@@ -102,7 +102,7 @@ def test_without_loss_it_says_so_and_why(kind):
 def test_a_power_stands_with_its_condition_or_not_at_all(kind):
     with_log = plain(with_power(power_samples.permitted()), kind)
     assert "35 W of carrier on every band" in with_log
-    assert "with up to 40 °C around it and any load up to SWR 2.5." in with_log
+    assert "around it (sealed box) and any load within SWR 2.5 of 3200 Ω." in with_log
     assert not re.search(r"\d\s*W\b", plain(named("Alder"), kind))
 
 

@@ -1,5 +1,7 @@
 """What a report says of the power that a build stands."""
 
+from dataclasses import replace
+
 import power_samples as samples
 import pytest
 
@@ -27,12 +29,19 @@ def test_the_answer_names_power_mode_band_bound_and_conditions() -> None:
     found = samples.result(samples.thermal(samples.permitted()))
     assert spaced(power_verdict(found, "en")) == (
         "Handles 35 W of carrier on every band, limited by core heating on 80 m, with up to 40 °C "
-        "around it and any load up to SWR 2.5."
+        "around it (sealed box) and any load within SWR 2.5 of 3200 Ω."
     )
     beyond = samples.result(samples.thermal(samples.permitted(extrapolated=True)))
-    assert power_verdict(beyond, "en").endswith(
-        "2.5. It is an extrapolation, more than twice what was logged."
+    assert spaced(power_verdict(beyond, "en")).endswith(
+        "3200 Ω. It is an extrapolation, more than twice what was logged."
     )
+
+
+def test_a_design_power_that_is_not_reached_is_told() -> None:
+    found = samples.result(samples.thermal(samples.permitted()))
+    told = "Its design power of 60 W is more than that."
+    assert spaced(power_of(found, "en").verdict).endswith(told)
+    assert told not in spaced(power_of(replace(found, power_w=30), "en").verdict)
 
 
 def test_heat_that_is_known_for_the_nominal_load_alone_is_said_so() -> None:
@@ -92,7 +101,7 @@ def test_the_log_and_the_time_to_the_limit() -> None:
         "The limit is 90 °C for the core's surface; 60 W without a pause, from cold, reaches it "
         "in 12 minutes on 80 m.",
         "Unit A was logged at 40 W and 7.1 MHz: 5.70 ± 0.26 W of heat raise its core by "
-        "53.30 ± 0.60 K in the end, 9.36 ± 0.42 K/W, with a time constant of 13.60 ± 0.50 min.",
+        "53 K in the end, 9.36 ± 0.42 K/W, with a time constant of 13.60 ± 0.50 min.",
     ]
 
 

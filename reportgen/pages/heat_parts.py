@@ -13,7 +13,7 @@ from reportgen.pages.wording import METHOD_NAMES
 from reportgen.physics.quantities import BY_KEY
 
 _CAPTION = (
-    "Mean heat in each band by part, at the rated power, as the circuit of the method divides it; "
+    "Mean heat in each band by part, at the design power, as the circuit of the method divides it; "
     "after \u00b1 half of the 95\u00a0% interval of the core's share."
 )
 _SHARE = BY_KEY["efficiency_ratio"]

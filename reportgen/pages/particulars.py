@@ -24,7 +24,7 @@ from reportgen.pages.sentences import counted, listed, rated_power
 from reportgen.pages.tables import Cell, Column, Row, Table
 from reportgen.pages.wording import SETUP_NAMES, criterion_words, ohms
 
-_LONGEST_DOUBT = 160
+_LONGEST_DOUBT = 100
 _HASH_LETTERS = 12
 _TIMES = "\u00d7"
 

@@ -17,6 +17,7 @@ from reportgen.pages.power_tables import (
 )
 from reportgen.pages.sentences import rated_power
 from reportgen.pages.tables import Table
+from reportgen.pages.wording import ohms
 
 _DEGREES = "\u00b0C"
 _LIMIT_WORDS = {
@@ -33,8 +34,9 @@ _HEAT_WORDS = (
     "Heat counts at the upper end of its 95\u00a0% interval, at the worst frequency of a band and "
     "into the worst load of that SWR where the sweeps tell it, in the hottest surroundings named "
     "and for the lowest temperature limit given. The log knows the core's surface; "
-    "inside it is hotter. Loss changes when a core is hot, so nothing here may be scaled up. Duty "
-    "is that of sending without a pause (OET Bulletin 65, Supplement B, or the bench's own)."
+    "inside it is hotter. Loss changes when a core is hot: powers above the logged one are "
+    "estimates, marked beyond twice. Duty is that of sending without a pause (OET Bulletin 65, "
+    "Supplement B, or the bench's own)."
 )
 _BARE_WORDS = (
     "The rise without a log is that of two published formulas for a bare surface in still free "
@@ -65,7 +67,7 @@ def power_of(result: BuildResult, locale: str) -> PowerPage | None:
     permitted = None if thermal is None else thermal.permitted
     heat = (_HEAT_WORDS,) if permitted else (_BARE_WORDS,) if surface_rises(stress) else ()
     return PowerPage(
-        verdict=power_verdict(result, locale),
+        verdict=f"{power_verdict(result, locale)} {design_sentence(result, locale)}".strip(),
         words=tuple(_words(result, stress, locale)),
         modes=None if permitted is None else modes_table(permitted, locale),
         bands=stress_table(result, stress, permitted, locale),
@@ -88,18 +90,29 @@ def power_verdict(result: BuildResult, locale: str) -> str:
     mode = f"{least.mode}" if least.duty_percent >= 100 else f"peak in {least.mode}"
     where = f" on {unbroken(least.band)}" if least.band else ""
     beyond = " It is an extrapolation, more than twice what was logged." * least.extrapolated
+    box = result.build.sheet.rating.enclosure
+    around = f"{_celsius(permitted.ambient_max_c, locale)} around it" + (f" ({box})" if box else "")
     return (
         f"Handles {watts} of {mode} on every band, limited by {BOUND_WORDS[least.bound_by]}"
-        f"{where}, with up to {_celsius(permitted.ambient_max_c, locale)} around it and "
-        f"{_load_words(permitted, locale)}.{beyond}"
+        f"{where}, with up to {around} and {_load_words(result, permitted, locale)}."
+        f"{beyond}"
     )
 
 
-def _load_words(permitted: Permitted, locale: str) -> str:
+def design_sentence(result: BuildResult, locale: str) -> str:
+    """That the build was meant for more than it handles; empty elsewhere."""
+    permitted = None if result.thermal is None else result.thermal.permitted
+    if permitted is None or permitted.limiting.power_w >= result.power_w:
+        return ""
+    return f"Its design power of {rated_power(result, locale)} is more than that."
+
+
+def _load_words(result: BuildResult, permitted: Permitted, locale: str) -> str:
     """The loads that the power holds for; a method may know heat into the nominal load alone."""
     if permitted.heat_load_swr < permitted.load_swr:
         return "its nominal load; the heat into others is not known"
-    return f"any load up to SWR {entered(permitted.load_swr, locale=locale)}"
+    load = ohms(result.build.sheet.nominal_load_ohm, locale)
+    return f"any load within SWR {entered(permitted.load_swr, locale=locale)} of {load}"
 
 
 def _celsius(degrees: float, locale: str) -> str:
@@ -166,7 +179,7 @@ def _fit_sentence(fit: ThermalFit, locale: str) -> str:
     minutes = with_unit(scaled_with_interval(fit.time_constant_s, 1 / 60, 1, locale), "min")
     power = with_unit(entered(fit.power_w, locale=locale), "W")
     mhz = with_unit(entered(fit.frequency_hz / 1e6, locale=locale), "MHz")
-    rise = with_unit(scaled_with_interval(fit.rise_k, 1, 0, locale), "K")
+    rise = with_unit(number(fit.rise_k.value, 0, locale=locale), "K")
     heat = with_unit(scaled_with_interval(fit.heat_w, 1, 1, locale), "W")
     return (
         f"Unit {fit.unit} was logged at {power} and {mhz}: {heat} of heat raise its core by "

@@ -35,7 +35,7 @@ from reportgen.pages.particulars import (
 )
 from reportgen.pages.pdf import write_pdf
 from reportgen.pages.plain_text import text_lines
-from reportgen.pages.power import PowerPage, power_of, power_verdict
+from reportgen.pages.power import PowerPage, power_of
 from reportgen.pages.predictions import Predictions, predictions_of
 from reportgen.pages.setup_diagram import draw_setup, setup_picture
 from reportgen.pages.summary import is_simulated, limits_by_quantity
@@ -175,6 +175,7 @@ def _page(
     forecast: Forecast | None,
 ) -> ReportPage:
     sheet, locale = result.build.sheet, bench.locale
+    power = power_of(result, locale)
     against = (
         f"{comparison_sentence(comparison)} {loads_sentence(result, baseline, locale)}".strip()
     )
@@ -185,7 +186,7 @@ def _page(
         summary=sheet.summary,
         simulated=is_simulated(result),
         verdict=sentences.verdict(result, locale),
-        brief=_brief(result, against, bench),
+        brief=_brief(result, against, power, bench),
         coverage=sentences.coverage_sentence(result),
         key_figures=sentences.key_figures(result, locale),
         bands=band_table(result, bench),
@@ -196,7 +197,7 @@ def _page(
         limits=limits_table(result.limits, locale),
         heat_parts=heat_parts_table(result, locale),
         heat_parts_words=heat_parts_sentences(result, locale),
-        power=power_of(result, locale),
+        power=power,
         predictions=predictions_of(
             forecast, (sheet.winding.low_turns, sheet.winding.high_turns), bench
         ),
@@ -224,12 +225,14 @@ def _page(
     )
 
 
-def _brief(result: BuildResult, against: str, bench: BenchSheet) -> tuple[tuple[str, str], ...]:
+def _brief(
+    result: BuildResult, against: str, power: PowerPage | None, bench: BenchSheet
+) -> tuple[tuple[str, str], ...]:
     """What the rest of the page says at length, in a line each."""
     lines = {
         "Limits": " ".join(limits_words(result.limits)).strip(),
         "Baseline": _IS_BASELINE if bench.baseline == result.build.key else against,
-        "Power": "" if result.stress is None else power_verdict(result, bench.locale),
+        "Power": "" if power is None else power.verdict,
         "Doubts": doubts_words(result.findings),
     }
     return tuple((label, words) for label, words in lines.items() if words)

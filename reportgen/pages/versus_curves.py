@@ -181,7 +181,7 @@ def _title_scale(figure: Figure, size: Size, scale: str, *, with_limits: bool) -
     if with_limits:
         x = size.left + text_width(scale, size)
         ends = [x / size.width, (x + _SAMPLE) / size.width]
-        dotted = Line2D(ends, [y, y], color=LIGHT.ink, linewidth=1.2, linestyle=":")
+        dotted = Line2D(ends, [y, y], color=LIGHT.ink, linewidth=2.2)
         dotted.set_transform(figure.transFigure)
         figure.add_artist(dotted)
         at = (x + _SAMPLE + 4) / size.width

@@ -138,7 +138,7 @@ def capacitor(picofarad: float, rated_v: float = 1000) -> Compensation:
 def parts(ring: str, rings: int, wire: str, length_m: float, picofarad: int) -> tuple[Part, ...]:
     """Parts list of one unit."""
     return (
-        Part(name=ring, quantity=rings, note="any nickel-zinc grade of this permeability"),
+        Part(name=ring, quantity=rings, note="the grade that was measured: grades differ in loss"),
         Part(name=f"enamelled copper wire, {wire}", quantity=length_m, note="metres"),
         Part(name=f"mica capacitor, {picofarad} pF", quantity=1, note="across the low side"),
         Part(name="coaxial socket, 50 ohm", quantity=1),
