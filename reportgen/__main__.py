@@ -173,22 +173,27 @@ def _forecast(options: argparse.Namespace) -> int:
 
 
 def _follow(options: argparse.Namespace) -> int:
-    from reportgen.follow import Told, Watch, follow
+    from reportgen.follow import Interrupts, Told, Watch, follow
     from reportgen.pipeline import Request, publish
 
     console = _console()
 
+    interrupts = Interrupts()
+
     def publish_once(request: Request) -> Outcome:
         with _progress(console) as announce:
-            return publish(request, announce)
+            outcome = publish(request, announce)
+        interrupts.check()
+        return outcome
 
     # no workers: they would import everything anew each time, and each would hear Ctrl-C by itself
     request = Request(runs=options.runs, out=options.out, baseline=options.baseline)
     told = Told(console, request)
     try:
-        told.line(f"publishing {options.runs}, and again after each change; Ctrl-C ends it")
-        watch = Watch(options.runs, tell=told.line)
-        follow(request, publish=publish_once, report=told.round, watch=watch)
+        with interrupts:
+            told.line(f"publishing {options.runs}, and again after each change; Ctrl-C ends it")
+            watch = Watch(options.runs, tell=told.line, sleep=interrupts.sleep)
+            follow(request, publish=publish_once, report=told.round, watch=watch)
     except KeyboardInterrupt:
         told.line("stopped; what was published stands")
     return DONE

@@ -7,6 +7,7 @@ file have stood still for a while.
 from __future__ import annotations
 
 import os
+import signal
 import time
 from collections.abc import Callable, Iterator, Mapping
 from dataclasses import dataclass
@@ -55,6 +56,34 @@ class Round:
     error: ReportError | None
     before: Mapping[str, Standing]
     after: Mapping[str, Standing]
+
+
+class Interrupts:
+    """Ctrl-C, also where a library swallows it: exceptions in callbacks from C go nowhere."""
+
+    def __init__(self) -> None:
+        self.heard = False
+
+    def __enter__(self) -> Interrupts:
+        self.before = signal.signal(signal.SIGINT, self._hear)
+        return self
+
+    def __exit__(self, *_: object) -> None:
+        signal.signal(signal.SIGINT, self.before)
+
+    def _hear(self, *_: object) -> None:
+        self.heard = True
+        raise KeyboardInterrupt
+
+    def check(self) -> None:
+        """Raise what was heard and swallowed."""
+        if self.heard:
+            raise KeyboardInterrupt
+
+    def sleep(self, seconds: float) -> None:
+        """Sleep, unless it was heard."""
+        self.check()
+        time.sleep(seconds)
 
 
 class Watch:

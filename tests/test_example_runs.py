@@ -86,7 +86,7 @@ def test_the_folder_is_small() -> None:
 @pytest.mark.parametrize("file", sorted(written()))
 def test_every_file_says_that_it_is_simulated(file: str) -> None:
     first = written()[file].splitlines()[0]
-    assert first[0] == ("#" if file.endswith(".toml") else "!")
+    assert first[0] == ("#" if file.endswith((".toml", ".csv")) else "!")
     assert "simulated" in first
     if file.endswith("build.toml"):
         assert tomllib.loads(written()[file])["record"]["data"] == "simulated"
@@ -119,7 +119,7 @@ def test_set_ups_are_there() -> None:
     used = {one.entry.setup for build in builds().values() for one in build.measurements}
     assert used == {
         Setup.BACK_TO_BACK, Setup.LOAD, Setup.OPEN, Setup.SHORT,
-        Setup.SERIES_RESISTOR, Setup.RESISTOR_CHECK, Setup.THRU_CHECK,
+        Setup.SERIES_RESISTOR, Setup.RESISTOR_CHECK, Setup.THRU_CHECK, Setup.ANTENNA,
     }  # fmt: skip
     pairs = {one.entry.pair for one in builds()["hazel"].measurements}
     assert pairs == {("A", "B"), ("A", "C"), ("B", "C")}
@@ -131,7 +131,7 @@ def test_formats_and_units_of_frequency_are_mixed() -> None:
     options = {
         tuple(re.search(r"^# (\w+) S (\w+) R 50$", text, re.MULTILINE).groups())
         for file, text in written().items()
-        if not file.endswith(".toml")
+        if not file.endswith((".toml", ".csv"))
     }
     assert {unit for unit, _ in options} == {"Hz", "kHz", "MHz", "GHz"}
     assert {form for _, form in options} == {"RI", "MA", "DB"}

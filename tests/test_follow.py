@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import contextlib
 import io
 import os
 import signal
@@ -21,6 +22,7 @@ from reportgen.follow import (
     PATIENCE_S,
     POLL_S,
     SETTLE_S,
+    Interrupts,
     Round,
     Standing,
     Told,
@@ -351,6 +353,19 @@ def lines_until(stream, word: str) -> Iterator[str]:
         yield line
         if word in line:
             return
+
+
+def test_an_interrupt_that_a_library_swallows_is_not_lost() -> None:
+    before = signal.getsignal(signal.SIGINT)
+    with Interrupts() as interrupts:
+        interrupts.check()
+        with contextlib.suppress(KeyboardInterrupt):  # as a callback of a C library does
+            signal.raise_signal(signal.SIGINT)
+        with pytest.raises(KeyboardInterrupt):
+            interrupts.check()
+        with pytest.raises(KeyboardInterrupt):
+            interrupts.sleep(1000)
+    assert signal.getsignal(signal.SIGINT) is before
 
 
 @pytest.mark.parametrize("midway", [False, True], ids=["while it waits", "while it publishes"])

@@ -81,3 +81,11 @@ def test_longest_log() -> None:
     log, _ = parse_thermal_log(HEADING + rows, file="warmup.csv")
     assert len(log.time_s) == MAX_ROWS
     assert codes(HEADING + rows + b"100000,21,20\n") == [("log-too-long", None)]
+
+
+def test_comments_above_the_heading_are_passed_over_and_lines_still_count() -> None:
+    text = "# bench 2\n# core taped\ntime_s,core_c,ambient_c\n0,20,20\n10,oops,20\n"
+    with pytest.raises(InputRejected) as rejected:
+        parse_thermal_log(text.encode(), file="warmup.csv")
+    (finding,) = rejected.value.findings
+    assert (finding.code, finding.line) == ("log-line", 5)

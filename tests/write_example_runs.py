@@ -184,7 +184,7 @@ def log_text(example: Example, entry: ThermalEntry) -> str:
     log = simulated_log(truth, seeded(example.folder, entry.file))
     rows = zip(log.time_s, log.core_c, log.ambient_c, strict=True)
     lines = [f"{time_s:.0f},{core_c:.1f},{ambient_c:.1f}" for time_s, core_c, ambient_c in rows]
-    return "\n".join(["time_s,core_c,ambient_c", *lines, ""])
+    return "\n".join([f"# {SIMULATED}", "time_s,core_c,ambient_c", *lines, ""])
 
 
 # --- the folder ----------------------------------------------------------------------------------

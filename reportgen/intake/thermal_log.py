@@ -25,7 +25,8 @@ def parse_thermal_log(data: bytes, *, file: str) -> tuple[ThermalLog, tuple[Find
     Parameters
     ----------
     data : bytes
-        CSV with a heading, separated by commas, with decimal points.
+        CSV with a heading, separated by commas, with decimal points; lines above the heading that
+        begin with # are comments.
     file : str
         Name of the file for findings.
 
@@ -36,10 +37,13 @@ def parse_thermal_log(data: bytes, *, file: str) -> tuple[ThermalLog, tuple[Find
     """
     remarks = Remarks(file)
     text = decode_text(data, remarks, max_bytes=MAX_BYTES)
-    heading, *rows = text.split("\n")
+    written = text.split("\n")
+    above = next((at for at, line in enumerate(written) if not line.startswith("#")), 0)
+    heading, *rows = written[above:]
     if sum(1 for row in rows if row.strip()) > MAX_ROWS:
         remarks.reject("log-too-long", f"more than {MAX_ROWS} rows", "log less often")
-    values, lines = _read_rows(rows, _columns(heading, remarks), remarks)
+    columns = _columns(heading, above + 1, remarks)
+    values, lines = _read_rows(rows, above + 2, columns, remarks)
     remarks.stop_if_rejected()
     if not lines:
         remarks.reject("no-data", "no rows below the heading", "enter a line for each reading")
@@ -56,30 +60,30 @@ def parse_thermal_log(data: bytes, *, file: str) -> tuple[ThermalLog, tuple[Find
     return log, remarks.findings
 
 
-def _columns(heading: str, remarks: Remarks) -> tuple[int, list[int]]:
+def _columns(heading: str, line: int, remarks: Remarks) -> tuple[int, list[int]]:
     """How many columns there are, and where ours stand."""
     names = [cell.strip().lower() for cell in heading.split(",")]
     missing = [name for name in COLUMNS if names.count(name) != 1]
     if missing:
         remarks.reject(
             "log-header",
-            f"the first line is {quoted(heading)}; expected one column each of "
+            f"the heading is {quoted(heading)}; expected one column each of "
             f"{', '.join(COLUMNS)}, separated by commas (not found once: {', '.join(missing)})",
             "name the columns so; seconds and degrees Celsius",
-            1,
+            line,
         )
     return len(names), [names.index(name) for name in COLUMNS]
 
 
 def _read_rows(
-    rows: list[str], columns: tuple[int, list[int]], remarks: Remarks
+    rows: list[str], first: int, columns: tuple[int, list[int]], remarks: Remarks
 ) -> tuple[RealArray, list[int]]:
     """Numbers of our columns, (N, 3), and the line of each row."""
     count, places = columns
     values: list[list[float]] = []
     lines: list[int] = []
     stray: list[int] = []
-    for line, row in enumerate(rows, start=2):
+    for line, row in enumerate(rows, start=first):
         if not row.strip():
             continue
         cells = row.split(",")
@@ -93,8 +97,8 @@ def _read_rows(
     if stray:
         remarks.error(
             "log-line",
-            f"found {quoted(rows[stray[0] - 2])}, expected {count} columns, numbers with decimal "
-            f"points in ours: {listed_lines(stray)}",
+            f"found {quoted(rows[stray[0] - first])}, expected {count} columns, numbers with "
+            f"decimal points in ours: {listed_lines(stray)}",
             "correct the lines or take them out",
             stray[0],
         )

@@ -145,10 +145,12 @@ def program_fingerprint() -> str:
     package = os.path.dirname(os.path.dirname(os.path.abspath(__file__)))
     within = f"{package}/templates"
     templates = within if os.path.isdir(within) else f"{os.path.dirname(package)}/templates"
-    files = [*_files_below(package, ".py"), *_files_below(templates, "")]
-    names = [path.removeprefix(os.path.dirname(package)) for path in files]
-    hashes = [hash_of_file(path) or "" for path in files]
-    return fingerprint([sys.version, *_versions(), *names, *hashes])
+    files = [
+        (path.removeprefix(folder), hash_of_file(path) or "")
+        for folder, suffix in ((package, ".py"), (templates, ""))
+        for path in _files_below(folder, suffix)
+    ]
+    return fingerprint([sys.version, *_versions(), *(part for file in files for part in file)])
 
 
 def _files_below(folder: str, suffix: str) -> list[str]:

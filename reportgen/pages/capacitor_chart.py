@@ -103,7 +103,7 @@ def _words(found: CapacitorForecast, locale: str) -> tuple[str, str]:
     if found.better:
         title = f"Predicted: the worst SWR is least, {swr}, with {best}"
     else:
-        title = "Predicted: no other capacitor is sure to lower the worst SWR"
+        title = "Predicted: no other value is sure to lower the worst SWR"
     few = np.unique(np.linspace(0, len(found.capacitor_pf) - 1, 6).astype(int))
     spoken = ", ".join(
         f"{number(found.worst_swr[at], 2, locale=locale)} with "
