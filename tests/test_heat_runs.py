@@ -9,7 +9,7 @@ from simulation.workshop import Example
 from write_example_runs import EXAMPLE_RUNS
 
 from reportgen.intake.builds import open_runs, read_build
-from reportgen.model import BuildResult, Interval, Severity
+from reportgen.model import BuildResult, Severity
 from reportgen.physics.heat_runs import efficiency_at
 from reportgen.physics.measure import measure_build
 
@@ -22,16 +22,16 @@ def result_of(example: Example, **changed) -> BuildResult:
     return measure_build(build, runs.bench, runs.bands)
 
 
-def holds(interval: Interval, truth: float) -> bool:
-    return interval.low95 <= truth <= interval.high95
-
-
 @pytest.mark.parametrize("example", [ALDER, BIRCH], ids=lambda one: one.folder)
 def test_log_gives_back_what_it_was_made_of(example: Example) -> None:
-    """The heat comes from the sweeps alone; the log was simulated from the unit's true loss."""
+    """The heat comes from the sweeps alone; the log was simulated from the unit's true loss. How
+    often intervals hold the truth is asked of many logs in test_thermal.py, not of one.
+    """  # fmt: skip
     found = result_of(example).thermal
-    assert holds(found.fit.resistance_k_per_w, example.made.resistance_k_per_w)
-    assert holds(found.fit.time_constant_s, example.made.time_constant_s)
+    resistance, tau_s = found.fit.resistance_k_per_w, found.fit.time_constant_s
+    assert resistance.value == pytest.approx(example.made.resistance_k_per_w, rel=0.05)
+    assert tau_s.value == pytest.approx(example.made.time_constant_s, rel=0.03)
+    assert resistance.low95 < resistance.value < resistance.high95 < 1.1 * resistance.value
 
 
 def test_permitted_power_ends_at_the_limit_in_the_hottest_surroundings() -> None:

@@ -32,6 +32,10 @@ _EFFICIENCY = (
     "in decibels."
 )
 _INTERVALS = " After \u00b1 stands the half-width of the 95\u00a0% interval."
+_HALVED = (
+    " Halved pair is half of the through loss of two units back to back: common practice, and not "
+    "the loss of a unit."
+)
 _WITH_INTERVAL = ("efficiency_ratio", "heat_loss_db", "return_loss_db")
 
 
@@ -59,7 +63,9 @@ def band_table(result: BuildResult, bench: BenchSheet) -> Table | None:
 def _caption(method: MethodResult) -> str:
     lossy = bool(means(method, "efficiency_ratio"))
     sure = intervals_known(method)
-    return _CAPTION + (_EFFICIENCY if lossy else "") + (_INTERVALS if sure else "")
+    halved = any(quantity.key == "halved_pair_db" for quantity in measured_quantities(method))
+    words = (_EFFICIENCY, lossy), (_INTERVALS, sure), (_HALVED, halved)
+    return _CAPTION + "".join(text for text, wanted in words if wanted)
 
 
 def intervals_known(method: MethodResult) -> bool:
@@ -128,7 +134,7 @@ def band_note(band: MeasuredBand, locale: str) -> str:
         notes.append(f"only {covered}\u00a0MHz of the band: {reason}")
     elif band.reason:
         notes.append(band.reason)
-    if band.interpolated:
+    if band.interpolated and "interpolated" not in (band.reason or ""):
         notes.append(f"{counted(band.points, 'point')} in the band, figures interpolated")
     return "; ".join(notes)
 
