@@ -62,7 +62,7 @@ class Size:
 
 WIDE = Size(
     width=520,
-    height=172,
+    height=152,
     left=34,
     right=34,
     letters=8.6,
