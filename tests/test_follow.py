@@ -395,7 +395,9 @@ def test_a_real_process_publishes_again_and_ends_by_an_interrupt(
         os.killpg(process.pid, signal.SIGINT)
         rest = process.stdout.read()
         assert process.wait() == 0
-        assert rest == "stopped; what was published stands\n"
+        # an interrupt in the middle of a line that is being written leaves it to be written again
+        assert rest.splitlines()[-1] == "stopped; what was published stands"
+        assert "Traceback" not in rest
     finally:
         limit.cancel()
         process.kill()
