@@ -7,6 +7,7 @@ from math import isfinite, isnan
 
 from reportgen.model import Figure, Interval
 from reportgen.pages.display import (
+    DASH,
     NOT_MEASURED,
     PLUS_MINUS,
     interval,
@@ -117,6 +118,13 @@ def scaled_with_interval(found: Interval, factor: float, decimals: int, locale: 
         figure = number(value, decimals, u95=(high - low) / 2, locale=locale)
         return f"{figure} ({interval(low, high, decimals, locale=locale)})"
     return plus_minus(value, (high - low) / 2, decimals, locale=locale, signed=False)
+
+
+def predicted_text(key: str, found: Interval | None, locale: str) -> str:
+    """A predicted quantity and its interval; a dash where there is none."""
+    if found is None:
+        return DASH
+    return with_interval(BY_KEY[key], found.value, found.low95, found.high95, locale=locale)
 
 
 def width_text(quantity: Quantity, u95: float, locale: str) -> str:

@@ -6,8 +6,8 @@ from collections.abc import Sequence
 from dataclasses import dataclass
 
 from reportgen.model import BenchSheet, Interval
-from reportgen.pages.display import DASH, entered, number, quantity_number, with_unit
-from reportgen.pages.intervals import half_width, with_interval
+from reportgen.pages.display import entered, number, quantity_number, with_unit
+from reportgen.pages.intervals import half_width, predicted_text
 from reportgen.pages.tables import (
     Column,
     Row,
@@ -78,7 +78,7 @@ def _capacitor_sentences(found: CapacitorForecast, locale: str) -> str:
 
 
 def _worst_swr_sentence(found: CapacitorForecast, locale: str) -> str:
-    now, then = (_figure("swr", one.swr, locale) for one in (found.now, found.then))
+    now, then = (predicted_text("swr", one.swr, locale) for one in (found.now, found.then))
     if not found.better or now == then:
         kept = f"the {_farads(found.present_pf, locale)} that is there"
         lower = f"lower worst SWR than {kept if found.present_pf else 'none'}"
@@ -128,7 +128,9 @@ def _loads_table(loads: Sequence[Outcome], locale: str) -> Table:
             tuple(
                 Row(
                     head=head,
-                    cells=figures([_figure(key, getattr(one, key), locale) for one in loads]),
+                    cells=figures(
+                        [predicted_text(key, getattr(one, key), locale) for one in loads]
+                    ),
                 )
                 for head, key in quantities.items()
             ),
@@ -144,12 +146,6 @@ def _value(key: str, found: Interval, locale: str) -> str:
 
 def _farads(value_pf: float, locale: str) -> str:
     return with_unit(entered(value_pf, locale=locale), "pF") if value_pf else "none"
-
-
-def _figure(key: str, found: Interval | None, locale: str) -> str:
-    if found is None:
-        return DASH
-    return with_interval(BY_KEY[key], found.value, found.low95, found.high95, locale=locale)
 
 
 # --- antennas ------------------------------------------------------------------------------------
@@ -178,7 +174,7 @@ def _antenna_rows(band: AntennaBand, locale: str) -> tuple[Row, ...]:
     if band.swr is None:
         reason = band.reason or "not swept"
         return (Row(head=band.band, words=reason, words_columns=len(_ANTENNA_FIGURES)),)
-    texts = [_figure(key, getattr(band, key), locale) for key in _ANTENNA_FIGURES]
+    texts = [predicted_text(key, getattr(band, key), locale) for key in _ANTENNA_FIGURES]
     row = Row(head=band.band, head_rows=2 if band.reason else 1, cells=figures(texts))
     if not band.reason:
         return (row,)

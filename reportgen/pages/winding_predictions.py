@@ -5,16 +5,15 @@ from __future__ import annotations
 from collections.abc import Iterator, Sequence
 from dataclasses import dataclass
 
-from reportgen.model import BenchSheet, Interval
+from reportgen.model import BenchSheet
 from reportgen.pages.display import entered, with_unit
-from reportgen.pages.intervals import with_interval
+from reportgen.pages.intervals import predicted_text
 from reportgen.pages.sentences import counted, listed
 from reportgen.pages.tables import Cell, Column, Row, Table, figures, with_points_aligned
 from reportgen.pages.wording import ohms
 from reportgen.physics.forecast import Forecast, WindingForecast
 from reportgen.physics.judge import predicted_misses
 from reportgen.physics.outcomes import Outcome
-from reportgen.physics.quantities import BY_KEY
 
 _NEAR_TURNS = 1.5
 """Ratios shown differ by fewer turns of the high side than this."""
@@ -137,8 +136,8 @@ def _row(one: _Candidate, bench: BenchSheet) -> Row:
     locale, then = bench.locale, one.then
     farads = entered(one.capacitor_pf, locale=locale) if one.capacitor_pf else "none"
     texts = [
-        _figure("swr", then.swr, locale),
-        _figure("heat_loss_db", then.heat_loss_db, locale),
+        predicted_text("swr", then.swr, locale),
+        predicted_text("heat_loss_db", then.heat_loss_db, locale),
     ]
     limits = [_limits_cell(then, bench)] if bench.limits else []
     cells = (Cell(text=one.change, look="words"), *figures([farads, *texts]), *limits)
@@ -149,7 +148,3 @@ def _limits_cell(then: Outcome, bench: BenchSheet) -> Cell:
     missed = predicted_misses(then, bench)
     words = f"missed on {counted(len(missed), 'band')}" if missed else "kept"
     return Cell(text=words, look="words soft" if missed else "words")
-
-
-def _figure(key: str, found: Interval, locale: str) -> str:
-    return with_interval(BY_KEY[key], found.value, found.low95, found.high95, locale=locale)
